@@ -1,7 +1,7 @@
 /** The result of assessing one loop: the plain data that terminal, notebook, page and JSON all show. */
 import type { Estimate } from '../estimate/stiction-fit';
 import type { Note, Response, Service } from '../record/loop-record';
-import type { ValveModel } from '../valve/valve-model';
+import type { ValveModel } from '../valve/two-parameter';
 
 /** What makes the cycle. `lost-motion` is dead band without a jump. */
 export type Verdict =

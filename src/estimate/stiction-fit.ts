@@ -1,6 +1,6 @@
 /** What the fit of the two-parameter valve model to a record gives. Plain read-only data. */
 import type { Note } from '../record/loop-record';
-import type { ValveModel } from '../valve/valve-model';
+import type { ValveModel } from '../valve/two-parameter';
 
 /** A value with the ends of its 90 % interval. */
 export interface Estimate {
