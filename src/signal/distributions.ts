@@ -1,3 +1,4 @@
+/// <reference path="./untyped-packages.d.ts" />
 /**
  * Quantiles and upper-tail probabilities of the usual distributions. A quantile takes the probability `p` below
  * it, between 0 and 1 (ends left out); a tail is the probability above `x`.

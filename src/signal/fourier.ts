@@ -1,3 +1,4 @@
+/// <reference path="./untyped-packages.d.ts" />
 /** Discrete Fourier transform of real signals of any length, and the power spectrum made from it. */
 import FFT from 'fft.js';
 import { WrongUse } from '../errors';

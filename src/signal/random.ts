@@ -1,3 +1,4 @@
+/// <reference path="./untyped-packages.d.ts" />
 /** Seeded random numbers: equal seeds give equal numbers on every machine. */
 import { uniformFloat64 } from 'pure-rand/distribution/uniformFloat64';
 import { xoroshiro128plus } from 'pure-rand/generator/xoroshiro128plus';
