@@ -1,0 +1,264 @@
+/**
+ * Dead band and slip jump of the valve in a loop, with intervals, or the reasons why there are no numbers.
+ *
+ * With measured travel the element is fitted to it directly. Without, stage 1 (`search.ts`) reconstructs the travel
+ * from OP and PV and stage 2 (`describe-travel.ts`) fits the element to the reconstruction.
+ */
+import { refuseUnknownOptions, WrongUse } from '../errors';
+import { findCycle } from '../oscillation/find-cycle';
+import { checkRecord } from '../record/check-record';
+import type { Fitness } from '../record/fitness';
+import type { LoopRecord, Note, Response } from '../record/loop-record';
+import { noiseLevel } from '../signal/statistics';
+import { twoParameterValve } from '../valve/two-parameter';
+import { describeTravel } from './describe-travel';
+import { type Intervals, intervalsFromParts, type PartFit, recordParts } from './interval';
+import { misfitMap } from './misfit-map';
+import {
+  type Reconstruction,
+  reconstructTravel,
+  refitNear,
+  residualOf,
+  type SearchSettings,
+  swingOf,
+} from './search';
+import type { Slip, StictionFit, StictionResult } from './stiction-fit';
+import { findLine, testValve } from './valve-test';
+
+export interface FitOptions {
+  /** How the PV answers the valve. Default: the record's. With `unknown` both are tried and the better one is told. */
+  readonly response?: Response;
+  /** Dead time between travel and PV, s, when it is known. Default null: fitted. */
+  readonly deadTime?: number | null;
+  /** Process gain, PV units per % of OP (integrating: per % and second), when it is known. Default null: fitted. */
+  readonly processGain?: number | null;
+  /** Fitness of the record when already checked. Default: {@link checkRecord}. */
+  readonly fitness?: Fitness;
+  /** Period of the cycle in OP, s, when already found. Default: {@link findCycle} on OP. */
+  readonly period?: number | null;
+}
+
+/** How far a stated process gain may be off; an operator's figure is seldom nearer. Own choice. */
+const statedGainTolerance = 0.15;
+const fewestReversals = 10;
+const leastExplained = 0.5;
+/** Refused when S is this close to the whole OP swing and OP carries a coherent line. */
+const nearSwing = 0.9;
+
+/**
+ * Fits the two-parameter valve model to a loop record.
+ *
+ * @throws WrongUse for an unknown option, or a stated dead time or gain that is not above 0.
+ */
+export function fitStiction(record: LoopRecord, options: FitOptions = {}): StictionResult {
+  refuseUnknownOptions('fitStiction', options, ['response', 'deadTime', 'processGain', 'fitness', 'period']);
+  const { deadTime = null, processGain = null } = options;
+  if (deadTime !== null && !(deadTime >= 0)) {
+    throw new WrongUse(`A stated dead time is in seconds and not below 0; received ${deadTime}.`);
+  }
+  if (processGain !== null && !(Math.abs(processGain) > 0)) {
+    throw new WrongUse(`A stated process gain is PV units per % of OP and not 0; received ${processGain}.`);
+  }
+  const fitness = options.fitness ?? checkRecord(record);
+  const period = options.period ?? findCycle(record.op, record.samplePeriod).period;
+  const refused = fitness.checks
+    .filter((check) => !check.passed && check.forbids.includes('numbers'))
+    .map((check) => check.text);
+  const nothing: StictionResult = { fit: null, drawn: null, refused, test: null };
+  if (period === null) {
+    return {
+      ...nothing,
+      refused: [...refused, 'OP does not cycle, so there are no reversals to read S and J from.'],
+    };
+  }
+  if (!(swingOf(record.op) > 0) || !fitness.allows.cycle) return nothing;
+
+  const responses: ('self-regulating' | 'integrating')[] =
+    (options.response ?? record.response) === 'unknown'
+      ? ['self-regulating', 'integrating']
+      : [(options.response ?? record.response) as 'self-regulating' | 'integrating'];
+  const notes: Note[] = [];
+  let found: { reconstruction: Reconstruction; settings: SearchSettings } | null = null;
+  for (const response of responses) {
+    const settings = settingsFor(record, response === 'integrating', period, deadTime, processGain);
+    const reconstruction = reconstructTravel(record.pv, record.op, settings);
+    if (!reconstruction) continue;
+    if (!found || reconstruction.innovations < found.reconstruction.innovations) {
+      found = { reconstruction, settings };
+    }
+  }
+  if (!found) return nothing;
+  if (responses.length > 1) {
+    const chosen = found.settings.integrating ? 'integrating' : 'self-regulating';
+    notes.push({
+      code: 'response-from-data',
+      text: `The response was not stated; the data fit better as ${chosen}. State it with --response to be sure.`,
+    });
+  }
+  const { reconstruction, settings } = found;
+  const measured = record.travel !== null;
+  const travel = record.travel ?? reconstruction.travel;
+  const largest = swingOf(record.op);
+  const description = describeTravel(record.op, travel, {
+    near: measured ? null : reconstruction,
+    largest: Math.max(largest, reconstruction.S) * 1.05,
+  });
+  const { S, J, model } = description;
+  const parts = fitParts(record, found, travel, measured, { S, J }, largest);
+  const intervals = intervalsFromParts(S, J, parts);
+  const line = findLine(record.op, period / record.samplePeriod);
+  const test = testValve(record.pv, record.op, reconstruction, settings, line);
+
+  const modelTravel = twoParameterValve(record.op, { S, J, model, start: travel[0] });
+  const residual = residualOf(record.pv, travel, reconstruction, settings);
+  const simulatedPv = simulated(record.pv, residual, period / record.samplePeriod);
+  const unresolved = whyJIsNotResolved(intervals, S);
+  if (unresolved) notes.push({ code: 'jump-not-resolved', text: unresolved });
+  if (!measured && deadTime === null) {
+    notes.push({
+      code: 'dead-time-fitted',
+      text: `The dead time was fitted (${(reconstruction.delay * record.samplePeriod).toFixed(1)} s). A longer dead time with a smaller S fits nearly as well; state a known one with --dead-time.`,
+    });
+  }
+  const fit: StictionFit = {
+    model,
+    travelSource: measured ? 'measured' : 'reconstructed',
+    S: intervals.S,
+    J: unresolved ? null : intervals.J,
+    jumpDrawn: J,
+    explains: description.explains,
+    explainsPv: Math.max(0, 1 - reconstruction.misfit),
+    notes,
+    travel,
+    modelTravel,
+    simulatedPv,
+    slips: slipsOf(travel, record.samplePeriod, J),
+    map: misfitMap(record.pv, record.op, reconstruction, settings, largest, { S, J }),
+    process: {
+      response: settings.integrating ? 'integrating' : 'self-regulating',
+      gain: (settings.sign * reconstruction.gain) / (settings.integrating ? record.samplePeriod : 1),
+      lag: settings.integrating ? null : reconstruction.lag * record.samplePeriod,
+      deadTime: reconstruction.delay * record.samplePeriod,
+    },
+  };
+  refused.push(...whyNumbersAreRefused(record, fit, largest, line.coherent));
+  return { fit: refused.length > 0 ? null : fit, drawn: fit, refused, test };
+}
+
+function settingsFor(
+  record: LoopRecord,
+  integrating: boolean,
+  period: number,
+  deadTime: number | null,
+  processGain: number | null,
+): SearchSettings {
+  const perSample = integrating ? record.samplePeriod : 1;
+  const stated = processGain === null ? null : Math.abs(processGain) * perSample;
+  return {
+    integrating,
+    sign: processGain === null ? gainSign(record) : processGain > 0 ? 1 : -1,
+    period: period / record.samplePeriod,
+    deadTime: deadTime === null ? null : deadTime / record.samplePeriod,
+    gainLow: stated === null ? 0 : stated * (1 - statedGainTolerance),
+    gainHigh: stated === null ? Number.POSITIVE_INFINITY : stated * (1 + statedGainTolerance),
+  };
+}
+
+/** Feedback is negative, so the process gain has the sign of the controller's: OP rises on the error SP - PV or falls. */
+function gainSign(record: LoopRecord): 1 | -1 {
+  const { pv, sp, op } = record;
+  const error = Float64Array.from(pv, (value, k) => (sp ? sp[k] : 0) - value);
+  const mean = error.reduce((sum, value) => sum + value, 0) / error.length;
+  let agree = 0;
+  for (let k = 1; k < op.length; k++) {
+    const move = op[k] - op[k - 1];
+    agree += move * (error[k] - mean);
+  }
+  return agree >= 0 ? 1 : -1;
+}
+
+function fitParts(
+  record: LoopRecord,
+  found: { reconstruction: Reconstruction; settings: SearchSettings },
+  travel: Float64Array,
+  measured: boolean,
+  whole: PartFit,
+  largest: number,
+): PartFit[] {
+  return recordParts(record.op.length).map(({ from, to }) => {
+    const op = record.op.slice(from, to);
+    const near = measured
+      ? { ...whole, travel: travel.slice(from, to) }
+      : refitNear(record.pv.slice(from, to), op, found.reconstruction, found.settings, largest);
+    return describeTravel(op, near.travel, { near, largest: largest * 1.05 });
+  });
+}
+
+/** The simulated PV with the slow part of the residual given back, so that drift does not hide the shape. */
+function simulated(pv: Float64Array, residual: Float64Array, period: number): Float64Array {
+  const window = Math.max(3, Math.round(period) | 1);
+  const half = (window - 1) / 2;
+  const sums = new Float64Array(residual.length + 1);
+  for (let k = 0; k < residual.length; k++) sums[k + 1] = sums[k] + residual[k];
+  return Float64Array.from(pv, (value, k) => {
+    const from = Math.max(0, k - half);
+    const to = Math.min(residual.length, k + half + 1);
+    return value - residual[k] + (sums[to] - sums[from]) / (to - from);
+  });
+}
+
+/** Moments at which the travel steps by more than a third of the jump (at least 0.02 %) within two samples. */
+function slipsOf(travel: Float64Array, samplePeriod: number, J: number): Slip[] {
+  const least = Math.max(0.35 * J, 0.02);
+  const slips: Slip[] = [];
+  for (let k = 1; k < travel.length; k++) {
+    const step = travel[k] - travel[k - 1];
+    if (Math.abs(step) < least) continue;
+    const last = slips[slips.length - 1];
+    if (last && k - last.sample <= 2 && Math.sign(last.size) === Math.sign(step)) {
+      slips[slips.length - 1] = { ...last, size: last.size + step };
+    } else {
+      slips.push({ sample: k, time: k * samplePeriod, size: step });
+    }
+  }
+  return slips;
+}
+
+function whyJIsNotResolved({ J, spreadJ }: Intervals, S: number): string | null {
+  const half = (J.high - J.low) / 2;
+  if (spreadJ <= 0.25 && half <= 0.45 * S) return null;
+  return `Parts of the record give slip jumps that differ by ${(100 * spreadJ).toFixed(0)} % of S, so J is not resolved. A stated process gain (--process-gain), set-point steps in the record, or logged travel would resolve it.`;
+}
+
+function whyNumbersAreRefused(
+  record: LoopRecord,
+  fit: StictionFit,
+  largest: number,
+  coherent: boolean,
+): string[] {
+  const reasons: string[] = [];
+  const S = fit.S.value;
+  const percent = (share: number): string => `${(100 * share).toFixed(0)} %`;
+  if (fit.explains < leastExplained) {
+    reasons.push(
+      `The two-parameter valve explains ${percent(fit.explains)} of the travel; at least ${percent(leastExplained)} is asked for.`,
+    );
+  }
+  const noise = noiseLevel(record.op);
+  if (noise > S / 4) {
+    reasons.push(
+      `The noise on OP (${noise.toFixed(2)} %) is above a quarter of the fitted S (${S.toFixed(2)} %), so reversals cannot be told from noise.`,
+    );
+  }
+  if (fit.slips.length < fewestReversals) {
+    reasons.push(
+      `Only ${fit.slips.length} slips of the valve can be seen; at least ${fewestReversals} are asked for.`,
+    );
+  }
+  if (coherent && S > nearSwing * largest) {
+    reasons.push(
+      `The fitted S (${S.toFixed(1)} %) is nearly the whole swing of OP (${largest.toFixed(1)} %) and OP carries a steady line: an outside cycle many times larger than S gives the same picture.`,
+    );
+  }
+  return reasons;
+}
