@@ -107,7 +107,10 @@ function pythonsOfJupyterOnPath(): string[] {
       pythons.push(join(folder, 'python.exe'), join(folder, '..', 'python.exe'));
       continue;
     }
-    const words = readFileSync(script, 'utf8').split('\n', 1)[0]!.replace(/^#!\s*/, '').split(/\s+/);
+    const words = readFileSync(script, 'utf8')
+      .split('\n', 1)[0]!
+      .replace(/^#!\s*/, '')
+      .split(/\s+/);
     const interpreter = words[0]!.endsWith('/env') ? words[1] : words[0];
     if (interpreter && /python|pypy/.test(interpreter)) pythons.push(interpreter);
   }
@@ -126,7 +129,17 @@ function setUpWithPip(folder: string, say: (line: string) => void): string {
   if (existsSync(folder)) return `${folder} is there already, without Jupyter`;
   const base = ['python3', 'python'].find((name) => spawnSync(name, ['--version']).status === 0);
   if (!base) return 'there is no Python 3 on the PATH';
-  const pip = ['-m', 'pip', 'install', '--quiet', '--disable-pip-version-check', '--timeout', '20', '--retries', '0'];
+  const pip = [
+    '-m',
+    'pip',
+    'install',
+    '--quiet',
+    '--disable-pip-version-check',
+    '--timeout',
+    '20',
+    '--retries',
+    '0',
+  ];
   const steps: [string, string[]][] = [
     [base, ['-m', 'venv', folder]],
     [pythonOf(folder), [...pip, ...pipPackages]],

@@ -1,0 +1,49 @@
+/** What the command line says about itself. */
+
+export const generalHelp: string = `stickband: is the final control assembly making this loop cycle?
+
+  stickband assess FILE    assess one loop from a record of SP, PV and OP
+  stickband notebook       open Jupyter with the guided notebook and its kernel ready
+
+  stickband COMMAND --help says more about one command; stickband --version prints the version.
+
+Exit codes: 0 an answer was made ("cannot tell" is one), 2 wrong use, unreadable input, unwritable output
+or Jupyter missing, 1 a fault of stickband itself.`;
+
+export const assessHelp: string = `stickband assess FILE [options]
+
+Reads one loop from FILE (CSV text, or .xlsx), says what makes it cycle and how much dead band and slip jump
+its final control assembly shows, and writes the guided notebook and one page to share.
+
+What the file holds. Columns are recognised by name where that is safe; a column called MV never is.
+  --tag T              the loop's tag; picks one loop of an export that holds several
+  --time COL --sp COL --pv COL --op COL --travel COL --mode COL
+                       names of the columns: time, set point, process variable, controller output (%),
+                       measured valve travel, controller mode
+  --time-format F      how time is written, e.g. "dd.MM.yyyy HH:mm:ss", when it is not ISO 8601 or epoch time
+  --zone Z             time zone of stamps without one, e.g. Europe/Paris; without it UTC is taken
+
+What is known of the loop. Everything is optional; what is not stated is assumed and noted.
+  --service S          flow, pressure, level, temperature or other
+  --response R         self-regulating or integrating: does the PV settle or run away after a lasting move
+  --pv-range=LOW:HIGH  range of the PV, in its unit
+  --valve-range=LOW:HIGH  the part of the OP that moves this valve, in % of OP (split range)
+  --dead-time S        dead time of the process, s
+  --process-gain G     PV units per % of travel
+
+What to make of it.
+  --out DIR            folder for notebook and page (default: notebooks/rendered in the repository, else stickband-out)
+  --json FILE|-        also write the assessment as JSON; with "-" stdout holds JSON alone, everything else
+                       goes to stderr, and no notebook is made unless --out is given
+  --no-notebook        neither notebook nor page
+  --seed N             seed of the random numbers (default 1); equal seeds give equal results
+  --install            set up Jupyter when it is missing: with pip in .venv, or Debian's packages for root
+  --help               this text`;
+
+export const notebookHelp: string = `stickband notebook [--install]
+
+Opens Jupyter with the TypeScript kernel ready: in the repository on its notebooks, elsewhere on the current
+folder, into which the guided notebook is copied unless a file of that name is there.
+
+  --install            set up Jupyter when it is missing: with pip in .venv, or Debian's packages for root
+  --help               this text`;

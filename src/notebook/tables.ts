@@ -1,0 +1,109 @@
+/** Findings as tables, with the columns an engineer asks for and units in the column names. */
+import type { Findings } from '../assessment/findings';
+import type { Estimate } from '../estimate/stiction-fit';
+import type { Table } from '../report/table';
+
+/** A table from rows with the same keys. */
+function tableFrom<Key extends string>(
+  title: string,
+  names: readonly Key[],
+  rows: readonly Readonly<Record<Key, string | number | boolean | null>>[],
+): Table {
+  return { title, columns: names.map((name) => ({ name, values: rows.map((row) => row[name]) })) };
+}
+
+/** Every check of the record: what was found, the limit, where the limit is from. */
+export function fitnessTable(findings: Findings): Table {
+  const rows = findings.fitness.checks.map((check) => ({
+    check: check.title,
+    found: check.value,
+    unit: check.unit,
+    limit: check.limit,
+    passed: check.passed,
+    'what it takes away': check.passed ? '' : check.forbids.join(', ') || 'nothing, it only warns',
+    'source of the limit': check.source,
+  }));
+  const names = [
+    'check',
+    'found',
+    'unit',
+    'limit',
+    'passed',
+    'what it takes away',
+    'source of the limit',
+  ] as const;
+  return tableFrom('Fitness of the record', names, rows);
+}
+
+/** Dead band, slip jump and the parts of the process found with them, each with the ends of its 90 % interval. */
+export function estimateTable(findings: Findings): Table {
+  const fit = findings.stiction.fit;
+  const row = (what: string, estimate: Estimate) => ({
+    what,
+    value: estimate.value,
+    low: estimate.low,
+    high: estimate.high,
+    unit: estimate.unit,
+  });
+  const rows = fit ? [row('S, dead band as tested on reversal', fit.S)] : [];
+  if (fit?.J) rows.push(row('J, slip jump (resolution)', fit.J));
+  return tableFrom('What was estimated, with 90 % intervals', ['what', 'value', 'low', 'high', 'unit'], rows);
+}
+
+/** The single cycles of OP: when, how long, how large. */
+export function cycleTable(findings: Findings): Table {
+  const rows = findings.opCycle.single.map((cycle) => ({
+    'from, s': cycle.from,
+    'to, s': cycle.to,
+    'length, s': cycle.to - cycle.from,
+    'OP half swing, %': cycle.amplitude,
+  }));
+  return tableFrom('Single cycles of OP', ['from, s', 'to, s', 'length, s', 'OP half swing, %'], rows);
+}
+
+/** The moments at which the valve broke loose, as reconstructed. */
+export function slipTable(findings: Findings): Table {
+  const slips = findings.stiction.fit?.slips ?? [];
+  const rows = slips.map((slip) => ({
+    'time, s': slip.time,
+    'size, %': Math.abs(slip.size),
+    direction: slip.size > 0 ? 'up' : 'down',
+  }));
+  return tableFrom('Slips of the valve', ['time, s', 'size, %', 'direction'], rows);
+}
+
+/** The published indicators beside the fit: what each says, against which threshold, from which paper. */
+export function evidenceTable(findings: Findings): Table {
+  const rows = findings.assessment.evidence.map(({ indicator, value, threshold, says, why, source }) => ({
+    indicator,
+    value,
+    threshold,
+    says,
+    why,
+    source,
+  }));
+  return tableFrom('Indicators', ['indicator', 'value', 'threshold', 'says', 'why', 'source'], rows);
+}
+
+/** What the result was made from: file, fingerprint, version, options. */
+export function provenanceTable(findings: Findings): Table {
+  const { record, provenance, loop } = findings.assessment;
+  const rows = [
+    ['loop', loop],
+    ['source', record.source],
+    ['SHA-256 of the source', record.sha256],
+    ['first sample', record.start],
+    ['samples', String(record.samples)],
+    ['seconds between samples', String(record.samplePeriod)],
+    ['stickband version', provenance.version],
+    ['options', JSON.stringify(provenance.options)],
+    ['seed', String(provenance.seed)],
+  ].map(([what, value]) => ({ what: what!, value: value! }));
+  return tableFrom('Provenance', ['what', 'value'], rows);
+}
+
+/** Everything that was assumed, seen or left out while reading. */
+export function noteTable(findings: Findings): Table {
+  const rows = findings.assessment.record.notes.map(({ code, text }) => ({ code, note: text }));
+  return tableFrom('Notes on the record', ['code', 'note'], rows);
+}

@@ -1,0 +1,50 @@
+/**
+ * The figure library as HTML: put once into a notebook or page, it draws every figure there is or comes later.
+ * The library is stored compressed and unpacked by the browser; where a browser cannot, or scripts are off, the
+ * static pictures simply stay.
+ */
+import { readFileSync } from 'node:fs';
+import { gzipSync } from 'node:zlib';
+
+let stored: string | null = null;
+
+export function figureLibraryHtml(): string {
+  stored ??= gzipSync(readFileSync(require.resolve('plotly.js-cartesian-dist-min')), { level: 9 }).toString(
+    'base64',
+  );
+  return [
+    `<script type="application/octet-stream" class="sb-library">${stored}</script>`,
+    `<script>(${drawFigures})()</script>`,
+  ].join('\n');
+}
+
+/** Runs in the browser. Kept as text because it is not ours to run, and for browsers of some years ago. */
+const drawFigures = `async function () {
+  if (window.stickbandDraws) return;
+  window.stickbandDraws = true;
+  const holder = document.querySelector('script.sb-library');
+  if (!holder || !window.DecompressionStream) return;
+  const bytes = Uint8Array.from(atob(holder.textContent), (sign) => sign.charCodeAt(0));
+  const unpacked = new Blob([bytes]).stream().pipeThrough(new DecompressionStream('gzip'));
+  const script = document.createElement('script');
+  script.textContent = await new Response(unpacked).text();
+  document.head.append(script);
+  const draw = async (figure) => {
+    figure.classList.add('sb-drawn');
+    const plot = figure.querySelector('.sb-plot');
+    const { data, layout } = JSON.parse(figure.querySelector('.sb-figure-data').textContent);
+    const narrow = figure.clientWidth < 520;
+    const { width, ...own } = layout;
+    const fitted = narrow ? { ...own, margin: { ...own.margin, l: 48, r: 12 } } : own;
+    plot.style.height = figure.dataset.height + 'px';
+    await window.Plotly.newPlot(plot, data, { ...fitted, autosize: true }, { responsive: true, displaylogo: false });
+    figure.classList.add('sb-shown');
+  };
+  const drawAll = () => document.querySelectorAll('.sb-figure:not(.sb-drawn)').forEach(draw);
+  let waiting = 0;
+  new MutationObserver(() => {
+    clearTimeout(waiting);
+    waiting = setTimeout(drawAll, 50);
+  }).observe(document.body, { childList: true, subtree: true });
+  drawAll();
+}`;

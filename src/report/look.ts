@@ -1,0 +1,77 @@
+/** The look of answer card, figures and tables, in notebooks and pages alike, as one style sheet. */
+import { palette } from '../figures/palette';
+
+/** Rules for what carries a class starting with `sb-`; nothing else on the page is touched. */
+export const componentStyle: string = `
+.sb-card { --edge: ${palette.faint}; border: 1px solid #d9d5cb; border-left: 6px solid var(--edge); border-radius: 4px;
+  padding: 1.1rem 1.4rem; margin: 0 0 1.5rem; background: ${palette.paper}; color: ${palette.ink}; }
+.sb-repair { --edge: ${palette.op}; } .sb-retune { --edge: ${palette.travel}; } .sb-look-outside { --edge: ${palette.pv}; }
+.sb-get-better-data { --edge: ${palette.stampEdge}; }
+.sb-card h2 { font-size: 1.45rem; line-height: 1.25; margin: .35rem 0 .4rem; }
+.sb-card h3 { font-size: .95rem; margin: 0 0 .3rem; color: ${palette.ink}; }
+.sb-card p, .sb-card ul { margin: 0 0 .5rem; } .sb-card ul { padding-left: 1.15rem; } .sb-card li { margin-bottom: .25rem; }
+.sb-kicker { font-size: .95rem; color: ${palette.faint}; }
+.sb-chip { display: inline-block; padding: .05rem .6rem; margin-right: .4rem; border: 1px solid var(--edge);
+  border-radius: 3px; color: var(--edge); font-weight: 600; }
+.sb-cause { font-size: 1.08rem; }
+.sb-part { margin-top: .9rem; }
+.sb-columns { display: grid; grid-template-columns: repeat(auto-fit, minmax(min(20rem, 100%), 1fr)); gap: 0 2rem; }
+.sb-card table.sb-tiles, .sb-tiles tbody { display: grid; grid-template-columns: repeat(auto-fill, minmax(min(13rem, 100%), 1fr));
+  gap: 1px; width: 100%; margin: .9rem 0 0; border: 0; }
+.sb-card table.sb-tiles { display: block; }
+.sb-card .sb-tiles tr { display: block; background: #f7f5f0; padding: .5rem .7rem; }
+.sb-card .sb-tiles th, .sb-card .sb-tiles td { display: block; padding: 0; border: 0; text-align: left; background: none; }
+.sb-card .sb-tiles th { font-size: .82rem; font-weight: 400; color: ${palette.faint}; }
+.sb-card .sb-tiles .sb-value { font-size: 1.12rem; font-weight: 600; color: ${palette.ink}; }
+.sb-card .sb-tiles .sb-note { font-size: .82rem; color: ${palette.faint}; }
+.sb-card pre { white-space: pre-wrap; overflow-wrap: anywhere; font: inherit; margin: 0; padding: .6rem .8rem; background: #f7f5f0;
+  border: 1px dashed #b9b3a5; color: ${palette.ink}; }
+.sb-caution, .sb-cautions { background: ${palette.stampGround}; border-left: 3px solid ${palette.stampEdge}; padding: .5rem .8rem; }
+.sb-card .sb-caution { margin: 0; } .sb-cautions ul:last-child { margin: 0; }
+.sb-card table.sb-signatures { width: 100%; margin: 1.2rem 0 0; border: 0; font-size: .85rem; color: ${palette.faint}; }
+.sb-card .sb-signatures th { font-weight: 400; text-align: left; width: 6rem; padding: 0; border: 0; }
+.sb-card .sb-signatures td { border: 0; border-bottom: 1px solid ${palette.faint}; height: 1.4rem; min-width: 6rem; }
+.sb-row { display: grid; grid-template-columns: repeat(auto-fit, minmax(min(24rem, 100%), 1fr)); gap: 0 1rem; }
+.sb-figure { margin: 0 0 1.2rem; min-width: 0; color: ${palette.ink}; }
+.sb-figure figcaption { font-size: .92rem; color: ${palette.faint}; max-width: 46rem; }
+.sb-plot { display: none; width: 100%; } .sb-drawn .sb-plot { display: block; }
+.sb-picture { max-width: 100%; height: auto; } .sb-shown .sb-picture { display: none; }
+.sb-table { overflow-x: auto; margin: 0 0 1.2rem; }
+.sb-table table { border-collapse: collapse; font-size: .9rem; color: ${palette.ink}; }
+.sb-table caption { text-align: left; font-weight: 600; padding-bottom: .3rem; }
+.sb-table th, .sb-table td { text-align: left; vertical-align: top; padding: .25rem .9rem .25rem 0; border: 0;
+  border-bottom: 1px solid ${palette.grid}; background: none; max-width: 32rem; }
+.sb-table thead th { border-bottom: 1px solid ${palette.faint}; font-weight: 600; }
+.sb-table .sb-number { text-align: right; font-variant-numeric: tabular-nums; }
+@media print {
+  .sb-card { border-radius: 0; } .sb-figure, .sb-part, .sb-table tr { break-inside: avoid; }
+  .sb-plot, .sb-drawn .sb-plot { display: none; } .sb-shown .sb-picture, .sb-picture { display: block; }
+}
+`.trim();
+
+/** Rules for a whole page; those of the components come with the set-up cell of the notebook on it. */
+export const pageStyle: string = `
+* { box-sizing: border-box; }
+html { -webkit-text-size-adjust: 100%; }
+body { margin: 0; background: #fbfaf7; color: ${palette.ink}; font: 16px/1.5 system-ui, sans-serif; }
+main { max-width: 66rem; margin: 0 auto; padding: 1.1rem 1.2rem 3rem; }
+main > * { max-width: 100%; }
+h1 { font-size: 1.15rem; font-weight: 600; margin: 0 0 .7rem; color: ${palette.faint}; }
+.text h2 { font-size: 1.35rem; margin: 2.2rem 0 .5rem; padding-top: .6rem; border-top: 1px solid #d9d5cb; }
+.text h3 { font-size: 1.08rem; margin: 1.4rem 0 .4rem; }
+.text p, .text ul, .text ol, .text table { max-width: 46rem; } .text p { margin: 0 0 .7rem; }
+.text code { font-size: .9em; background: #f1eee6; padding: 0 .25em; border-radius: 2px; }
+.text table { border-collapse: collapse; } .text th, .text td { text-align: left; padding: .2rem .9rem .2rem 0; border-bottom: 1px solid ${palette.grid}; }
+.printed { white-space: pre-wrap; overflow-wrap: anywhere; font: .85rem/1.45 ui-monospace, monospace; margin: 0 0 1rem; }
+details.code { margin: -.4rem 0 1.2rem; font-size: .8rem; color: ${palette.faint}; }
+details.code summary { cursor: pointer; width: max-content; }
+details.code pre { overflow-x: auto; background: #f1eee6; color: ${palette.ink}; padding: .7rem .9rem; margin: .4rem 0 0;
+  font: .8rem/1.45 ui-monospace, monospace; }
+footer { border-top: 1px solid #d9d5cb; margin-top: 2.5rem; padding-top: .8rem; font-size: .85rem; color: ${palette.faint}; }
+@media (max-width: 480px) { main { padding: .7rem .7rem 2rem; } .sb-card { padding: .8rem .9rem; } .sb-card h2 { font-size: 1.25rem; } }
+@page { size: A4; margin: 16mm 14mm; }
+@media print {
+  body { background: none; font-size: 10.5pt; } main { padding: 0; max-width: none; } details.code { display: none; }
+  h2, h3 { break-after: avoid; }
+}
+`.trim();
