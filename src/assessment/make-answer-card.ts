@@ -115,7 +115,7 @@ function figuresOf({ assessment, record, opCycle, pvCycle }: Findings): AnswerCa
 }
 
 /** Value and interval, as many digits as a tenth of the interval's half width deserves. */
-function withInterval({ value, low, high, unit }: Estimate): string {
+export function withInterval({ value, low, high, unit }: Estimate): string {
   const half = (high - low) / 2;
   const digits = half > 0 ? Math.max(0, Math.min(3, 1 - Math.floor(Math.log10(half)))) : 2;
   return `${value.toFixed(digits)} ${unit} (${low.toFixed(digits)} to ${high.toFixed(digits)})`;
