@@ -1,0 +1,43 @@
+/** What a reader must know before believing a figure; stamped on it, worded from the findings. */
+import type { Findings } from '../assessment/findings';
+
+/** At most this many are stamped; the rest stands in the text beside the figure. */
+const most = 3;
+
+/**
+ * Caveats of anything drawn from the record: a cause that cannot be told, checks of the record that failed and
+ * take something away, assumptions made on reading.
+ */
+export function recordCaveats(findings: Findings): string[] {
+  const { assessment, fitness, record } = findings;
+  const found: string[] = [];
+  if (assessment.cause.verdict === 'cannot-tell') {
+    found.push(`cannot-tell: ${assessment.cause.reasons[0] ?? 'the record does not decide.'}`);
+  }
+  for (const check of fitness.checks) {
+    if (!check.passed && check.forbids.length > 0) found.push(check.text);
+  }
+  for (const note of record.notes) {
+    if (/assum/.test(note.code)) found.push(note.text);
+  }
+  return shortened(found);
+}
+
+/** Caveats of anything drawn from the fit: numbers that must not be quoted, a jump that is not resolved. */
+export function fitCaveats(findings: Findings): string[] {
+  const { stiction } = findings;
+  if (stiction.fit === null) {
+    const reasons = stiction.refused.length > 0 ? stiction.refused : ['the fit does not hold.'];
+    return shortened(
+      reasons.map((reason, i) => (i === 0 ? `No numbers to quote from this fit: ${reason}` : reason)),
+    );
+  }
+  return [];
+}
+
+function shortened(sentences: readonly string[]): string[] {
+  const distinct = [...new Set(sentences)];
+  if (distinct.length <= most) return distinct;
+  const left = distinct.length - (most - 1);
+  return [...distinct.slice(0, most - 1), `${left} more caveats stand in the text.`];
+}

@@ -1,0 +1,33 @@
+/** PV against OP with time as colour: the shape of the cycle, and whether it stays the same over the record. */
+import type { Findings } from '../assessment/findings';
+import { recordCaveats } from './caveats';
+import { recordClock } from './clock';
+import type { Figure } from './figure';
+import { axis, axisTitle, makeFigure, panelName } from './layout';
+import { short } from './plain-numbers';
+import { leavesOut, timeColoured, timeStretches } from './time-stretches';
+
+export function phaseFigure(findings: Findings): Figure {
+  const { record, opCycle, assessment } = findings;
+  const clock = recordClock(record);
+  const stretches = timeStretches(record.op.length, record.samplePeriod, opCycle);
+  const { traces, coloraxis } = timeColoured(record.op, record.pv, stretches, clock, record.samplePeriod);
+  const unit = record.pvUnit === '' ? '' : `, ${record.pvUnit}`;
+  const shown = leavesOut(stretches)
+    ? `${stretches.length} stretches spread over the record, early light, late dark.`
+    : 'Early in the record light, late dark.';
+  const { pvSwing, opSwing } = assessment.severity;
+  return makeFigure({
+    id: 'phase-plot',
+    title: `${record.loop}: PV against OP`,
+    caption: `${shown} Flat runs joined by steep ones, in loops that lie on each other, speak for an assembly that holds and then jumps; a smooth ellipse or a cloud does not.`,
+    alt: `PV of ${record.loop} against OP with time as colour, median swing ${short(pvSwing)}${unit === '' ? '' : ` ${record.pvUnit}`} of PV and ${short(opSwing)} % of OP.`,
+    caveats: recordCaveats(findings),
+    data: traces,
+    annotations: [panelName(`PV${unit}`, 'y')],
+    layout: { coloraxis, xaxis: axis({ title: axisTitle('OP, % of span') }), yaxis: axis({}) },
+    width: 460,
+    height: 460,
+    legend: false,
+  });
+}
