@@ -22,10 +22,11 @@ export interface ValveTruth {
 const FORGOTTEN = 0.1;
 /** Share of S by which OP may turn back before it counts as a reversal, as in the fit of a record. */
 const TOLERANCE = 0.02;
-const GRID_S = 56;
-const GRID_RATIO = 17;
-/** Grid points, from the best on, from which the search goes on locally: the surface is rugged. */
-const STARTS = 14;
+/** A wide grid over S and J/S, then a fine one over J/S around its best S, as the surface is rugged along J. */
+const WIDE = { S: 40, ratio: 9 };
+const FINE = { S: 15, ratio: 41, reach: 0.1 };
+/** Points, from the best on, from which the search goes on locally. */
+const STARTS = 7;
 
 interface Point {
   readonly model: ValveModel;
@@ -35,8 +36,8 @@ interface Point {
 }
 
 /**
- * The best S and J over both variants: a grid over S (logarithmic, up to the swing of OP) and J/S, then pattern
- * searches from its best points and from `near`. The offset between OP and travel is free.
+ * The best S and J over both variants: grids over S (logarithmic, up to the swing of OP) and J/S, then pattern
+ * searches from their best points and from `near`. The offset between OP and travel is free.
  *
  * @param op controller output as sent to the valve, %
  * @param travel true travel, %, same length
@@ -77,13 +78,19 @@ export function fitTruth(
 
   const best: Point[] = [];
   for (const model of ['slides-on', 'sticks-again'] as const) {
-    const tried: Point[] = [];
-    for (let i = 0; i < GRID_S; i++) {
-      const S = (high - low) * 0.01 ** (1 - (i + 1) / GRID_S);
-      for (let k = 0; k < GRID_RATIO; k++) tried.push(at(model, S, k / (GRID_RATIO - 1)));
+    const wide: Point[] = [];
+    for (let i = 1; i <= WIDE.S; i++) {
+      const S = (high - low) * 0.01 ** (1 - i / WIDE.S);
+      for (let k = 0; k < WIDE.ratio; k++) wide.push(at(model, S, k / (WIDE.ratio - 1)));
+    }
+    wide.sort((a, b) => a.misfit - b.misfit);
+    const tried = [...wide];
+    for (let i = 0; i < FINE.S; i++) {
+      const S = wide[0].S * Math.exp(FINE.reach * ((2 * i) / (FINE.S - 1) - 1));
+      for (let k = 0; k < FINE.ratio; k++) tried.push(at(model, S, k / (FINE.ratio - 1)));
     }
     tried.sort((a, b) => a.misfit - b.misfit);
-    const starts = tried.slice(0, STARTS / 2);
+    const starts = tried.slice(0, STARTS);
     if (near !== null && near.S > 0) starts.push(at(model, near.S, near.J / near.S));
     for (const start of starts) best.push(polished(start, at));
   }
@@ -95,7 +102,7 @@ export function fitTruth(
 /** Pattern search in log S and J/S: steps are halved when none of the eight around a point is better. */
 function polished(start: Point, at: (model: ValveModel, S: number, ratio: number) => Point): Point {
   let here = start;
-  for (let step = 0.05; step > 5e-4; ) {
+  for (let step = 0.02; step > 5e-4; ) {
     let next = here;
     for (const [dS, dRatio] of [
       [1, 0],
