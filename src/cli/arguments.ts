@@ -53,9 +53,13 @@ export function numberOption(name: string, text: string): number {
 
 /** `LOW:HIGH` as a range. Throws {@link WrongUse}. */
 export function rangeOption(name: string, text: string): { low: number; high: number } {
-  const [low, high, ...more] = text.split(':').map((part) => (part.trim() === '' ? Number.NaN : Number(part)));
+  const [low, high, ...more] = text
+    .split(':')
+    .map((part) => (part.trim() === '' ? Number.NaN : Number(part)));
   if (more.length > 0 || !Number.isFinite(low) || !Number.isFinite(high) || low! >= high!) {
-    throw new WrongUse(`--${name} takes LOW:HIGH with LOW below HIGH, e.g. --${name}=0:120; "${text}" was received.`);
+    throw new WrongUse(
+      `--${name} takes LOW:HIGH with LOW below HIGH, e.g. --${name}=0:120; "${text}" was received.`,
+    );
   }
   return { low: low!, high: high! };
 }

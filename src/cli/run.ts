@@ -40,7 +40,9 @@ export async function run(words: readonly string[], output: Output): Promise<num
       return 2;
     }
     const trace = error instanceof Error ? error.stack : String(error);
-    output.stderr.write(`A fault of stickband itself, not of your data. Please report it with this text:\n${trace}\n`);
+    output.stderr.write(
+      `A fault of stickband itself, not of your data. Please report it with this text:\n${trace}\n`,
+    );
     return 1;
   }
 }

@@ -4,7 +4,7 @@ import { cautions } from '../assessment/cautions';
 import type { Findings } from '../assessment/findings';
 import { answerCard } from '../assessment/make-answer-card';
 import type { Figure } from '../figures/figure';
-import { answerHtml } from '../report/answer-html';
+import { answerHtml, stepHtml } from '../report/answer-html';
 import { figureHtml } from '../report/figure-html';
 import { figureLibraryHtml } from '../report/figure-library';
 import { listHtml } from '../report/html-text';
@@ -27,16 +27,36 @@ export async function showAnswer(findings: Findings): Promise<void> {
   await showHtml(answerHtml(answerCard(findings)));
 }
 
-/** Shows one figure, or several side by side where there is room. */
-export async function showFigure(...figures: Figure[]): Promise<void> {
-  const pictures = await staticPictures(figures);
-  const shown = figures.map((figure, place) => figureHtml(figure, pictures[place]!)).join('\n');
-  await showHtml(figures.length > 1 ? `<div class="sb-row">${shown}</div>` : shown);
+/** Shows one figure, or several side by side where there is room. null, which says that a figure has nothing to draw, is left out. */
+export async function showFigure(...figures: (Figure | null)[]): Promise<void> {
+  const drawn = figures.filter((figure) => figure !== null);
+  if (drawn.length === 0) return showHtml('<p>No figure: the record gave nothing to draw here.</p>');
+  const pictures = await staticPictures(drawn);
+  const shown = drawn.map((figure, place) => figureHtml(figure, pictures[place]!)).join('\n');
+  await showHtml(drawn.length > 1 ? `<div class="sb-row">${shown}</div>` : shown);
 }
 
 /** Shows at most `rows` rows (default 40) of a table or a danfo data frame. */
 export async function showTable(table: Table | FrameLike, rows: number = 40): Promise<void> {
   await showHtml(tableHtml('title' in table ? table : tableOf(table), rows));
+}
+
+/** Shows why the cause was named, what was ruled out, what else may contribute, and why numbers were refused. */
+export async function showReasons({ assessment }: Findings): Promise<void> {
+  const { cause, stictionRefused } = assessment;
+  const parts: [string, readonly string[]][] = [
+    [`Why: ${cause.verdict}`, cause.reasons],
+    ['Ruled out', cause.ruledOut],
+    ['May contribute', cause.also],
+    ['Why there are no numbers for S and J', stictionRefused],
+  ];
+  const shown = parts.filter(([, sentences]) => sentences.length > 0);
+  await showHtml(shown.map(([title, sentences]) => `<h3>${title}</h3>${listHtml(sentences)}`).join('\n'));
+}
+
+/** Shows the next steps in order, each with its caution. */
+export async function showNextSteps({ assessment }: Findings): Promise<void> {
+  await showHtml(`<ol class="sb-steps">${assessment.next.map(stepHtml).join('\n')}</ol>`);
 }
 
 /** Shows the cautions that go with every answer. */

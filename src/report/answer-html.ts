@@ -3,6 +3,7 @@
  * styles are taken away.
  */
 import type { AnswerCard } from '../assessment/answer-card';
+import type { NextStep } from '../assessment/assessment';
 import { decisionWords } from './answer-text';
 import { escapeHtml, listHtml } from './html-text';
 
@@ -17,7 +18,7 @@ export function answerHtml(card: AnswerCard): string {
     ...head,
     figuresTable(card),
     `<div class="sb-columns">${reasons.join('')}</div>`,
-    part('The test that decides', decidingTest(card)),
+    part('The test that decides', card.decidingTest ? stepBody(card.decidingTest) : ''),
     part('Work request, to copy', card.workRequest ? `<pre>${escapeHtml(card.workRequest)}</pre>` : ''),
     part('The record', `<p>${escapeHtml(card.record)}</p>`),
     part('Cautions', listHtml(card.cautions), 'sb-cautions'),
@@ -34,11 +35,14 @@ function figuresTable(card: AnswerCard): string {
   return rows.length > 0 ? `<table class="sb-tiles"><tbody>${rows.join('')}</tbody></table>` : '';
 }
 
-function decidingTest(card: AnswerCard): string {
-  const test = card.decidingTest;
-  if (!test) return '';
-  const caution = test.caution ? `<p class="sb-caution">${escapeHtml(test.caution)}</p>` : '';
-  return `<p><strong>${escapeHtml(test.do)}</strong> ${escapeHtml(test.why)}</p>${caution}`;
+/** One thing to do, why, and its caution. */
+function stepBody(step: NextStep): string {
+  const caution = step.caution ? `<p class="sb-caution">${escapeHtml(step.caution)}</p>` : '';
+  return `<p><strong>${escapeHtml(step.do)}</strong> ${escapeHtml(step.why)}</p>${caution}`;
+}
+
+export function stepHtml(step: NextStep): string {
+  return `<li>${stepBody(step)}</li>`;
 }
 
 /** A headed part; '' when it has no content. */

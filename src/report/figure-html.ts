@@ -7,10 +7,10 @@ export function figureHtml(figure: Figure, picture: string): string {
   const source = `data:image/svg+xml;base64,${Buffer.from(picture, 'utf8').toString('base64')}`;
   const data = scriptJson({ data: figure.data, layout: figure.layout });
   return [
-    `<figure class="sb-figure" data-figure="${escapeHtml(figure.id)}" data-height="${figure.height}">`,
+    `<figure class="sb-figure" data-figure="${escapeHtml(figure.id)}">`,
     `<div class="sb-plot" role="img" aria-label="${escapeHtml(figure.alt)}"></div>`,
     `<img class="sb-picture" src="${source}" alt="${escapeHtml(figure.alt)}" width="${figure.width}" height="${figure.height}">`,
-    `<figcaption><strong>${escapeHtml(figure.title)}.</strong> ${escapeHtml(figure.caption)}</figcaption>`,
+    `<figcaption>${escapeHtml(figure.caption)}</figcaption>`,
     `<script type="application/json" class="sb-figure-data">${data}</script>`,
     '</figure>',
   ].join('\n');

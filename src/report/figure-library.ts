@@ -33,11 +33,7 @@ const drawFigures = `async function () {
     figure.classList.add('sb-drawn');
     const plot = figure.querySelector('.sb-plot');
     const { data, layout } = JSON.parse(figure.querySelector('.sb-figure-data').textContent);
-    const narrow = figure.clientWidth < 520;
-    const { width, ...own } = layout;
-    const fitted = narrow ? { ...own, margin: { ...own.margin, l: 48, r: 12 } } : own;
-    plot.style.height = figure.dataset.height + 'px';
-    await window.Plotly.newPlot(plot, data, { ...fitted, autosize: true }, { responsive: true, displaylogo: false });
+    await window.Plotly.newPlot(plot, data, layout, { responsive: true, displaylogo: false });
     figure.classList.add('sb-shown');
   };
   const drawAll = () => document.querySelectorAll('.sb-figure:not(.sb-drawn)').forEach(draw);

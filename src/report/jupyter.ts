@@ -8,6 +8,7 @@ import { existsSync, mkdirSync, readFileSync, rmSync, writeFileSync } from 'node
 import { delimiter, dirname, join } from 'node:path';
 import { MissingTool } from '../errors';
 import { canInstallDebianPackages, installDebianPackages } from './debian-packages';
+import { inCheckout, packageFolder } from './places';
 
 export interface Jupyter {
   /** Absolute path of the Python interpreter that has Jupyter. */
@@ -21,7 +22,6 @@ export interface JupyterSetUp {
   readonly say?: (line: string) => void;
 }
 
-const packageFolder = join(__dirname, '..', '..');
 const windows = process.platform === 'win32';
 const pipPackages = ['notebook', 'nbclient', 'jupyter-client'];
 const debianPackages = ['jupyter-notebook', 'jupyter-client', 'python3-nbclient'];
@@ -51,9 +51,8 @@ export function ensureJupyter(options: JupyterSetUp = {}): Jupyter {
   const install = options.install ?? Boolean(process.env.CI);
   const failures: string[] = [];
 
-  const checkout = existsSync(join(packageFolder, 'tsconfig.json'));
-  if (checkout || install) {
-    const folder = join(checkout ? packageFolder : process.cwd(), '.venv');
+  if (inCheckout || install) {
+    const folder = join(inCheckout ? packageFolder : process.cwd(), '.venv');
     const failure = setUpWithPip(folder, say);
     if (failure) failures.push(`pip could not set it up: ${failure}`);
   }

@@ -27,7 +27,7 @@ export const componentStyle: string = `
 .sb-card pre { white-space: pre-wrap; overflow-wrap: anywhere; font: inherit; margin: 0; padding: .6rem .8rem; background: #f7f5f0;
   border: 1px dashed #b9b3a5; color: ${palette.ink}; }
 .sb-caution, .sb-cautions { background: ${palette.stampGround}; border-left: 3px solid ${palette.stampEdge}; padding: .5rem .8rem; }
-.sb-card .sb-caution { margin: 0; } .sb-cautions ul:last-child { margin: 0; }
+.sb-card .sb-caution, .sb-steps .sb-caution { margin: 0; } .sb-steps li { margin-bottom: 1rem; max-width: 46rem; } .sb-steps p { margin: 0 0 .4rem; } .sb-cautions ul:last-child { margin: 0; }
 .sb-card table.sb-signatures { width: 100%; margin: 1.2rem 0 0; border: 0; font-size: .85rem; color: ${palette.faint}; }
 .sb-card .sb-signatures th { font-weight: 400; text-align: left; width: 6rem; padding: 0; border: 0; }
 .sb-card .sb-signatures td { border: 0; border-bottom: 1px solid ${palette.faint}; height: 1.4rem; min-width: 6rem; }

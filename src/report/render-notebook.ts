@@ -5,6 +5,7 @@ import { dirname, join, relative, resolve, sep } from 'node:path';
 import type { Jupyter } from './jupyter';
 import { type Notebook, withParameters } from './notebook-file';
 import { pageOf } from './page';
+import { packageFolder } from './places';
 import { runNotebook } from './run-notebook';
 import { prepareFolder, writeWhole } from './write-whole';
 
@@ -53,7 +54,7 @@ export async function renderNotebook(template: string, rendering: Rendering): Pr
 function importsThisPackage(folder: string): boolean {
   try {
     const found = createRequire(join(resolve(folder), 'notebook.js')).resolve('stickband/package.json');
-    return realpathSync(found) === realpathSync(join(__dirname, '..', '..', 'package.json'));
+    return realpathSync(found) === realpathSync(join(packageFolder, 'package.json'));
   } catch {
     return false;
   }
