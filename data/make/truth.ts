@@ -3,12 +3,7 @@
  * travel for the same OP. The stem that moved the valve has friction in newtons, mass and lag; this is how it reads in
  * terms of S and J.
  */
-import {
-  createTravelPieces,
-  travelFromPieces,
-  type ValveModel,
-  walkTwoParameter,
-} from '../../src/valve/two-parameter';
+import { createTravelPieces, type ValveModel, walkTwoParameter } from '../../src/valve/two-parameter';
 
 export interface ValveTruth {
   readonly model: ValveModel;
@@ -49,31 +44,56 @@ export function fitTruth(
   travel: Float64Array,
   near: { readonly S: number; readonly J: number } | null,
 ): ValveTruth | null {
-  const from = Math.floor(FORGOTTEN * op.length);
-  const counted = travel.subarray(from);
-  const mean = counted.reduce((sum, value) => sum + value, 0) / counted.length;
-  const variance = counted.reduce((sum, value) => sum + (value - mean) ** 2, 0);
+  const samples = op.length;
+  const from = Math.floor(FORGOTTEN * samples);
+  const count = samples - from;
   let low = Number.POSITIVE_INFINITY;
   let high = Number.NEGATIVE_INFINITY;
   for (const value of op) {
     low = Math.min(low, value);
     high = Math.max(high, value);
   }
-  if (!(variance > 1e-9 * counted.length) || !(high > low)) return null;
+  const opMean = mean(op.subarray(from));
+  const travelMean = mean(travel.subarray(from));
+  // Sums from `from` to before sample k: a piece of the element's travel then costs the same at any length.
+  const sumT = new Float64Array(samples + 1);
+  const sumU = new Float64Array(samples + 1);
+  const sumTT = new Float64Array(samples + 1);
+  const sumUU = new Float64Array(samples + 1);
+  const sumUT = new Float64Array(samples + 1);
+  for (let k = from; k < samples; k++) {
+    const t = travel[k] - travelMean;
+    const u = op[k] - opMean;
+    sumT[k + 1] = sumT[k] + t;
+    sumU[k + 1] = sumU[k] + u;
+    sumTT[k + 1] = sumTT[k] + t * t;
+    sumUU[k + 1] = sumUU[k] + u * u;
+    sumUT[k + 1] = sumUT[k] + u * t;
+  }
+  const variance = sumTT[samples];
+  if (!(variance > 1e-9 * count) || !(high > low)) return null;
 
-  const pieces = createTravelPieces(op.length);
-  const modelled = new Float64Array(op.length);
+  const pieces = createTravelPieces(samples);
   const at = (model: ValveModel, S: number, ratio: number): Point => {
     walkTwoParameter(op, S, ratio * S, model === 'slides-on', TOLERANCE * S, 0, travel[0], pieces);
-    travelFromPieces(pieces, op, modelled);
     let sum = 0;
     let squares = 0;
-    for (let k = from; k < op.length; k++) {
-      const off = modelled[k] - travel[k];
-      sum += off;
-      squares += off * off;
+    for (let i = 0; i < pieces.count; i++) {
+      const b = i + 1 < pieces.count ? pieces.from[i + 1] : samples;
+      if (b <= from) continue;
+      const a = Math.max(from, pieces.from[i]);
+      const slope = pieces.slope[i];
+      const offset = pieces.offset[i] + slope * opMean - travelMean;
+      const t = sumT[b] - sumT[a];
+      const tt = sumTT[b] - sumTT[a];
+      // Sum of offset + slope u - t over the piece, and of its square; slope is 0 or 1.
+      const u = slope * (sumU[b] - sumU[a]);
+      const uu = slope * (sumUU[b] - sumUU[a]);
+      const ut = slope * (sumUT[b] - sumUT[a]);
+      sum += offset * (b - a) + u - t;
+      squares += offset * offset * (b - a) + uu + tt + 2 * (offset * (u - t) - ut);
     }
-    return { model, S, ratio, misfit: (squares - (sum * sum) / counted.length) / variance };
+    return { model, S, ratio, misfit: (squares - (sum * sum) / count) / variance };
   };
 
   const best: Point[] = [];
@@ -122,4 +142,8 @@ function polished(start: Point, at: (model: ValveModel, S: number, ratio: number
     else here = next;
   }
   return here;
+}
+
+function mean(values: Float64Array): number {
+  return values.reduce((sum, value) => sum + value, 0) / values.length;
 }
