@@ -1,5 +1,5 @@
 /** `stickband assess`: one loop from a file to the answer, the numbers, the notebook and the page. */
-import { dirname, resolve } from 'node:path';
+import { basename, dirname, extname, resolve } from 'node:path';
 import type { AnswerCard } from '../assessment/answer-card';
 import { type AssessOptions, assessLoop } from '../assessment/assess-loop';
 import { answerCard } from '../assessment/make-answer-card';
@@ -82,7 +82,7 @@ export async function assess(words: readonly string[], output: Output): Promise<
       rendered = await renderNotebook(bundledNotebook('assess-one-loop.ipynb'), {
         jupyter,
         folder,
-        name: fileName(record.loop),
+        name: resultName(file, record.loop),
         title: `${record.loop}: what makes this loop cycle?`,
         file,
         parameters: { reading, assessing },
@@ -151,7 +151,9 @@ function stated<Options extends object>(options: Options): Options {
   return Object.fromEntries(Object.entries(options).filter(([, value]) => value !== undefined)) as Options;
 }
 
-/** A tag as a file name. */
-function fileName(tag: string): string {
-  return tag.replace(/[^\p{L}\p{N}._-]+/gu, '-').replace(/^[.-]+/, '') || 'loop';
+/** Name of the results: that of the file, with the tag when the file is not called after it. */
+function resultName(file: string, tag: string): string {
+  const name = basename(file, extname(file));
+  const whole = name.includes(tag) ? name : `${name}-${tag}`;
+  return whole.replace(/[^\p{L}\p{N}._-]+/gu, '-').replace(/^[.-]+/, '') || 'loop';
 }

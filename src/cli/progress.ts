@@ -26,7 +26,7 @@ function movingBar(stream: NodeJS.WriteStream): Progress {
 function plainLines(stderr: Output['stderr']): Progress {
   let last = '';
   const show = (step: string): void => {
-    if (step !== last) stderr.write(`${step}\n`);
+    if (step !== last && step !== 'done') stderr.write(`${step} ...\n`);
     last = step;
   };
   return Object.assign(show, { stop: () => {} });

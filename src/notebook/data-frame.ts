@@ -31,16 +31,18 @@ export async function dataFrame(table: Table): Promise<DataFrame> {
     );
   }
   const danfo = await import('danfojs');
-  const columns = Object.fromEntries(table.columns.map(({ name, values }) => [name, [...values]]));
-  return new danfo.DataFrame(columns);
+  const count = table.columns[0]?.values.length ?? 0;
+  // From rows, because danfo cannot make an empty frame from columns.
+  const rows = Array.from({ length: count }, (_, row) => table.columns.map(({ values }) => values[row]!));
+  return new danfo.DataFrame(rows, { columns: table.columns.map(({ name }) => name) });
 }
 
 /** A data frame as a plain table. */
-export function tableOf(frame: FrameLike): Table {
+export function tableOf(frame: FrameLike, title: string): Table {
   const rows = frame.values as TableValue[][];
   const columns = frame.columns.map((name, place) => ({
     name,
     values: rows.map((row) => row[place] ?? null),
   }));
-  return { title: 'Data frame', columns };
+  return { title, columns };
 }

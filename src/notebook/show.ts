@@ -3,6 +3,7 @@
 import { cautions } from '../assessment/cautions';
 import type { Findings } from '../assessment/findings';
 import { answerCard } from '../assessment/make-answer-card';
+import { refuseUnknownOptions } from '../errors';
 import type { Figure } from '../figures/figure';
 import { answerHtml, stepHtml } from '../report/answer-html';
 import { figureHtml } from '../report/figure-html';
@@ -27,7 +28,10 @@ export async function showAnswer(findings: Findings): Promise<void> {
   await showHtml(answerHtml(answerCard(findings)));
 }
 
-/** Shows one figure, or several side by side where there is room. null, which says that a figure has nothing to draw, is left out. */
+/**
+ * Shows one figure, or several side by side where there is room. null, which says that a figure has nothing to
+ * draw, is left out.
+ */
 export async function showFigure(...figures: (Figure | null)[]): Promise<void> {
   const drawn = figures.filter((figure) => figure !== null);
   if (drawn.length === 0) return showHtml('<p>No figure: the record gave nothing to draw here.</p>');
@@ -36,9 +40,20 @@ export async function showFigure(...figures: (Figure | null)[]): Promise<void> {
   await showHtml(drawn.length > 1 ? `<div class="sb-row">${shown}</div>` : shown);
 }
 
-/** Shows at most `rows` rows (default 40) of a table or a danfo data frame. */
-export async function showTable(table: Table | FrameLike, rows: number = 40): Promise<void> {
-  await showHtml(tableHtml('title' in table ? table : tableOf(table), rows));
+export interface ShowTableOptions {
+  /** Rows shown at most; the rest is counted. Default 40. */
+  readonly rows?: number;
+  /** Title above the table. Default: the table's own, or `Data frame`. */
+  readonly title?: string;
+}
+
+/** Shows a table or a danfo data frame. Throws WrongUse for an unknown option. */
+export async function showTable(table: Table | FrameLike, options: ShowTableOptions = {}): Promise<void> {
+  refuseUnknownOptions('showTable', options, ['rows', 'title']);
+  const { rows = 40, title } = options;
+  const shown =
+    'title' in table ? { ...table, title: title ?? table.title } : tableOf(table, title ?? 'Data frame');
+  await showHtml(tableHtml(shown, rows));
 }
 
 /** Shows why the cause was named, what was ruled out, what else may contribute, and why numbers were refused. */

@@ -35,18 +35,26 @@ export function fitnessTable(findings: Findings): Table {
   return tableFrom('Fitness of the record', names, rows);
 }
 
-/** Dead band, slip jump and the parts of the process found with them, each with the ends of its 90 % interval. */
+/** Dead band and slip jump with the ends of their 90 % intervals, and the process that was found with them. */
 export function estimateTable(findings: Findings): Table {
   const fit = findings.stiction.fit;
-  const row = (what: string, estimate: Estimate) => ({
-    what,
-    value: estimate.value,
-    low: estimate.low,
-    high: estimate.high,
-    unit: estimate.unit,
-  });
-  const rows = fit ? [row('S, dead band as tested on reversal', fit.S)] : [];
-  if (fit?.J) rows.push(row('J, slip jump (resolution)', fit.J));
+  const rows: Record<'what' | 'value' | 'low' | 'high' | 'unit', string | number | null>[] = [];
+  const add = (what: string, { value, low, high, unit }: Estimate): number =>
+    rows.push({ what, value, low, high, unit });
+  const addBare = (what: string, value: number | null, unit: string): number =>
+    rows.push({ what, value, low: null, high: null, unit });
+  if (fit) {
+    add('S, dead band as tested on reversal', fit.S);
+    if (fit.J) add('J, slip jump (resolution)', fit.J);
+    else addBare('J, slip jump (resolution): not resolved', null, fit.S.unit);
+    const pvUnit = findings.record.pvUnit || 'PV unit';
+    if (fit.process) {
+      const { gain, lag, deadTime, response } = fit.process;
+      addBare('process gain', gain, response === 'integrating' ? `${pvUnit} per % and s` : `${pvUnit} per %`);
+      if (lag !== null) addBare('process lag', lag, 's');
+      addBare('process dead time', deadTime, 's');
+    }
+  }
   return tableFrom('What was estimated, with 90 % intervals', ['what', 'value', 'low', 'high', 'unit'], rows);
 }
 

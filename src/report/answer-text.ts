@@ -1,5 +1,6 @@
 /** The answer card as plain text for a terminal. */
 import type { AnswerCard, Decision } from '../assessment/answer-card';
+import type { NextStep } from '../assessment/assessment';
 
 /** The decision in a word or three, as a label beside the sentence. */
 export const decisionWords: Readonly<Record<Decision, string>> = {
@@ -24,7 +25,7 @@ export function answerText(card: AnswerCard, width: number = 92): string {
     figures,
     bullets('Why', card.reasons, width),
     bullets('Ruled out', card.ruledOut, width),
-    test ? bullets('The test that decides', [test.do, test.why, test.caution].filter(Boolean), width) : [],
+    test ? testLines(test, width) : [],
     card.workRequest ? ['Work request, to copy', ...wrapped(card.workRequest, width, '  ')] : [],
     ['The record', ...wrapped(card.record, width, '  ')],
     bullets('Cautions', card.cautions, width),
@@ -33,6 +34,11 @@ export function answerText(card: AnswerCard, width: number = 92): string {
     .filter((lines) => lines.length > 0)
     .map((lines) => lines.join('\n'))
     .join('\n\n');
+}
+
+function testLines(test: NextStep, width: number): string[] {
+  const caution = test.caution ? wrapped(`Caution: ${test.caution}`, width, '  ') : [];
+  return ['The test that decides', ...wrapped(`${test.do} ${test.why}`, width, '  '), ...caution];
 }
 
 function bullets(title: string, sentences: readonly string[], width: number): string[] {

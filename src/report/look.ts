@@ -16,10 +16,9 @@ export const componentStyle: string = `
 .sb-cause { font-size: 1.08rem; }
 .sb-part { margin-top: .9rem; }
 .sb-columns { display: grid; grid-template-columns: repeat(auto-fit, minmax(min(20rem, 100%), 1fr)); gap: 0 2rem; }
-.sb-card table.sb-tiles, .sb-tiles tbody { display: grid; grid-template-columns: repeat(auto-fill, minmax(min(13rem, 100%), 1fr));
-  gap: 1px; width: 100%; margin: .9rem 0 0; border: 0; }
-.sb-card table.sb-tiles { display: block; }
-.sb-card .sb-tiles tr { display: block; background: #f7f5f0; padding: .5rem .7rem; }
+.sb-card table.sb-tiles { display: block; width: 100%; margin: .9rem 0 0; border: 0; }
+.sb-tiles tbody { display: flex; flex-wrap: wrap; gap: 1px; }
+.sb-card .sb-tiles tr { display: block; flex: 1 1 13rem; background: #f7f5f0; padding: .5rem .7rem; }
 .sb-card .sb-tiles th, .sb-card .sb-tiles td { display: block; padding: 0; border: 0; text-align: left; background: none; }
 .sb-card .sb-tiles th { font-size: .82rem; font-weight: 400; color: ${palette.faint}; }
 .sb-card .sb-tiles .sb-value { font-size: 1.12rem; font-weight: 600; color: ${palette.ink}; }
@@ -28,21 +27,29 @@ export const componentStyle: string = `
   border: 1px dashed #b9b3a5; color: ${palette.ink}; }
 .sb-caution, .sb-cautions { background: ${palette.stampGround}; border-left: 3px solid ${palette.stampEdge}; padding: .5rem .8rem; }
 .sb-card .sb-caution, .sb-steps .sb-caution { margin: 0; } .sb-steps li { margin-bottom: 1rem; max-width: 46rem; } .sb-steps p { margin: 0 0 .4rem; } .sb-cautions ul:last-child { margin: 0; }
-.sb-card table.sb-signatures { width: 100%; margin: 1.2rem 0 0; border: 0; font-size: .85rem; color: ${palette.faint}; }
-.sb-card .sb-signatures th { font-weight: 400; text-align: left; width: 6rem; padding: 0; border: 0; }
-.sb-card .sb-signatures td { border: 0; border-bottom: 1px solid ${palette.faint}; height: 1.4rem; min-width: 6rem; }
+.sb-card table.sb-signatures, .sb-signatures tbody { display: block; width: 100%; border: 0; font-size: .85rem; color: ${palette.faint}; }
+.sb-signatures tr { display: flex; flex-wrap: wrap; gap: .2rem .6rem; margin-top: 1.2rem; background: none; }
+.sb-card .sb-signatures th { font-weight: 400; padding: 0; border: 0; }
+.sb-card .sb-signatures td { flex: 1 1 11rem; border: 0; border-bottom: 1px solid ${palette.faint}; height: 1.4rem; }
 .sb-row { display: grid; grid-template-columns: repeat(auto-fit, minmax(min(24rem, 100%), 1fr)); gap: 0 1rem; }
-.sb-figure { margin: 0 0 1.2rem; min-width: 0; color: ${palette.ink}; }
-.sb-figure figcaption { font-size: .92rem; color: ${palette.faint}; max-width: 46rem; }
+.sb-figure { margin: 0 0 1.2rem; min-width: 0; color: ${palette.ink}; background: ${palette.paper}; border: 1px solid ${palette.grid}; }
+.sb-figure figcaption { font-size: .92rem; color: ${palette.faint}; max-width: 48rem; padding: .2rem .8rem .7rem; }
 .sb-plot { display: none; width: 100%; } .sb-drawn .sb-plot { display: block; }
 .sb-picture { max-width: 100%; height: auto; } .sb-shown .sb-picture { display: none; }
 .sb-table { overflow-x: auto; margin: 0 0 1.2rem; }
 .sb-table table { border-collapse: collapse; font-size: .9rem; color: ${palette.ink}; }
-.sb-table caption { text-align: left; font-weight: 600; padding-bottom: .3rem; }
+.sb-table caption { text-align: left; padding-bottom: .3rem; }
 .sb-table th, .sb-table td { text-align: left; vertical-align: top; padding: .25rem .9rem .25rem 0; border: 0;
   border-bottom: 1px solid ${palette.grid}; background: none; max-width: 32rem; }
 .sb-table thead th { border-bottom: 1px solid ${palette.faint}; font-weight: 600; }
+.sb-table td { overflow-wrap: break-word; }
 .sb-table .sb-number { text-align: right; font-variant-numeric: tabular-nums; }
+@media screen and (max-width: 600px) {
+  .sb-wide table, .sb-wide tbody, .sb-wide tr, .sb-wide td { display: block; } .sb-wide thead { display: none; }
+  .sb-wide tr { border-bottom: 1px solid ${palette.faint}; padding: .4rem 0; }
+  .sb-table.sb-wide td { border: 0; padding: 0; text-align: left; } .sb-wide td:first-child { font-weight: 600; }
+  .sb-wide td + td::before { content: attr(data-column) ": "; color: ${palette.faint}; } .sb-wide td:empty { display: none; }
+}
 @media print {
   .sb-card { border-radius: 0; } .sb-figure, .sb-part, .sb-table tr { break-inside: avoid; }
   .sb-plot, .sb-drawn .sb-plot { display: none; } .sb-shown .sb-picture, .sb-picture { display: block; }

@@ -10,7 +10,7 @@ import nbformat
 from nbclient import NotebookClient
 from nbclient.exceptions import CellExecutionError, CellTimeoutError, DeadKernelError
 
-notebook = nbformat.from_dict(json.load(sys.stdin))
+notebook = nbformat.reads(sys.stdin.read(), as_version=4)
 current = {"cell": 0}
 
 
@@ -35,4 +35,4 @@ except CellExecutionError as error:
     failed = {"cell": current["cell"], "text": str(error.evalue or "")}
 except (CellTimeoutError, DeadKernelError) as error:
     failed = {"cell": current["cell"], "text": str(error)}
-json.dump({"notebook": notebook, "failed": failed}, sys.stdout)
+json.dump({"notebook": json.loads(nbformat.writes(notebook)), "failed": failed}, sys.stdout)

@@ -2,6 +2,7 @@
 import { spawnSync } from 'node:child_process';
 import { existsSync } from 'node:fs';
 import { delimiter, join } from 'node:path';
+import { type Browser, chromium } from 'playwright-core';
 import { MissingTool } from '../../src/errors';
 import { canInstallDebianPackages, installDebianPackages } from '../../src/report/debian-packages';
 
@@ -46,4 +47,13 @@ export function ensureBrowser(say: (line: string) => void): string {
       'Install one, or name its program in the variable CHROME; on Debian, root can run ' +
       '"apt-get install chromium fonts-dejavu-core".',
   );
+}
+
+/** Starts the browser without a window; its profile is a throw-away of playwright's own. */
+export function startBrowser(): Promise<Browser> {
+  return chromium.launch({
+    executablePath: ensureBrowser(() => {}),
+    headless: true,
+    args: ['--no-sandbox', '--disable-gpu', '--no-first-run', '--disable-background-networking'],
+  });
 }

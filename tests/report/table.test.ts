@@ -13,9 +13,9 @@ const table = Object.freeze({
 describe('a table as HTML', () => {
   it('shows four significant digits, dashes for null, words for truth, and escapes text', () => {
     const html = tableHtml(table);
-    expect(html).toContain('<td class="sb-number">61.23</td>');
-    expect(html).toContain('<td>–</td>');
-    expect(html).toContain('<td>no</td>');
+    expect(html).toContain('<td class="sb-number" data-column="from, s">61.23</td>');
+    expect(html).toContain('>–</td>');
+    expect(html).toContain('>no</td>');
     expect(html).toContain('a &amp; b');
     expect(html).toContain('Cycles &lt;all&gt;');
   });

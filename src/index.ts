@@ -1,0 +1,82 @@
+/**
+ * The public face of stickband: everything a notebook or a program calls. `readLoop` and `assessLoop` are the whole
+ * way; the functions between them can be called one by one.
+ */
+export type { AnswerCard, Decision } from './assessment/answer-card';
+export { type AssessOptions, assessLoop } from './assessment/assess-loop';
+export type {
+  Assessment,
+  Cause,
+  ControllerFound,
+  Evidence,
+  NextStep,
+  Verdict,
+} from './assessment/assessment';
+export { cautions } from './assessment/cautions';
+export type { Findings } from './assessment/findings';
+export { answerCard } from './assessment/make-answer-card';
+export { type CauseInput, nameCause } from './cause/name-cause';
+export { MissingTool, StickbandError, UnreadableInput, UnwritableOutput, WrongUse } from './errors';
+export { type FitOptions, fitStiction } from './estimate/fit-stiction';
+export type {
+  Estimate,
+  FoundProcess,
+  MisfitMap,
+  Slip,
+  StictionFit,
+  StictionResult,
+  ValveTest,
+} from './estimate/stiction-fit';
+export { cycleFigure } from './figures/cycle-figure';
+export { evidenceFigure } from './figures/evidence-figure';
+export type { Figure } from './figures/figure';
+export { fitFigure } from './figures/fit-figure';
+export { misfitFigure } from './figures/misfit-figure';
+export { phaseFigure } from './figures/phase-figure';
+export { travelFigure } from './figures/travel-figure';
+export { trendFigure } from './figures/trend-figure';
+export { valveLoopFigure } from './figures/valve-loop-figure';
+export { canMakeDataFrames, dataFrame } from './notebook/data-frame';
+export { demoFile } from './notebook/demo-file';
+export {
+  showAnswer,
+  showCautions,
+  showFigure,
+  showNextSteps,
+  showReasons,
+  showSetUp,
+  showTable,
+} from './notebook/show';
+export {
+  cycleTable,
+  estimateTable,
+  evidenceTable,
+  fitnessTable,
+  noteTable,
+  provenanceTable,
+  slipTable,
+} from './notebook/tables';
+export type { Cycle, SingleCycle } from './oscillation/cycle';
+export { findCycle } from './oscillation/find-cycle';
+export { type LoopOptions, type LoopRun, simulateLoop } from './process/closed-loop';
+export type { ControllerOptions } from './process/controller';
+export { type LinearProcessOptions, simulateProcess } from './process/linear-process';
+export { type ControllerReading, readController } from './process/read-controller';
+export { checkRecord } from './record/check-record';
+export type { Fitness, FitnessCheck } from './record/fitness';
+export type { LoggingFacts, LoopRecord, Note, Range, Response, Service } from './record/loop-record';
+export { type ReadLoopOptions, readLoop } from './record/read-loop';
+export { answerText } from './report/answer-text';
+export { staticPictures } from './report/static-picture';
+export type { Table, TableValue } from './report/table';
+export {
+  type FrictionLaw,
+  type FrictionPoint,
+  measuredFriction,
+  relayFriction,
+  stepDownFriction,
+  stribeckFriction,
+} from './valve/friction-law';
+export { type StemOptions, simulateStem } from './valve/stem';
+export { type TwoParameterOptions, twoParameterValve, type ValveModel } from './valve/two-parameter';
+export { version } from './version';
