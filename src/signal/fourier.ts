@@ -33,6 +33,7 @@ export function nextPowerOfTwo(length: number): number {
 export function forwardTransform(values: Float64Array): HalfSpectrum {
   const n = values.length;
   if (n === 0) throw new WrongUse('A Fourier transform needs at least one value. Received none.');
+  if (n >= 4 && n === nextPowerOfTwo(n)) return packedTransform(values);
   const full = complexTransform(values, null);
   const bins = Math.floor(n / 2) + 1;
   return { re: full.re.slice(0, bins), im: full.im.slice(0, bins) };
@@ -51,6 +52,7 @@ export function inverseTransform(spectrum: HalfSpectrum, length: number): Float6
       `A signal of ${length} samples has a half spectrum of ${bins} values. Received ${spectrum.re.length} real and ${spectrum.im.length} imaginary parts.`,
     );
   }
+  if (length >= 4 && length === nextPowerOfTwo(length)) return packedInverse(spectrum, length);
   // The inverse is the forward transform of the conjugate, conjugated; the result is real.
   const re = new Float64Array(length);
   const im = new Float64Array(length);
@@ -84,6 +86,53 @@ export function powerSpectrum(values: Float64Array, samplePeriod: number): Power
     return ((once ? 1 : 2) * (real * real + im[k]! * im[k]!)) / (n * n);
   });
   return { frequency, power };
+}
+
+/**
+ * A real signal of 2 m samples as one complex transform of m: even samples are the real, odd ones the imaginary part,
+ * and the two spectra are told apart by their symmetry (Cooley, Lewis, Welch 1970, J. Sound Vib. 12:315-337).
+ */
+function packedTransform(values: Float64Array): HalfSpectrum {
+  const m = values.length / 2;
+  const packed = transformed(values);
+  const re = new Float64Array(m + 1);
+  const im = new Float64Array(m + 1);
+  for (let k = 0; k <= m; k++) {
+    const here = 2 * (k % m);
+    const there = 2 * ((m - k) % m);
+    const evenRe = (packed[here]! + packed[there]!) / 2;
+    const evenIm = (packed[here + 1]! - packed[there + 1]!) / 2;
+    const oddRe = (packed[here + 1]! + packed[there + 1]!) / 2;
+    const oddIm = (packed[there]! - packed[here]!) / 2;
+    const c = Math.cos((Math.PI * k) / m);
+    const s = Math.sin((Math.PI * k) / m);
+    re[k] = evenRe + c * oddRe + s * oddIm;
+    im[k] = evenIm + c * oddIm - s * oddRe;
+  }
+  return { re, im };
+}
+
+/** Undoes {@link packedTransform}. */
+function packedInverse({ re, im }: HalfSpectrum, length: number): Float64Array {
+  const m = length / 2;
+  const packed = new Float64Array(length);
+  for (let k = 0; k < m; k++) {
+    const ownIm = k === 0 ? 0 : im[k]!;
+    const otherIm = k === 0 ? 0 : im[m - k]!;
+    const evenRe = (re[k]! + re[m - k]!) / 2;
+    const evenIm = (ownIm - otherIm) / 2;
+    const differenceRe = (re[k]! - re[m - k]!) / 2;
+    const differenceIm = (ownIm + otherIm) / 2;
+    const c = Math.cos((Math.PI * k) / m);
+    const s = Math.sin((Math.PI * k) / m);
+    const oddRe = c * differenceRe - s * differenceIm;
+    const oddIm = c * differenceIm + s * differenceRe;
+    packed[2 * k] = evenRe - oddIm;
+    packed[2 * k + 1] = evenIm + oddRe;
+  }
+  const out = new Float64Array(length);
+  plan(m).inverseTransform(out, packed);
+  return out;
 }
 
 /** Full transform of a complex signal; a missing imaginary part is zero. */
