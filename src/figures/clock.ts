@@ -11,7 +11,7 @@ export interface RecordClock {
    * the time that the clock on the wall showed. A change to or from summer time within the record is not followed.
    */
   at(seconds: number): number;
-  /** The same as text, `06:00:00`. */
+  /** The same as text, `06:00`; with seconds where the record is shorter than 20 minutes. */
   text(seconds: number): string;
 }
 
@@ -25,10 +25,11 @@ export function recordClock(record: LoopRecord): RecordClock {
   }
   const wall = start.setZone('utc', { keepLocalTime: true }).toMillis();
   const zoned = /(Z|[+-]\d\d:?\d\d)$/i.test(record.start);
+  const form = record.pv.length * record.samplePeriod < 1200 ? 'HH:mm:ss' : 'HH:mm';
   const at = (seconds: number): number => wall + Math.round(seconds * 1000);
   return {
     title: zoned ? `clock time (${start.offset === 0 ? 'UTC' : start.toFormat("'UTC'ZZ")})` : 'clock time',
     at,
-    text: (seconds) => DateTime.fromMillis(at(seconds), { zone: 'utc' }).toFormat('HH:mm:ss'),
+    text: (seconds) => DateTime.fromMillis(at(seconds), { zone: 'utc' }).toFormat(form),
   };
 }

@@ -4,8 +4,8 @@ import { duration } from '../assessment/make-answer-card';
 import { recordCaveats } from './caveats';
 import type { Figure } from './figure';
 import { axis, axisTitle, makeFigure, panelName } from './layout';
-import { fontSize, lineWidth, palette } from './palette';
-import { plain, short } from './plain-numbers';
+import { lineWidth, palette } from './palette';
+import { plain } from './plain-numbers';
 import { thin } from './thin';
 
 /** Periods of the autocorrelation shown: enough to see whether it dies away. */
@@ -24,27 +24,20 @@ export function cycleFigure(findings: Findings): Figure {
   const scale = inMinutes ? 1 / 60 : 1;
   const unit = inMinutes ? 'min' : 's';
 
-  const regular =
-    opCycle.regularity === null ? '' : ` Regularity ${short(opCycle.regularity)} (above 1 is regular).`;
-  const more = others.length === 0 ? '' : ` Further periods: ${others.map(duration).join(', ')}.`;
-  const annotations: object[] = [
-    panelName('autocorrelation of OP', 'y'),
-    panelName('power of OP, share of the largest', 'y2'),
-  ];
+  const more = others.length === 0 ? '' : ` Further periods (dotted): ${others.map(duration).join(', ')}.`;
+  const named = period === null ? '' : `; line: ${duration(period)}`;
   const shapes: object[] = [];
   if (period !== null) {
-    annotations.push(periodLabel(period * scale, 'x', 'y', `period ${duration(period)}`));
-    annotations.push(periodLabel(Math.log10(period * scale), 'x2', 'y2', duration(period)));
     shapes.push(
       periodLine(period * scale, 'x', 'y', 'solid'),
       periodLine(period * scale, 'x2', 'y2', 'solid'),
     );
-    for (const other of others) shapes.push(periodLine(other * scale, 'x2', 'y2', 'dot'));
   }
+  for (const other of others) shapes.push(periodLine(other * scale, 'x2', 'y2', 'dot'));
   return makeFigure({
     id: 'cycle',
     title: `${record.loop}: is there a cycle?`,
-    caption: `${opCycle.why}${regular}${more} Above, a cycle that repeats shows as a wave that hardly dies away; below, as one tall narrow peak at its period.`,
+    caption: `${opCycle.why}${more} Above, a cycle that repeats shows as a wave that hardly dies away; below, as one tall narrow peak at its period.`,
     alt: `Autocorrelation and spectrum of OP of ${record.loop}. ${period === null ? 'No cycle is called.' : `Period ${duration(period)}, ${opCycle.cycles} cycles.`}${more}`,
     caveats: recordCaveats(findings),
     data: [
@@ -72,17 +65,20 @@ export function cycleFigure(findings: Findings): Figure {
         hovertemplate: `%{y:.2f} at %{x:.4g} ${unit}<extra></extra>`,
       },
     ],
-    annotations,
+    annotations: [
+      panelName(`autocorrelation of OP${named}`, 'y'),
+      panelName(`power of OP, share of the largest${named}`, 'y2'),
+    ],
     layout: {
       xaxis: axis({ anchor: 'y', title: axisTitle(`lag, ${unit}`), rangemode: 'tozero' }),
       xaxis2: axis({
         anchor: 'y2',
         type: 'log',
         title: axisTitle(`period, ${unit} (log scale)`),
-        dtick: 'D2',
+        ...decades(power.period, scale),
       }),
-      yaxis: axis({ domain: [0.62, 1], range: [-1.05, 1.05], zeroline: true, zerolinecolor: palette.grid }),
-      yaxis2: axis({ anchor: 'x2', domain: [0, 0.36], range: [0, 1.12] }),
+      yaxis: axis({ domain: [0.6, 1], range: [-1.05, 1.05], zeroline: true, zerolinecolor: palette.grid }),
+      yaxis2: axis({ anchor: 'x2', domain: [0, 0.4], range: [0, 1.12] }),
       shapes,
     },
     height: 520,
@@ -115,6 +111,20 @@ function powerOverPeriod(
   };
 }
 
+/** Ticks at 1 and 3 of every decade, written out. */
+function decades(periods: readonly number[], scale: number): object {
+  const tickvals: number[] = [];
+  const last = scale * Math.max(...periods, 1);
+  for (
+    let decade = 10 ** Math.floor(Math.log10(scale * Math.min(...periods, 1)));
+    decade <= last;
+    decade *= 10
+  ) {
+    tickvals.push(Number(decade.toPrecision(1)), Number((3 * decade).toPrecision(1)));
+  }
+  return { tickvals, ticktext: tickvals.map(String) };
+}
+
 function periodLine(x: number, xref: string, y: string, dash: string): object {
   return {
     type: 'line',
@@ -125,21 +135,5 @@ function periodLine(x: number, xref: string, y: string, dash: string): object {
     y0: 0,
     y1: 1,
     line: { color: palette.ink, width: lineWidth.thin, dash },
-  };
-}
-
-function periodLabel(x: number, xref: string, y: string, text: string): object {
-  return {
-    x,
-    y: 1,
-    xref,
-    yref: `${y} domain`,
-    xanchor: 'left',
-    yanchor: 'top',
-    xshift: 3,
-    showarrow: false,
-    text,
-    font: { size: fontSize.small, color: palette.ink },
-    bgcolor: 'rgba(255,255,255,0.8)',
   };
 }

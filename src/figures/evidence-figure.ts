@@ -4,7 +4,7 @@ import type { Findings } from '../assessment/findings';
 import { withInterval } from '../assessment/make-answer-card';
 import { recordCaveats } from './caveats';
 import type { Figure } from './figure';
-import { axis, makeFigure, plainText, wrapped } from './layout';
+import { makeFigure, plainText, wrapped } from './layout';
 import { fontSize, palette } from './palette';
 import { short } from './plain-numbers';
 
@@ -13,7 +13,7 @@ type Says = Evidence['says'];
 /** Columns from left to right; shape and column say the same as the colour, so nothing hangs on colour alone. */
 const lanes: readonly { says: Says; name: string; symbol: string; color: string; filled: boolean }[] = [
   { says: 'not', name: 'not stiction', symbol: 'circle', color: palette.pv, filled: false },
-  { says: 'undecided', name: 'undecided', symbol: 'line-ew', color: palette.faint, filled: true },
+  { says: 'undecided', name: 'undecided', symbol: 'square', color: palette.faint, filled: false },
   { says: 'stiction', name: 'stiction', symbol: 'diamond', color: palette.op, filled: true },
   { says: 'skipped', name: 'skipped', symbol: 'x-thin', color: palette.faint, filled: true },
 ];
@@ -34,7 +34,7 @@ export function evidenceFigure(findings: Findings): Figure | null {
     fit === null
       ? 'fit: numbers withheld'
       : `fit: S ${withInterval(fit.S)}, J ${fit.J ? withInterval(fit.J) : 'not resolved'}`;
-  const lastRow = evidence.length + 0.8;
+  const lastRow = evidence.length + 0.65;
   const verdict = {
     text: `<b>Verdict: ${cause.verdict}</b><br>${plainText(fitText)}`,
     y: 0,
@@ -46,7 +46,7 @@ export function evidenceFigure(findings: Findings): Figure | null {
     verdict,
     ...evidence.map((item, i) => ({
       text: plainText(item.value === null ? item.indicator : `${item.indicator}: ${short(item.value)}`),
-      y: i + 1.3,
+      y: i + 1.15,
       says: item.says,
       why: item.value === null ? item.why : `${item.why} (${item.threshold})`,
       size: 12,
@@ -65,6 +65,7 @@ export function evidenceFigure(findings: Findings): Figure | null {
       marker: {
         symbol: lane.symbol,
         size: here.map((row) => row.size),
+        opacity: 1,
         color: lane.filled ? lane.color : palette.paper,
         line: { color: lane.color, width: 2.4 },
       },
@@ -105,8 +106,8 @@ export function evidenceFigure(findings: Findings): Figure | null {
       })),
     ],
     layout: {
-      xaxis: axis({ range: [-0.5, lanes.length - 0.5], visible: false, fixedrange: true }),
-      yaxis: axis({ range: [lastRow, -0.75], visible: false, fixedrange: true }),
+      xaxis: { range: [-0.5, lanes.length - 0.5], visible: false, fixedrange: true },
+      yaxis: { range: [lastRow, -0.75], visible: false, fixedrange: true },
       shapes: rows.map((row) => ({
         type: 'line',
         xref: 'x',

@@ -1,12 +1,12 @@
 /** Measured and simulated PV over a few cycles, and below them the travel behind both. */
 import type { Findings } from '../assessment/findings';
-import { duration } from '../assessment/make-answer-card';
+import { duration, withInterval } from '../assessment/make-answer-card';
 import { fitCaveats } from './caveats';
 import { recordClock } from './clock';
 import type { Figure } from './figure';
-import { axis, axisTitle, makeFigure, panelName } from './layout';
+import { axis, makeFigure, panelName, timeAxis } from './layout';
 import { lineWidth, palette } from './palette';
-import { plain, short } from './plain-numbers';
+import { plain } from './plain-numbers';
 import { thin } from './thin';
 
 /** Cycles shown, from the middle of the record; a record with fewer is shown whole. */
@@ -49,26 +49,18 @@ export function fitFigure(findings: Findings): Figure | null {
     id: 'fit',
     title: `${record.loop}: how well the fit follows`,
     caption: `${part}. Over all of it valve and process explain ${share(fit.explainsPv)} of PV's movement, and the fitted valve alone ${share(fit.explains)} of the travel. Look for steps at the same moments and of the same size; a simulated line that is late, or smooth where PV steps, is a fit not to trust.`,
-    alt: `Measured and simulated PV of ${record.loop} from ${clock.text(first * samplePeriod)} over ${duration((wanted - 1) * samplePeriod)}; ${share(fit.explainsPv)} of PV's movement explained, ${share(fit.explains)} of the travel. S about ${short(fit.S.value)} %${stiction.fit === null ? ', withheld' : ''}.`,
+    alt: `Measured and simulated PV of ${record.loop} from ${clock.text(first * samplePeriod)} over ${duration((wanted - 1) * samplePeriod)}; ${share(fit.explainsPv)} of PV's movement explained, ${share(fit.explains)} of the travel.${stiction.fit === null ? '' : ` S ${withInterval(fit.S)}.`}`,
     caveats: fitCaveats(findings),
     data: [
-      trace('PV, measured', pv, 'y', { color: palette.pv, width: lineWidth.signal }),
-      trace('PV, simulated', fit.simulatedPv, 'y', {
-        color: palette.model,
-        width: lineWidth.strong,
-        dash: '6px,3px',
-      }),
+      { ...trace('PV, measured', pv, 'y', { color: palette.pv, width: 5 }), opacity: 0.4 },
+      trace('PV, simulated', fit.simulatedPv, 'y', { color: palette.model, width: lineWidth.signal }),
       trace('OP', record.op, 'y2', { color: palette.op, width: lineWidth.thin }),
-      trace(travelName, fit.travel, 'y2', { color: palette.travel, width: lineWidth.signal }),
-      trace('travel, fitted valve', fit.modelTravel, 'y2', {
-        color: palette.model,
-        width: lineWidth.strong,
-        dash: '2px,2px',
-      }),
+      { ...trace(travelName, fit.travel, 'y2', { color: palette.travel, width: 5 }), opacity: 0.4 },
+      trace('travel, fitted valve', fit.modelTravel, 'y2', { color: palette.model, width: lineWidth.signal }),
     ],
     annotations: [panelName(`PV${unit}`, 'y'), panelName('OP, % of span; travel, %', 'y2')],
     layout: {
-      xaxis: axis({ type: 'date', anchor: 'y2', title: axisTitle(clock.title), hoverformat: '%H:%M:%S' }),
+      xaxis: timeAxis(clock, 'y2'),
       yaxis: axis({ domain: [0.55, 1] }),
       yaxis2: axis({ domain: [0, 0.45] }),
     },

@@ -2,12 +2,12 @@
  * The look that every figure starts from: light ground, thin grid, the name of each axis written level above its
  * panel, the legend under the plot, caveats stamped above it. Widths follow the screen; it holds from 350 px up.
  */
+import type { RecordClock } from './clock';
 import type { Figure } from './figure';
 import { fontFamily, fontSize, palette } from './palette';
 
 export interface FigureParts {
   readonly id: string;
-  /** At most 40 characters, or a narrow screen cuts it. */
   readonly title: string;
   readonly caption: string;
   readonly alt: string;
@@ -24,18 +24,32 @@ export interface FigureParts {
   readonly legend?: boolean;
 }
 
-/** Room in CSS pixels above the topmost panel: its own name, a line of caveats, the title. */
+/** Room in CSS pixels above the topmost panel: for its own name, a line of caveats, a line of the title. */
 const panelNameHeight = 24;
 const stampLineHeight = 16;
-const titleHeight = 34;
-/** Characters that fit beside the axis of a figure 350 px wide. */
+const titleLineHeight = 20;
+/** Characters a line that fit into a figure 350 px wide. */
 const stampWidth = 44;
+const titleWidth = 36;
+
+const legendBelow = {
+  orientation: 'h',
+  x: 0,
+  xanchor: 'left',
+  y: 0,
+  yref: 'container',
+  yanchor: 'bottom',
+  bgcolor: 'rgba(0,0,0,0)',
+  font: { size: fontSize.small },
+};
 
 export function makeFigure(parts: FigureParts): Figure {
   const { id, title, caption, alt, caveats, data, width = 640, legend = true } = parts;
   const lines = caveats.flatMap((caveat) => wrapped(caveat, stampWidth));
+  const titleLines = wrapped(title, titleWidth);
+  const titleHeight = 16 + titleLines.length * titleLineHeight;
   const stampHeight = lines.length > 0 ? lines.length * stampLineHeight + 12 : 0;
-  const height = parts.height + stampHeight;
+  const height = parts.height + stampHeight + (titleLines.length - 1) * titleLineHeight;
   const stamp = {
     xref: 'paper',
     yref: 'paper',
@@ -66,7 +80,7 @@ export function makeFigure(parts: FigureParts): Figure {
       paper_bgcolor: palette.paper,
       plot_bgcolor: palette.paper,
       title: {
-        text: `<b>${plainText(title)}</b>`,
+        text: `<b>${titleLines.map(plainText).join('<br>')}</b>`,
         font: { size: fontSize.title },
         x: 0,
         xref: 'container',
@@ -78,16 +92,7 @@ export function makeFigure(parts: FigureParts): Figure {
       },
       margin: { l: 14, r: 14, t: titleHeight + stampHeight + panelNameHeight, b: 14 },
       showlegend: legend,
-      legend: {
-        orientation: 'h',
-        x: 0,
-        xanchor: 'left',
-        y: 0,
-        yref: 'container',
-        yanchor: 'bottom',
-        bgcolor: 'rgba(0,0,0,0)',
-        font: { size: fontSize.small },
-      },
+      ...(legend ? { legend: legendBelow } : {}),
       hovermode: 'closest',
       dragmode: 'zoom',
       ...parts.layout,
@@ -113,9 +118,21 @@ export function axis(more: object): object {
     ticklen: 4,
     tickcolor: palette.faint,
     tickfont: { size: fontSize.small },
-    nticks: 6,
+    ...('tickvals' in more ? {} : { nticks: 6 }),
     ...more,
   };
+}
+
+/** A horizontal axis in clock time under the panel of the vertical axis `anchor`. */
+export function timeAxis(clock: RecordClock, anchor: string): object {
+  return axis({
+    type: 'date',
+    anchor,
+    title: axisTitle(clock.title),
+    hoverformat: '%H:%M:%S',
+    tickangle: 0,
+    nticks: 5,
+  });
 }
 
 /** Title of a horizontal axis. */

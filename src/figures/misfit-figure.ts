@@ -4,8 +4,8 @@ import { withInterval } from '../assessment/make-answer-card';
 import { fitCaveats } from './caveats';
 import type { Figure } from './figure';
 import { axis, axisTitle, makeFigure, panelName } from './layout';
-import { fontSize, lineWidth, misfitScale, palette } from './palette';
-import { plain, short } from './plain-numbers';
+import { fontSize, misfitScale, palette } from './palette';
+import { padded, plain, short } from './plain-numbers';
 
 /** null when nothing could be fitted. */
 export function misfitFigure(findings: Findings): Figure | null {
@@ -18,8 +18,8 @@ export function misfitFigure(findings: Findings): Figure | null {
   const lowest = Math.min(...tried);
   const highest = Math.max(...tried);
   const quoted = stiction.fit !== null;
-  const largest = { S: Math.max(...S), J: Math.max(...J) };
-  const notTried = `M0,0 L${largest.J},${largest.J} L0,${largest.J} Z`;
+  const largestJ = Math.max(...J);
+  const notTried = `M0,0 L${largestJ},${largestJ} L0,${largestJ} Z`;
   const data: object[] = [
     {
       type: 'contour',
@@ -27,28 +27,17 @@ export function misfitFigure(findings: Findings): Figure | null {
       y: plain(J),
       z: misfit.map((row) => row.map((value) => (value === null ? null : Number(value.toFixed(4))))),
       colorscale: misfitScale,
-      contours: { coloring: 'fill', showlines: true, ...levels(lowest, highest) },
-      line: { color: palette.paper, width: 0.6 },
-      connectgaps: true,
-      colorbar: {
-        orientation: 'h',
-        x: 0,
-        xanchor: 'left',
-        y: 0,
-        yref: 'container',
-        yanchor: 'bottom',
-        ypad: 4,
-        thickness: 10,
-        len: 1,
-        outlinewidth: 0,
-        nticks: 6,
-        tickfont: { size: fontSize.small },
-        title: {
-          text: 'share left unexplained (dark: the better pair)',
-          side: 'top',
-          font: { size: fontSize.small },
-        },
+      contours: {
+        coloring: 'fill',
+        showlines: true,
+        showlabels: true,
+        labelformat: '.3~p',
+        labelfont: { size: fontSize.small, color: palette.ink },
+        ...levels(lowest, highest),
       },
+      line: { color: palette.paper, width: 0.8 },
+      connectgaps: true,
+      showscale: false,
       hovertemplate: 'S %{x:.3g} %, J %{y:.3g} %<br>left unexplained %{z:.3f}<extra></extra>',
       showlegend: false,
     },
@@ -58,20 +47,20 @@ export function misfitFigure(findings: Findings): Figure | null {
       name: 'best pair',
       x: plain([fit.S.value]),
       y: plain([fit.jumpDrawn]),
-      marker: { symbol: 'diamond', size: 12, color: palette.model, line: { color: palette.paper, width: 2 } },
+      marker: { symbol: 'diamond', size: 12, color: palette.model, line: { color: palette.ink, width: 1.5 } },
       hovertemplate: 'best: S %{x:.3g} %, J %{y:.3g} %<extra></extra>',
     },
   ];
   if (quoted) {
     const low = fit.J?.low ?? 0;
-    const high = fit.J?.high ?? Math.min(fit.S.high, largest.J);
+    const high = fit.J?.high ?? Math.min(fit.S.high, largestJ);
     data.push({
       type: 'scatter',
       mode: 'lines',
       name: fit.J ? '90 % intervals of S and J' : '90 % interval of S; J not resolved',
       x: plain([fit.S.low, fit.S.high, fit.S.high, fit.S.low, fit.S.low]),
       y: plain([low, low, high, high, low]),
-      line: { color: palette.ink, width: lineWidth.strong, dash: '5px,3px' },
+      line: { color: palette.ink, width: 2, dash: '6px,3px' },
       hoverinfo: 'skip',
     });
   }
@@ -79,27 +68,22 @@ export function misfitFigure(findings: Findings): Figure | null {
   return makeFigure({
     id: 'misfit-map',
     title: `${record.loop}: which S and J fit`,
-    caption: `Each place is one pair of dead band S and slip jump J; the darker, the less it leaves unexplained. A small dark spot pins both numbers down, a long dark valley says that the record cannot tell pairs along it apart.`,
+    caption: `Each place is one pair of dead band S and slip jump J; the lines say what share of the movement it leaves unexplained, the darker the less. Pairs with J above S are not tried. A small dark spot pins both numbers down, a long dark valley says that the record cannot tell pairs along it apart.`,
     alt: `Map of the misfit of ${record.loop} over S and J, from ${short(lowest)} at the best pair to ${short(highest)}. ${quoted ? `S ${withInterval(fit.S)}, J ${jText}.` : 'Numbers are withheld.'}`,
     caveats: fitCaveats(findings),
     data,
-    annotations: [
-      panelName('slip jump J, %', 'y'),
-      {
-        x: 0.04,
-        y: 0.96,
-        xref: 'x domain',
-        yref: 'y domain',
-        xanchor: 'left',
-        yanchor: 'top',
-        showarrow: false,
-        text: 'J above S: not tried',
-        font: { size: fontSize.small, color: palette.faint },
-      },
-    ],
+    annotations: [panelName('slip jump J, %', 'y')],
     layout: {
-      xaxis: axis({ title: axisTitle('dead band S, % of OP span'), range: [Math.min(...S), largest.S] }),
-      yaxis: axis({ range: [Math.min(...J), largest.J] }),
+      xaxis: axis({
+        title: axisTitle('dead band S, % of OP span'),
+        range: padded(
+          Math.min(...S, quoted ? fit.S.low : fit.S.value),
+          Math.max(...S, quoted ? fit.S.high : fit.S.value),
+          0,
+          0,
+        ),
+      }),
+      yaxis: axis({ range: padded(0, Math.max(...J, quoted ? (fit.J?.high ?? 0) : 0), 0.03, 0.03) }),
       shapes: [
         { type: 'path', path: notTried, fillcolor: palette.paper, line: { width: 0 }, layer: 'above' },
       ],

@@ -46,12 +46,11 @@ export const timeScale: ColourScale = [
   [1, '#2a1747'],
 ];
 
-/** From a small value (dark) to a large one (light). */
+/** From a small value (dark) to a large one (light); ink stays readable on all of it. */
 export const misfitScale: ColourScale = [
-  [0, '#0d3b4f'],
-  [0.2, '#157f9e'],
-  [0.5, '#8fc0c9'],
-  [1, '#f3f1ea'],
+  [0, '#3f97ae'],
+  [0.3, '#8cc0cb'],
+  [1, '#f5f3ec'],
 ];
 
 /** Fonts of the reader's own machine: nothing is fetched, and a picture used as an image shows the same. */

@@ -4,19 +4,18 @@ import { recordCaveats } from './caveats';
 import { recordClock } from './clock';
 import type { Figure } from './figure';
 import { axis, axisTitle, makeFigure, panelName } from './layout';
-import { short } from './plain-numbers';
-import { leavesOut, timeColoured, timeStretches } from './time-stretches';
+import { extent, padded, short } from './plain-numbers';
+import { stretchesInWords, timeColoured, timeStretches } from './time-stretches';
 
 export function phaseFigure(findings: Findings): Figure {
   const { record, opCycle, assessment } = findings;
   const clock = recordClock(record);
   const stretches = timeStretches(record.op.length, record.samplePeriod, opCycle);
-  const { traces, coloraxis } = timeColoured(record.op, record.pv, stretches, clock, record.samplePeriod);
+  const traces = timeColoured(record.op, record.pv, stretches, clock, record.samplePeriod);
   const unit = record.pvUnit === '' ? '' : `, ${record.pvUnit}`;
-  const shown = leavesOut(stretches)
-    ? `${stretches.length} stretches spread over the record, early light, late dark.`
-    : 'Early in the record light, late dark.';
+  const shown = stretchesInWords(stretches);
   const { pvSwing, opSwing } = assessment.severity;
+  const range = extent(record.op);
   return makeFigure({
     id: 'phase-plot',
     title: `${record.loop}: PV against OP`,
@@ -25,9 +24,11 @@ export function phaseFigure(findings: Findings): Figure {
     caveats: recordCaveats(findings),
     data: traces,
     annotations: [panelName(`PV${unit}`, 'y')],
-    layout: { coloraxis, xaxis: axis({ title: axisTitle('OP, % of span') }), yaxis: axis({}) },
+    layout: {
+      xaxis: axis({ title: axisTitle('OP, % of span'), range: padded(range.low, range.high, 0.03, 0.03) }),
+      yaxis: axis({}),
+    },
     width: 460,
     height: 460,
-    legend: false,
   });
 }

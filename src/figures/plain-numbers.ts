@@ -30,3 +30,9 @@ export function short(value: number, digits = 3): string {
   const decimals = Math.min(12, Math.max(0, digits - 1 - Math.floor(Math.log10(Math.abs(value)))));
   return String(Number(value.toFixed(decimals)));
 }
+
+/** The range from `low` to `high` with room on either side, as shares of its size. */
+export function padded(low: number, high: number, below: number, above: number): (number | null)[] {
+  const size = high - low || Math.abs(high) || 1;
+  return plain([low - below * size, high + above * size]);
+}

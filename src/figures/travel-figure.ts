@@ -5,8 +5,8 @@ import { recordClock } from './clock';
 import type { Figure } from './figure';
 import { axis, axisTitle, makeFigure, panelName } from './layout';
 import { lineWidth, palette } from './palette';
-import { extent, plain, short } from './plain-numbers';
-import { leavesOut, timeColoured, timeStretches } from './time-stretches';
+import { extent, padded, plain, short } from './plain-numbers';
+import { stretchesInWords, timeColoured, timeStretches } from './time-stretches';
 
 /** null when travel was not logged. */
 export function travelFigure(findings: Findings): Figure | null {
@@ -15,15 +15,13 @@ export function travelFigure(findings: Findings): Figure | null {
   if (!travel) return null;
   const clock = recordClock(record);
   const stretches = timeStretches(op.length, samplePeriod, opCycle);
-  const { traces, coloraxis } = timeColoured(op, travel, stretches, clock, samplePeriod);
+  const traces = timeColoured(op, travel, stretches, clock, samplePeriod);
   const range = extent(op);
   const travelRange = extent(travel);
-  const shown = leavesOut(stretches)
-    ? `${stretches.length} stretches spread over the record, early light, late dark.`
-    : 'Early in the record light, late dark.';
+  const shown = stretchesInWords(stretches);
   return makeFigure({
     id: 'travel-plot',
-    title: `${record.loop}: measured travel against OP`,
+    title: `${record.loop}: travel against OP`,
     caption: `${shown} A free valve runs up and down the same line; level runs are OP moving without the valve, and their length on a reversal is the dead band.`,
     alt: `Measured travel of ${record.loop} against OP with time as colour: travel from ${short(travelRange.low)} to ${short(travelRange.high)} %, OP from ${short(range.low)} to ${short(range.high)} %.`,
     caveats: recordCaveats(findings),
@@ -41,9 +39,11 @@ export function travelFigure(findings: Findings): Figure | null {
       ...traces,
     ],
     annotations: [panelName('measured travel, %   (dashed: travel = OP)', 'y')],
-    layout: { coloraxis, xaxis: axis({ title: axisTitle('OP, % of span') }), yaxis: axis({}) },
+    layout: {
+      xaxis: axis({ title: axisTitle('OP, % of span'), range: padded(range.low, range.high, 0.03, 0.03) }),
+      yaxis: axis({ range: padded(travelRange.low, travelRange.high, 0.15, 0.15) }),
+    },
     width: 460,
     height: 460,
-    legend: false,
   });
 }

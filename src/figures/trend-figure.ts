@@ -5,29 +5,26 @@ import type { Slip } from '../estimate/stiction-fit';
 import { recordCaveats } from './caveats';
 import { type RecordClock, recordClock } from './clock';
 import type { Figure } from './figure';
-import { axis, axisTitle, makeFigure, panelName } from './layout';
+import { axis, makeFigure, panelName, timeAxis } from './layout';
 import { lineWidth, palette } from './palette';
 import { extent, plain, short } from './plain-numbers';
 import { thin } from './thin';
 
-/** Slips marked; of more, the largest. */
-const mostSlips = 400;
+/** Slips that can be marked without hiding OP. */
+const mostSlips = 200;
 
 export function trendFigure(findings: Findings): Figure {
-  const { record, stiction } = findings;
+  const { record } = findings;
   const { samplePeriod, pv, sp, op, travel } = record;
   const clock = recordClock(record);
   const seconds = (pv.length - 1) * samplePeriod;
-  const slips = [...(stiction.drawn?.slips ?? [])]
-    .sort((a, b) => Math.abs(b.size) - Math.abs(a.size))
-    .slice(0, mostSlips)
-    .sort((a, b) => a.sample - b.sample);
+  const { slips, words } = slipsToMark(findings);
 
   const data: object[] = [];
-  if (sp) data.push(signalTrace('SP', sp, 'y', palette.setPoint, clock, samplePeriod, 'dash'));
   data.push(signalTrace('PV', pv, 'y', palette.pv, clock, samplePeriod, 'solid'));
+  if (sp) data.push(signalTrace('SP', sp, 'y', palette.setPoint, clock, samplePeriod, 'dash'));
   if (travel)
-    data.push(signalTrace('measured travel', travel, 'y2', palette.travel, clock, samplePeriod, 'dot'));
+    data.push(signalTrace('measured travel', travel, 'y2', palette.travel, clock, samplePeriod, 'solid'));
   data.push(signalTrace('OP', op, 'y2', palette.op, clock, samplePeriod, 'solid'));
   const opens = slips.filter((slip) => slip.size > 0);
   const closes = slips.filter((slip) => slip.size < 0);
@@ -37,18 +34,11 @@ export function trendFigure(findings: Findings): Figure {
   const unit = record.pvUnit === '' ? '' : `, ${record.pvUnit}`;
   const pvExtent = extent(pv);
   const opExtent = extent(op);
-  const found = stiction.drawn?.slips.length ?? 0;
-  const marked =
-    found === 0
-      ? 'No slips are marked.'
-      : found > mostSlips
-        ? `The ${mostSlips} largest of ${found} slips of the fitted valve are marked on OP.`
-        : `${found} slips of the fitted valve are marked on OP.`;
   return makeFigure({
     id: 'trend',
     title: `${record.loop}: the record`,
-    caption: `PV${sp ? ' and SP' : ''} above, OP${travel ? ' and measured travel' : ''} below. ${marked} Where the assembly sticks, OP creeps on while PV holds, and PV moves only after a slip.`,
-    alt: `Trend of ${record.loop} over ${duration(seconds)} from ${clock.text(0)}: PV from ${short(pvExtent.low)} to ${short(pvExtent.high)}${unit === '' ? '' : ` ${record.pvUnit}`}, OP from ${short(opExtent.low)} to ${short(opExtent.high)} %, ${found} slips.`,
+    caption: `PV${sp ? ' and SP' : ''} above, OP${travel ? ' and measured travel' : ''} below. ${words} Where the assembly sticks, OP creeps on while PV holds, and PV moves only after a slip.`,
+    alt: `Trend of ${record.loop} over ${duration(seconds)} from ${clock.text(0)}: PV from ${short(pvExtent.low)} to ${short(pvExtent.high)}${unit === '' ? '' : ` ${record.pvUnit}`}, OP from ${short(opExtent.low)} to ${short(opExtent.high)} %, ${slips.length} slips marked.`,
     caveats: recordCaveats(findings),
     data,
     annotations: [
@@ -56,12 +46,31 @@ export function trendFigure(findings: Findings): Figure {
       panelName(travel ? 'OP, % of span; travel, %' : 'OP, % of span', 'y2'),
     ],
     layout: {
-      xaxis: axis({ type: 'date', anchor: 'y2', title: axisTitle(clock.title), hoverformat: '%H:%M:%S' }),
+      xaxis: timeAxis(clock, 'y2'),
       yaxis: axis({ domain: [0.53, 1] }),
       yaxis2: axis({ domain: [0, 0.43] }),
     },
     height: 500,
   });
+}
+
+/** Which slips to mark, and a sentence on them: none of a fit whose numbers are withheld or of a valve not accused. */
+function slipsToMark({ assessment, stiction }: Findings): { slips: readonly Slip[]; words: string } {
+  const { verdict } = assessment.cause;
+  if (stiction.fit === null) return { slips: [], words: 'No slips are marked, as the fit gives no numbers.' };
+  if (verdict !== 'stiction' && verdict !== 'lost-motion' && verdict !== 'cannot-tell') {
+    return { slips: [], words: 'No slips are marked, as the valve is not accused.' };
+  }
+  const all = stiction.fit.slips;
+  if (all.length <= mostSlips)
+    return { slips: all, words: `${all.length} slips of the fitted valve are marked on OP.` };
+  const first = all.filter((slip, i) => i === 0 || slip.size > 0 !== all[i - 1].size > 0);
+  const largest = [...first].sort((a, b) => Math.abs(b.size) - Math.abs(a.size)).slice(0, mostSlips);
+  const slips = largest.sort((a, b) => a.sample - b.sample);
+  return {
+    slips,
+    words: `Of ${all.length} slips of the fitted valve ${slips.length} are marked on OP, each the first after a reversal.`,
+  };
 }
 
 function signalTrace(
