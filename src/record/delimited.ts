@@ -1,0 +1,56 @@
+/** Reads text with columns separated by comma, semicolon or tab. */
+import { parse } from 'papaparse';
+import { UnreadableInput } from '../errors';
+import { tableOf } from './header';
+import type { Table } from './table';
+
+/** In the order of trust: a tab or semicolon is hardly anything else, a comma may be a decimal comma. */
+const separators = ['\t', ';', ','] as const;
+/** Lines on which the separator is judged. */
+const judged = 60;
+
+/**
+ * Text of a file: UTF-8, or UTF-16 with a byte order mark; other bytes are taken for Latin-1.
+ *
+ * @throws UnreadableInput for bytes that are no text
+ */
+export function decodeText(bytes: Uint8Array, what: string): string {
+  const mark = `${bytes[0]?.toString(16)} ${bytes[1]?.toString(16)}`;
+  if (mark === 'ff fe') return new TextDecoder('utf-16le').decode(bytes);
+  if (mark === 'fe ff') return new TextDecoder('utf-16be').decode(bytes);
+  if (bytes.subarray(0, 65536).includes(0)) {
+    throw new UnreadableInput(
+      `${what} is not a text file. Export the loop as .csv, .txt or .tsv, or as .xlsx.`,
+    );
+  }
+  try {
+    return new TextDecoder('utf-8', { fatal: true }).decode(bytes);
+  } catch {
+    return new TextDecoder('latin1').decode(bytes);
+  }
+}
+
+/**
+ * @param text decoded text, without a byte order mark
+ * @param what how the source is called in messages
+ * @throws UnreadableInput when it is empty, has no column names or no rows
+ */
+export function readDelimited(text: string, what: string): Table {
+  if (text.trim() === '') throw new UnreadableInput(`${what} is empty.`);
+  const { data } = parse<string[]>(text, { delimiter: separatorOf(text) });
+  return tableOf(data, what);
+}
+
+/** The separator that cuts most of the first lines into the same number of cells, more than one. */
+function separatorOf(text: string): string {
+  let best = { separator: ',', share: 0 };
+  for (const separator of separators) {
+    const { data } = parse<string[]>(text, { delimiter: separator, preview: judged });
+    const lines = data.filter((row) => row.some((cell) => cell.trim() !== ''));
+    const counts = new Map<number, number>();
+    for (const { length } of lines) if (length > 1) counts.set(length, (counts.get(length) ?? 0) + 1);
+    const share = Math.max(0, ...counts.values()) / lines.length;
+    if (share > best.share) best = { separator, share };
+  }
+  return best.separator;
+}
