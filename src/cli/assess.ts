@@ -58,7 +58,7 @@ export async function assess(words: readonly string[], output: Output): Promise<
   const folder = resolve(values.out ?? defaultOutFolder());
   const jsonFile = values.json === undefined || jsonAlone ? null : resolve(values.json);
 
-  const record = await readLoop(file, reading);
+  const record = readLoop(file, reading);
   if (jsonFile) prepareFolder(dirname(jsonFile));
   let jupyter: Jupyter | null = null;
   if (wantsNotebook) {
