@@ -2,6 +2,7 @@
 import type { Evidence } from '../assessment/assessment';
 import type { Findings } from '../assessment/findings';
 import { withInterval } from '../assessment/make-answer-card';
+import type { Estimate } from '../estimate/stiction-fit';
 import { recordCaveats } from './caveats';
 import type { Figure } from './figure';
 import { makeFigure, plainText, wrapped } from './layout';
@@ -21,6 +22,8 @@ const lanes: readonly { says: Says; name: string; symbol: string; color: string;
 /** Height of a row, px, and how far below its middle the marks stand, in rows. */
 const rowHeight = 46;
 const markBelow = 0.24;
+/** Room above the mark of the verdict, in rows, for its three lines of text. */
+const firstRow = 1.05;
 
 /** null when no indicator was asked. */
 export function evidenceFigure(findings: Findings): Figure | null {
@@ -30,13 +33,16 @@ export function evidenceFigure(findings: Findings): Figure | null {
   const verdictSays: Says =
     cause.verdict === 'stiction' ? 'stiction' : cause.verdict === 'cannot-tell' ? 'undecided' : 'not';
   const fit = stiction.fit;
+  const inPercent = (estimate: Estimate): string => withInterval({ ...estimate, unit: '%' });
   const fitText =
     fit === null
-      ? 'fit: numbers withheld'
-      : `fit: S ${withInterval(fit.S)}, J ${fit.J ? withInterval(fit.J) : 'not resolved'}`;
+      ? stiction.drawn === null
+        ? 'no fit'
+        : 'fit: numbers withheld'
+      : `fit: S ${inPercent(fit.S)}, J ${fit.J ? inPercent(fit.J) : 'not resolved'}`;
   const lastRow = evidence.length + 0.65;
   const verdict = {
-    text: `<b>Verdict: ${cause.verdict}</b><br>${plainText(fitText)}`,
+    text: [`<b>Verdict: ${cause.verdict}</b>`, ...wrapped(fitText, 44).map(plainText)].join('<br>'),
     y: 0,
     says: verdictSays,
     why: cause.reasons[0] ?? '',
@@ -107,7 +113,7 @@ export function evidenceFigure(findings: Findings): Figure | null {
     ],
     layout: {
       xaxis: { range: [-0.5, lanes.length - 0.5], visible: false, fixedrange: true },
-      yaxis: { range: [lastRow, -0.75], visible: false, fixedrange: true },
+      yaxis: { range: [lastRow, -firstRow], visible: false, fixedrange: true },
       shapes: rows.map((row) => ({
         type: 'line',
         xref: 'x',
@@ -119,7 +125,7 @@ export function evidenceFigure(findings: Findings): Figure | null {
         line: { color: palette.grid, width: 5 },
       })),
     },
-    height: 74 + (lastRow + 0.75) * rowHeight,
+    height: 74 + (lastRow + firstRow) * rowHeight,
     legend: false,
   });
 }

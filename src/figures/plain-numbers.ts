@@ -9,7 +9,7 @@ export function plain(values: ArrayLike<number>, indices?: readonly number[]): (
   const { low, high } = extent(chosen);
   const spread = high - low || Math.abs(high) || 1;
   const decimals = Math.min(12, Math.max(0, 4 - Math.floor(Math.log10(spread))));
-  return chosen.map((value) => (Number.isFinite(value) ? Number(value.toFixed(decimals)) : null));
+  return chosen.map((value) => (Number.isFinite(value) ? 0 + Number(value.toFixed(decimals)) : null));
 }
 
 /** Lowest and highest finite value; both 0 when there is none. */
