@@ -1,7 +1,10 @@
 /** The result of assessing one loop: the plain data that terminal, notebook, page and JSON all show. */
 import type { Estimate } from '../estimate/stiction-fit';
+import type { Evidence } from '../evidence/evidence';
 import type { Note, Response, Service } from '../record/loop-record';
 import type { ValveModel } from '../valve/two-parameter';
+
+export type { Evidence };
 
 /** What makes the cycle. `lost-motion` is dead band without a jump. */
 export type Verdict =
@@ -11,15 +14,6 @@ export type Verdict =
   | 'outside-disturbance'
   | 'not-oscillating'
   | 'cannot-tell';
-
-export interface Evidence {
-  readonly indicator: string;
-  readonly value: number | null;
-  readonly threshold: string;
-  readonly says: 'stiction' | 'not' | 'undecided' | 'skipped';
-  readonly why: string;
-  readonly source: string;
-}
 
 export interface ControllerFound {
   readonly form: string;
