@@ -3,10 +3,12 @@ import type { Findings } from '../assessment/findings';
 
 /** At most this many are stamped; the rest stands in the text beside the figure. */
 const most = 3;
+/** Notes on reading that change what a figure shows, not only what it is called. */
+const drawnOtherwise = ['op-small', 'valve-range', 'gaps'];
 
 /**
  * Caveats of anything drawn from the record: a cause that cannot be told, checks of the record that failed and
- * take something away, assumptions made on reading.
+ * take something away, assumptions made on reading that change the picture.
  */
 export function recordCaveats(findings: Findings): string[] {
   const { assessment, fitness, record } = findings;
@@ -18,21 +20,24 @@ export function recordCaveats(findings: Findings): string[] {
     if (!check.passed && check.forbids.length > 0) found.push(check.text);
   }
   for (const note of record.notes) {
-    if (/assum/.test(note.code)) found.push(note.text);
+    if (drawnOtherwise.includes(note.code)) found.push(note.text);
   }
   return shortened(found);
 }
 
-/** Caveats of anything drawn from the fit: numbers that must not be quoted, a jump that is not resolved. */
-export function fitCaveats(findings: Findings): string[] {
-  const { stiction } = findings;
+/** Caveats of anything drawn from the fit: numbers that must not be quoted, a response of the process not known. */
+export function fitCaveats({ record, stiction }: Findings): string[] {
+  const found: string[] = [];
   if (stiction.fit === null) {
-    const reasons = stiction.refused.length > 0 ? stiction.refused : ['the fit does not hold.'];
-    return shortened(
-      reasons.map((reason, i) => (i === 0 ? `No numbers to quote from this fit: ${reason}` : reason)),
+    const [first = 'the fit does not hold.', ...others] = stiction.refused;
+    found.push(`No numbers to quote from this fit: ${first}`, ...others);
+  }
+  if (record.response === 'unknown') {
+    found.push(
+      'Whether the process is self-regulating or integrating was not stated; the better fit is shown.',
     );
   }
-  return [];
+  return shortened(found);
 }
 
 function shortened(sentences: readonly string[]): string[] {

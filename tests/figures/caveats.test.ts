@@ -20,13 +20,13 @@ describe('recordCaveats', () => {
     expect(recordCaveats(fixtureFindings())).toEqual([]);
   });
 
-  it('says cannot-tell with its reason, checks that forbid something, and assumptions', () => {
+  it('says cannot-tell with its reason, checks that forbid something, and what changes the picture', () => {
     const found = recordCaveats(
       fixtureFindings({
         verdict: 'cannot-tell',
         checks: [check('a', false, ['numbers']), check('b', false, []), check('c', true, ['cause'])],
         notes: [
-          { code: 'pv-range-assumed', text: 'PV range assumed.' },
+          { code: 'valve-range', text: 'OP was scaled.' },
           { code: 'rows-left-out', text: 'Three rows left out.' },
         ],
       }),
@@ -34,7 +34,7 @@ describe('recordCaveats', () => {
     expect(found).toEqual([
       'cannot-tell: The record was compressed before it was stored, and its straight pieces imitate stiction.',
       'a said.',
-      'PV range assumed.',
+      'OP was scaled.',
     ]);
   });
 
@@ -53,6 +53,14 @@ describe('fitCaveats', () => {
     expect(fitCaveats(fixtureFindings())).toEqual([]);
     expect(fitCaveats(fixtureFindings({ fit: 'refused' }))).toEqual([
       'No numbers to quote from this fit: the element explains less than half of the travel.',
+    ]);
+  });
+
+  it('says that the response was not stated', () => {
+    const findings = fixtureFindings();
+    const unknown = { ...findings, record: { ...findings.record, response: 'unknown' as const } };
+    expect(fitCaveats(unknown)).toEqual([
+      'Whether the process is self-regulating or integrating was not stated; the better fit is shown.',
     ]);
   });
 });

@@ -40,7 +40,7 @@ describe('valveLoop', () => {
     // A slip comes up to a step of 0.001 late, and that adds up over a sweep of several: OP goes a little further.
     const late = model === 'sticks-again' ? 0.015 : 0;
     const { op, travel } = swept(model, low - late, turn + late, s, j);
-    for (let i = 0; i < op.length; i += 7) expect(distance(op[i]!, travel[i]!, loop)).toBeLessThan(0.02);
+    for (let i = 0; i < op.length; i += 7) expect(distance(op[i]!, travel[i]!, loop)).toBeLessThan(0.03);
   });
 
   it('is closed, S wide where it is stuck after a turn and J high where it jumps', () => {
