@@ -37,7 +37,9 @@ function figuresTable(card: AnswerCard): string {
 
 /** One thing to do, why, and its caution. */
 function stepBody(step: NextStep): string {
-  const caution = step.caution ? `<p class="sb-caution">${escapeHtml(step.caution)}</p>` : '';
+  const caution = step.caution
+    ? `<p class="sb-caution"><strong>Caution:</strong> ${escapeHtml(step.caution)}</p>`
+    : '';
   return `<p><strong>${escapeHtml(step.do)}</strong> ${escapeHtml(step.why)}</p>${caution}`;
 }
 

@@ -76,7 +76,7 @@ export function ensureJupyter(options: JupyterSetUp = {}): Jupyter {
   );
 }
 
-/** Environment in which Jupyter finds our kernel; `folder` is ours to write in. */
+/** Environment in which Jupyter finds our kernel and keeps its run-time files in `folder`, which is ours to write in. */
 export function kernelEnvironment(folder: string): NodeJS.ProcessEnv {
   const data = join(folder, 'share', 'jupyter');
   const kernel = join(data, 'kernels', 'tslab');
@@ -89,7 +89,12 @@ export function kernelEnvironment(folder: string): NodeJS.ProcessEnv {
   };
   writeFileSync(join(kernel, 'kernel.json'), JSON.stringify(description));
   const path = [data, process.env.JUPYTER_PATH].filter(Boolean).join(delimiter);
-  return { ...process.env, JUPYTER_PATH: path };
+  return {
+    ...process.env,
+    JUPYTER_PATH: path,
+    JUPYTER_RUNTIME_DIR: join(folder, 'runtime'),
+    IPYTHONDIR: join(folder, 'ipython'),
+  };
 }
 
 function pythonOf(environment: string): string {

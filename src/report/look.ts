@@ -38,16 +38,16 @@ export const componentStyle: string = `
 .sb-picture { max-width: 100%; height: auto; } .sb-shown .sb-picture { display: none; }
 .sb-table { overflow-x: auto; margin: 0 0 1.2rem; }
 .sb-table table { border-collapse: collapse; font-size: .9rem; color: ${palette.ink}; }
-.sb-table caption { text-align: left; padding-bottom: .3rem; }
-.sb-table th, .sb-table td { text-align: left; vertical-align: top; padding: .25rem .9rem .25rem 0; border: 0;
+.sb-table table caption { text-align: left; padding-bottom: .3rem; white-space: nowrap; }
+.sb-table table th, .sb-table table td { text-align: left; vertical-align: top; padding: .25rem .9rem .25rem 0; border: 0;
   border-bottom: 1px solid ${palette.grid}; background: none; max-width: 32rem; }
 .sb-table thead th { border-bottom: 1px solid ${palette.faint}; font-weight: 600; }
-.sb-table td { overflow-wrap: break-word; }
-.sb-table .sb-number { text-align: right; font-variant-numeric: tabular-nums; }
+.sb-table table td { overflow-wrap: break-word; }
+.sb-table table .sb-number { text-align: right; font-variant-numeric: tabular-nums; }
 @media screen and (max-width: 600px) {
   .sb-wide table, .sb-wide tbody, .sb-wide tr, .sb-wide td { display: block; } .sb-wide thead { display: none; }
   .sb-wide tr { border-bottom: 1px solid ${palette.faint}; padding: .4rem 0; }
-  .sb-table.sb-wide td { border: 0; padding: 0; text-align: left; } .sb-wide td:first-child { font-weight: 600; }
+  .sb-table.sb-wide table td { border: 0; padding: 0; text-align: left; } .sb-wide td:first-child { font-weight: 600; }
   .sb-wide td + td::before { content: attr(data-column) ": "; color: ${palette.faint}; } .sb-wide td:empty { display: none; }
 }
 @media print {

@@ -23,12 +23,7 @@ export interface NotebookRun {
 export async function runNotebook(notebook: Notebook, run: NotebookRun): Promise<Notebook> {
   const scratch = mkdtempSync(join(tmpdir(), 'stickband-'));
   try {
-    const environment = {
-      ...kernelEnvironment(scratch),
-      JUPYTER_RUNTIME_DIR: join(scratch, 'runtime'),
-      IPYTHONDIR: join(scratch, 'ipython'),
-    };
-    const result = await runPython(notebook, run, environment);
+    const result = await runPython(notebook, run, kernelEnvironment(scratch));
     if (result.failed) throw new Error(describeFailure(result.notebook, result.failed));
     return result.notebook;
   } finally {
