@@ -20,10 +20,10 @@ const lanes: readonly { says: Says; name: string; symbol: string; color: string;
 ];
 
 /** Height of a row, px, and how far below its middle the marks stand, in rows. */
-const rowHeight = 46;
+const rowHeight = 42;
 const markBelow = 0.24;
 /** Room above the mark of the verdict, in rows, for its three lines of text. */
-const firstRow = 1.05;
+const firstRow = 1.15;
 
 /** null when no indicator was asked. */
 export function evidenceFigure(findings: Findings): Figure | null {
@@ -34,15 +34,13 @@ export function evidenceFigure(findings: Findings): Figure | null {
     cause.verdict === 'stiction' ? 'stiction' : cause.verdict === 'cannot-tell' ? 'undecided' : 'not';
   const fit = stiction.fit;
   const inPercent = (estimate: Estimate): string => withInterval({ ...estimate, unit: '%' });
-  const fitText =
+  const fitWords =
     fit === null
-      ? stiction.drawn === null
-        ? 'no fit'
-        : 'fit: numbers withheld'
-      : `fit: S ${inPercent(fit.S)}, J ${fit.J ? inPercent(fit.J) : 'not resolved'}`;
+      ? [stiction.drawn === null ? 'No fit.' : 'Fit: numbers withheld.']
+      : [`Fit: S ${inPercent(fit.S)}`, `J ${fit.J ? inPercent(fit.J) : 'not resolved'}`];
   const lastRow = evidence.length + 0.65;
   const verdict = {
-    text: [`<b>Verdict: ${cause.verdict}</b>`, ...wrapped(fitText, 44).map(plainText)].join('<br>'),
+    text: [`<b>Verdict: ${cause.verdict}</b>`, ...fitWords].join('<br>'),
     y: 0,
     says: verdictSays,
     why: cause.reasons[0] ?? '',
@@ -82,7 +80,7 @@ export function evidenceFigure(findings: Findings): Figure | null {
     id: 'evidence',
     title: `${assessment.loop}: what each indicator says`,
     caption: `The verdict stands on top, with what the fit found; under it one row an indicator. ${tally}. Most indicators look at shape alone and they often disagree; the fit and the record's fitness weigh more.`,
-    alt: `Verdict ${cause.verdict}; ${fitText}. Indicators of ${assessment.loop}: ${tally}. ${evidence.map((item) => `${item.indicator}: ${item.says}`).join('; ')}.`,
+    alt: `Verdict ${cause.verdict}; ${fitWords.join(', ')}. Indicators of ${assessment.loop}: ${tally}. ${evidence.map((item) => `${item.indicator}: ${item.says}`).join('; ')}.`,
     caveats: recordCaveats(findings),
     data,
     annotations: [

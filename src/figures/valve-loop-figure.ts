@@ -24,7 +24,7 @@ export function valveLoopFigure(findings: Findings): Figure | null {
   const top = travel[turn];
   const left = loop.x[0];
   const bottom = travel[0];
-  const height = Math.max(top - bottom, S / 4);
+  const height = Math.max(top - bottom, S / 20);
   const width = right - left;
 
   const quoted = stiction.fit !== null;

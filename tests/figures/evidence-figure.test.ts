@@ -19,7 +19,7 @@ describe('evidenceFigure', () => {
     expect(figure.caption).toContain('2 for stiction, 1 against, 1 undecided, 1 skipped');
     const text = JSON.stringify(figure.layout);
     expect(text).toContain('area ratio of half cycles: 1.42');
-    expect(text).toContain('fit: S 3.20 % (2.90 to 3.50)');
+    expect(text).toContain('Fit: S 3.20 % (2.90 to 3.50)');
   });
 
   it('puts a verdict that accuses no stiction on the other side, and one that cannot tell in between', () => {
