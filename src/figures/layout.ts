@@ -17,7 +17,7 @@ export interface FigureParts {
   readonly annotations?: readonly object[];
   /** Axes, shapes and whatever else Plotly's layout takes. */
   readonly layout: object;
-  /** Of the static picture; default 640. */
+  /** Of the static picture; default 560, which still reads when a small screen shrinks it. */
   readonly width?: number;
   readonly height: number;
   /** Whether a legend line under the plot needs room. Default true. */
@@ -44,7 +44,7 @@ const legendBelow = {
 };
 
 export function makeFigure(parts: FigureParts): Figure {
-  const { id, title, caption, alt, caveats, data, width = 640, legend = true } = parts;
+  const { id, title, caption, alt, caveats, data, width = 560, legend = true } = parts;
   const lines = caveats.flatMap((caveat) => wrapped(caveat, stampWidth));
   const titleLines = wrapped(title, titleWidth);
   const titleHeight = 16 + titleLines.length * titleLineHeight;

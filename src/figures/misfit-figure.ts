@@ -88,7 +88,6 @@ export function misfitFigure(findings: Findings): Figure | null {
         { type: 'path', path: notTried, fillcolor: palette.paper, line: { width: 0 }, layer: 'above' },
       ],
     },
-    width: 560,
     height: 500,
   });
 }

@@ -16,10 +16,14 @@ export function phaseFigure(findings: Findings): Figure {
   const shown = stretchesInWords(stretches);
   const { pvSwing, opSwing } = assessment.severity;
   const range = extent(record.op);
+  const lookFor =
+    record.response === 'integrating'
+      ? 'An integrating process rounds this plot off whatever the valve does; the loop of travel against OP tells more.'
+      : 'Flat runs joined by steep ones, in loops that lie on each other, speak for an assembly that holds and then jumps; a smooth ellipse or a cloud does not.';
   return makeFigure({
     id: 'phase-plot',
     title: `${record.loop}: PV against OP`,
-    caption: `${shown} Flat runs joined by steep ones, in loops that lie on each other, speak for an assembly that holds and then jumps; a smooth ellipse or a cloud does not.`,
+    caption: `${shown} ${lookFor}`,
     alt: `PV of ${record.loop} against OP with time as colour, median swing ${short(pvSwing)}${unit === '' ? '' : ` ${record.pvUnit}`} of PV and ${short(opSwing)} % of OP.`,
     caveats: recordCaveats(findings),
     data: traces,

@@ -34,10 +34,14 @@ export function trendFigure(findings: Findings): Figure {
   const unit = record.pvUnit === '' ? '' : `, ${record.pvUnit}`;
   const pvExtent = extent(pv);
   const opExtent = extent(op);
+  const lookFor =
+    record.response === 'integrating'
+      ? 'Where the assembly sticks, PV runs in straight ramps that turn only after a slip.'
+      : 'Where the assembly sticks, OP creeps on while PV holds, and PV moves only after a slip.';
   return makeFigure({
     id: 'trend',
     title: `${record.loop}: the record`,
-    caption: `PV${sp ? ' and SP' : ''} above, OP${travel ? ' and measured travel' : ''} below. ${words} Where the assembly sticks, OP creeps on while PV holds, and PV moves only after a slip.`,
+    caption: `PV${sp ? ' and SP' : ''} above, OP${travel ? ' and measured travel' : ''} below. ${words} ${lookFor}`,
     alt: `Trend of ${record.loop} over ${duration(seconds)} from ${clock.text(0)}: PV from ${short(pvExtent.low)} to ${short(pvExtent.high)}${unit === '' ? '' : ` ${record.pvUnit}`}, OP from ${short(opExtent.low)} to ${short(opExtent.high)} %, ${slips.length} slips marked.`,
     caveats: recordCaveats(findings),
     data,

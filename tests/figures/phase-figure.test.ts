@@ -20,4 +20,11 @@ describe('phaseFigure', () => {
     const bare = { ...findings, record: { ...findings.record, pvUnit: '' } };
     expectSound(phaseFigure(bare));
   });
+
+  it('does not read the shape of a self-regulating loop into an integrating one', () => {
+    const findings = fixtureFindings();
+    const level = { ...findings, record: { ...findings.record, response: 'integrating' as const } };
+    expect(phaseFigure(findings).caption).toContain('Flat runs');
+    expect(phaseFigure(level).caption).not.toContain('Flat runs');
+  });
 });

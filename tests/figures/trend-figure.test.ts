@@ -65,4 +65,10 @@ describe('trendFigure', () => {
       'cannot-tell: The record was compressed',
     );
   });
+
+  it('says what sticking looks like in a loop of its kind', () => {
+    const level = { ...findings, record: { ...findings.record, response: 'integrating' as const } };
+    expect(figure.caption).toContain('PV holds');
+    expect(trendFigure(level).caption).toContain('straight ramps');
+  });
 });
