@@ -3,8 +3,8 @@ import type { LoopFacts } from './loop-facts';
 
 /** Fewest samples a cycle that keep its shape (Thornhill 2005, value from memory). */
 const fewestSamples = 7;
-/** Periods of OP and PV that differ by more than this share are two cycles, not one (own choice). */
-const samePeriod = 0.1;
+/** Periods of OP and PV further apart than this factor are two cycles (as in findCycle; an uneven one reads unevenly). */
+const samePeriod = 1.6;
 
 /** The first reason there is. */
 export function firstReason(...reasons: readonly (string | null)[]): string | null {
@@ -30,7 +30,7 @@ export function needsBothCycles(facts: LoopFacts): string | null {
   if (reason !== null) return reason;
   const op = facts.opCycle.period!;
   const pv = facts.pvCycle.period!;
-  return Math.abs(op - pv) <= samePeriod * Math.min(op, pv)
+  return Math.max(op, pv) <= samePeriod * Math.min(op, pv)
     ? null
     : `OP cycles every ${op.toPrecision(3)} s and PV every ${pv.toPrecision(3)} s: not one cycle.`;
 }

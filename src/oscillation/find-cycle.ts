@@ -2,13 +2,14 @@
 import { WrongUse } from '../errors';
 import { autocorrelation } from '../signal/autocorrelation';
 import { powerSpectrum } from '../signal/fourier';
-import { median } from '../signal/statistics';
+import { median, quantile } from '../signal/statistics';
 import { removeLine, removeSlowTrend } from '../signal/trend';
 import { type Candidate, cycleCandidates } from './candidates';
 import type { Cycle, SingleCycle } from './cycle';
 import { oddHarmonicShare } from './odd-harmonics';
 import { type Regularity, regularityAt } from './regularity';
-import { singleCycles } from './single-cycles';
+import { cycleStarts, singleCycles } from './single-cycles';
+import { type SteadySwing, steadySwing } from './steady-swing';
 
 /**
  * What a cycle must have. r > 1 is the paper's rule (see regularity.ts); filtered noise and drifting records
@@ -64,7 +65,8 @@ interface Found {
 /**
  * Finds the cycle of an evenly sampled signal. Candidates are the peaks of the spectrum; each is judged by the
  * regularity of Thornhill, Huang and Zhang (2003) and further conditions (stated in `why` when they fail). The
- * strongest that passes is the cycle, weaker ones are `others`.
+ * strongest that passes is the cycle, weaker ones are `others`. Where none passes, a cycle of steady swing and uneven
+ * period is looked for (steady-swing.ts); its `period` is the median length of its cycles.
  *
  * Limits: a cycle of less than four samples, or with fewer than five repeats in the record, is not found. Two cycles
  * whose periods differ by less than a factor of 1.6 count as one.
@@ -97,16 +99,16 @@ export function findCycle(values: Float64Array, samplePeriod: number): Cycle {
     return noCycle(values, samplePeriod, 'The signal is constant or a straight line: nothing cycles.');
   }
   const candidates = cycleCandidates(values, rule.cycles / n, 1 / shortestPeriod);
+  const found = standingOut(candidates).map((candidate) => judge(values, samplePeriod, candidate));
+  const main = found.find(({ lacks, powerShare }) => lacks.length === 0 && powerShare >= rule.powerShare);
+  if (main !== undefined) return regularCycle(main, furtherCycles(values, main), samplePeriod);
+  const uneven = steadySwing(values);
+  if (uneven !== null) return unevenCycle(values, uneven, found[0]?.regularity?.value ?? null, samplePeriod);
   if (candidates.length === 0) {
     return noCycle(values, samplePeriod, 'The spectrum has no peak: no period stands out.');
   }
-  const found = standingOut(candidates).map((candidate) => judge(values, samplePeriod, candidate));
-  const main = found.find(({ lacks, powerShare }) => lacks.length === 0 && powerShare >= rule.powerShare);
-  if (main === undefined) {
-    const best = found[0] ?? judge(values, samplePeriod, candidates[0]!);
-    return noCycle(values, samplePeriod, whyNot(best, samplePeriod), best);
-  }
-  return asCycle(main, furtherCycles(values, main), samplePeriod);
+  const best = found[0] ?? judge(values, samplePeriod, candidates[0]!);
+  return noCycle(values, samplePeriod, whyNot(best, samplePeriod), best);
 }
 
 /** The strongest candidates that stand out enough for the least that is ever asked. */
@@ -138,7 +140,7 @@ function judge(values: Float64Array, samplePeriod: number, candidate: Candidate)
   const regularity = regularityAt(rough, candidate.frequency);
   const period = regularity?.period ?? 1 / candidate.frequency;
   const detrended = removeSlowTrend(values, Math.min(values.length, Math.round(2 * period)));
-  const single = singleCycles(detrended, samplePeriod, period);
+  const single = singleCycles(detrended, samplePeriod, period, cycleStarts(detrended, period));
   const share = powerShareAt(detrended, 1 / period);
   const lacks: string[] = [];
   if (regularity === null) {
@@ -205,7 +207,7 @@ function belongsTo(known: Found, other: Candidate): boolean {
   );
 }
 
-function asCycle(main: Found, others: readonly number[], samplePeriod: number): Cycle {
+function regularCycle(main: Found, others: readonly number[], samplePeriod: number): Cycle {
   const regularity = main.regularity!;
   const period = regularity.period * samplePeriod;
   const count = Math.floor(main.detrended.length / regularity.period);
@@ -222,6 +224,37 @@ function asCycle(main: Found, others: readonly number[], samplePeriod: number): 
     single: main.single,
     autocorrelation: lagged(regularity.autocorrelation, samplePeriod),
     spectrum: powerSpectrum(main.detrended, samplePeriod),
+  };
+}
+
+function unevenCycle(
+  values: Float64Array,
+  { turns, swing, period }: SteadySwing,
+  regularity: number | null,
+  samplePeriod: number,
+): Cycle {
+  const detrended = removeSlowTrend(values, Math.min(values.length, Math.round(2 * period)));
+  // Every other turn is of one kind.
+  const starts = turns.filter((_, i) => i % 2 === 0);
+  const single = singleCycles(values, samplePeriod, period, starts);
+  const lengths = Float64Array.from(single, ({ from, to }) => to - from);
+  const quarter = (share: number): string => figure(quantile(lengths, share));
+  return {
+    present: true,
+    why: `It cycles at uneven intervals, about every ${figure(period * samplePeriod)} s (half of the cycles last ${quarter(0.25)} to ${quarter(0.75)} s): ${single.length} cycles that turn round at steady levels, ${figure(swing)} apart.`,
+    period: period * samplePeriod,
+    regularity,
+    cycles: single.length,
+    others: [],
+    amplitude: median(Float64Array.from(single, ({ amplitude }) => amplitude)),
+    oddHarmonicShare: oddHarmonicShare(detrended, samplePeriod, single),
+    powerShare: powerShareAt(detrended, 1 / period),
+    single,
+    autocorrelation: lagged(
+      autocorrelation(detrended, Math.min(values.length - 1, Math.ceil(8 * period))),
+      samplePeriod,
+    ),
+    spectrum: powerSpectrum(detrended, samplePeriod),
   };
 }
 
