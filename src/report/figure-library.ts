@@ -33,8 +33,14 @@ const drawFigures = `async function () {
     figure.classList.add('sb-drawn');
     const plot = figure.querySelector('.sb-plot');
     const { data, layout } = JSON.parse(figure.querySelector('.sb-figure-data').textContent);
-    await window.Plotly.newPlot(plot, data, layout, { responsive: true, displaylogo: false });
+    await window.Plotly.newPlot(plot, data, layout, { displaylogo: false });
     figure.classList.add('sb-shown');
+    let width = plot.clientWidth;
+    new ResizeObserver(() => {
+      if (plot.clientWidth === 0 || plot.clientWidth === width) return;
+      width = plot.clientWidth;
+      window.Plotly.Plots.resize(plot);
+    }).observe(figure);
   };
   const drawAll = () => document.querySelectorAll('.sb-figure:not(.sb-drawn)').forEach(draw);
   let waiting = 0;

@@ -138,8 +138,9 @@ describe('the page of the sticky demo loop', () => {
         const plot = figure.querySelector('.main-svg')!.getBoundingClientRect();
         return (
           plot.width > 200 &&
+          plot.width <= figure.clientWidth &&
           plot.height > 100 &&
-          figure.querySelectorAll('.plot path, .plot image').length > 0
+          figure.querySelectorAll('.trace path, .contourlayer path').length > 0
         );
       }),
     );
@@ -230,9 +231,9 @@ describe('the notebook as it is kept', () => {
     [
       'does not compile',
       "const count: number = 'one';",
-      /Cell 1 .*Type 'string' is not assignable to type 'number'/,
+      /Cell 1 [^]*Type 'string' is not assignable to type 'number'/,
     ],
-    ['throws', "throw new Error('on purpose');", /Cell 1 .*on purpose/],
+    ['throws', "throw new Error('on purpose');", /Cell 1 [^]*on purpose/],
   ])('tells which cell failed and why when a cell %s', async (_, source, message) => {
     const cell: NotebookCell = {
       cell_type: 'code',
