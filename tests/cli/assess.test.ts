@@ -162,7 +162,7 @@ describe('a record that answers nothing', () => {
     const assessment = JSON.parse(stdout) as Assessment;
     expect(assessment.cause).toMatchObject({ verdict: 'cannot-tell', confidence: null });
     expect(assessment.stiction).toBeNull();
-    expect(JSON.stringify(assessment.next)).toMatch(/20 samples a cycle/);
+    expect(JSON.stringify(assessment.next)).toMatch(/20 samples in a cycle and at least 20 cycles/);
   });
 });
 
