@@ -20,6 +20,7 @@ const optionTypes = {
   service: 'string',
   response: 'string',
   'pv-range': 'string',
+  'pv-unit': 'string',
   'valve-range': 'string',
   time: 'string',
   sp: 'string',
@@ -132,6 +133,7 @@ function readingOptions(values: Given): ReadLoopOptions {
     pvRange: values['pv-range'] === undefined ? undefined : rangeOption('pv-range', values['pv-range']),
     valveRange:
       values['valve-range'] === undefined ? undefined : rangeOption('valve-range', values['valve-range']),
+    pvUnit: values['pv-unit'],
     timeFormat: values['time-format'],
     ...columns,
   });

@@ -27,6 +27,7 @@ What is known of the loop. Everything is optional; what is not stated is assumed
   --service S          flow, pressure, level, temperature or other
   --response R         self-regulating or integrating: does the PV settle or run away after a lasting move
   --pv-range=LOW:HIGH  range of the PV, in its unit
+  --pv-unit U          unit of the PV, e.g. m3/h
   --valve-range=LOW:HIGH  the part of the OP that moves this valve, in % of OP (split range)
   --dead-time S        dead time of the process, s
   --process-gain G     PV units per % of travel

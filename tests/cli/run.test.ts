@@ -14,6 +14,14 @@ describe('the command line', () => {
     expect((await captured('notebook', '--help')).stdout).toContain('Opens Jupyter');
   });
 
+  it('has every option that the README shows', async () => {
+    const { stdout } = await captured('assess', '--help');
+    const shown = readFileSync('README.md', 'utf8').matchAll(/ (--[a-z-]+)(?=[ =])/g);
+    const options = [...new Set([...shown].map((match) => match[1]!))].filter((option) => option !== '--no');
+    expect(options.length).toBeGreaterThan(5);
+    for (const option of options) expect(stdout).toContain(option);
+  });
+
   it.each([
     [[], /stickband assess FILE/],
     [['asess'], /no command "asess"\. Commands are: assess, notebook/],
