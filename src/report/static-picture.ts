@@ -7,6 +7,7 @@ import { Script } from 'node:vm';
 import type { DOMWindow } from 'jsdom';
 import type { Figure } from '../figures/figure';
 import { thin } from '../figures/thin';
+import { installQuickQueries } from './quick-queries';
 import { installSvgGeometry } from './svg-geometry';
 
 /** Points kept of a line: one and a half a pixel, which nobody can tell from all of them in a picture. */
@@ -67,6 +68,7 @@ async function openStage(): Promise<Stage> {
   });
   const context = page.getInternalVMContext();
   installSvgGeometry(page.window);
+  installQuickQueries(page.window);
   page.window.URL.createObjectURL = () => '';
   const library = require.resolve('plotly.js-cartesian-dist-min');
   new Script(readFileSync(library, 'utf8'), { filename: library }).runInContext(context);

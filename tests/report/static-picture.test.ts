@@ -68,11 +68,15 @@ describe('staticPictures', () => {
     expect(strokes).toContain('rgb(156, 61, 20)');
   });
 
-  it('gives equal pictures for equal figures, in any order and at once', async () => {
-    const reversed = [...figures].reverse();
-    const [again, backwards] = await Promise.all([staticPictures(figures), staticPictures(reversed)]);
-    expect(again).toEqual(pictures);
-    expect(backwards.reverse()).toEqual(pictures);
+  it('gives equal pictures for equal figures, in any order and at the same time', async () => {
+    const some = [0, 4, 6];
+    const forth = some.map((i) => figures[i]!);
+    const [again, backwards] = await Promise.all([
+      staticPictures(forth),
+      staticPictures([...forth].reverse()),
+    ]);
+    expect(again).toEqual(some.map((i) => pictures[i]));
+    expect(backwards.reverse()).toEqual(again);
   });
 
   it('leaves the figures as they were', async () => {
