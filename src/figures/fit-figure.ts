@@ -4,7 +4,7 @@ import { duration, withInterval } from '../assessment/make-answer-card';
 import { fitCaveats } from './caveats';
 import { recordClock } from './clock';
 import type { Figure } from './figure';
-import { axis, makeFigure, panelName, timeAxis } from './layout';
+import { axis, makeFigure, panelName, timeAxis, withUnit } from './layout';
 import { lineWidth, palette } from './palette';
 import { plain } from './plain-numbers';
 import { thin } from './thin';
@@ -39,7 +39,6 @@ export function fitFigure(findings: Findings): Figure | null {
     hovertemplate: `%{y:.4g} at %{x}<extra>${name}</extra>`,
   });
   const travelName = fit.travelSource === 'measured' ? 'measured travel' : 'travel, reconstructed';
-  const unit = record.pvUnit === '' ? '' : `, ${record.pvUnit}`;
   const share = (value: number): string => `${Math.round(100 * value)} %`;
   const part =
     wanted < samples
@@ -58,7 +57,7 @@ export function fitFigure(findings: Findings): Figure | null {
       { ...trace(travelName, fit.travel, 'y2', { color: palette.travel, width: 5 }), opacity: 0.4 },
       trace('travel, fitted valve', fit.modelTravel, 'y2', { color: palette.model, width: lineWidth.signal }),
     ],
-    annotations: [panelName(`PV${unit}`, 'y'), panelName('OP, % of span; travel, %', 'y2')],
+    annotations: [panelName(withUnit('PV', record.pvUnit), 'y'), panelName('OP, % of span; travel, %', 'y2')],
     layout: {
       xaxis: timeAxis(clock, 'y2'),
       yaxis: axis({ domain: [0.55, 1] }),

@@ -156,6 +156,11 @@ export function panelName(text: string, y: string): object {
   };
 }
 
+/** A quantity with its unit, as on an axis; the quantity alone where no unit is known. */
+export function withUnit(quantity: string, unit: string): string {
+  return unit === '' ? quantity : `${quantity}, ${unit}`;
+}
+
 /** Text that Plotly shows as it stands: its few tags and entities are switched off. */
 export function plainText(text: string): string {
   return text.replace(/&/g, '&amp;').replace(/</g, '&lt;').replace(/>/g, '&gt;');

@@ -3,7 +3,7 @@ import type { Findings } from '../assessment/findings';
 import { recordCaveats } from './caveats';
 import { recordClock } from './clock';
 import type { Figure } from './figure';
-import { axis, axisTitle, makeFigure, panelName } from './layout';
+import { axis, axisTitle, makeFigure, panelName, withUnit } from './layout';
 import { extent, padded, short } from './plain-numbers';
 import { stretchesInWords, timeColoured, timeStretches } from './time-stretches';
 
@@ -12,7 +12,6 @@ export function phaseFigure(findings: Findings): Figure {
   const clock = recordClock(record);
   const stretches = timeStretches(record.op.length, record.samplePeriod, opCycle);
   const traces = timeColoured(record.op, record.pv, stretches, clock, record.samplePeriod);
-  const unit = record.pvUnit === '' ? '' : `, ${record.pvUnit}`;
   const shown = stretchesInWords(stretches);
   const { pvSwing, opSwing } = assessment.severity;
   const range = extent(record.op);
@@ -24,10 +23,10 @@ export function phaseFigure(findings: Findings): Figure {
     id: 'phase-plot',
     title: `${record.loop}: PV against OP`,
     caption: `${shown} ${lookFor}`,
-    alt: `PV of ${record.loop} against OP with time as colour, median swing ${short(pvSwing)}${unit === '' ? '' : ` ${record.pvUnit}`} of PV and ${short(opSwing)} % of OP.`,
+    alt: `PV of ${record.loop} against OP with time as colour, median swing ${`${short(pvSwing)} ${record.pvUnit}`.trim()} of PV and ${short(opSwing)} % of OP.`,
     caveats: recordCaveats(findings),
     data: traces,
-    annotations: [panelName(`PV${unit}`, 'y')],
+    annotations: [panelName(withUnit('PV', record.pvUnit), 'y')],
     layout: {
       xaxis: axis({ title: axisTitle('OP, % of span'), range: padded(range.low, range.high, 0.03, 0.03) }),
       yaxis: axis({}),

@@ -16,9 +16,8 @@ const mostStretches = 18;
 const pointsEach = 110;
 
 /**
- * Stretches spread evenly over the record. A
- * record of up to about 2000 samples is shown whole, cut into stretches that touch; of a longer one each stretch is a
- * cycle and a bit, so that the loops stay apart.
+ * Stretches spread evenly over the record. A record of up to about 2000 samples is shown whole, cut into stretches
+ * that touch; of a longer one each stretch is a cycle and a bit, so that the loops stay apart.
  */
 export function timeStretches(samples: number, samplePeriod: number, cycle: Cycle): Stretch[] {
   const count = Math.max(1, Math.min(mostStretches, Math.floor(samples / 8)));

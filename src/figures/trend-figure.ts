@@ -5,7 +5,7 @@ import type { Slip } from '../estimate/stiction-fit';
 import { recordCaveats } from './caveats';
 import { type RecordClock, recordClock } from './clock';
 import type { Figure } from './figure';
-import { axis, makeFigure, panelName, timeAxis } from './layout';
+import { axis, makeFigure, panelName, timeAxis, withUnit } from './layout';
 import { lineWidth, palette } from './palette';
 import { extent, plain, short } from './plain-numbers';
 import { thin } from './thin';
@@ -20,8 +20,7 @@ export function trendFigure(findings: Findings): Figure {
   const seconds = (pv.length - 1) * samplePeriod;
   const { slips, words } = slipsToMark(findings);
 
-  const data: object[] = [];
-  data.push(signalTrace('PV', pv, 'y', palette.pv, clock, samplePeriod, 'solid'));
+  const data: object[] = [signalTrace('PV', pv, 'y', palette.pv, clock, samplePeriod, 'solid')];
   if (sp) data.push(signalTrace('SP', sp, 'y', palette.setPoint, clock, samplePeriod, 'dash'));
   if (travel)
     data.push(signalTrace('measured travel', travel, 'y2', palette.travel, clock, samplePeriod, 'solid'));
@@ -31,7 +30,7 @@ export function trendFigure(findings: Findings): Figure {
   if (opens.length > 0) data.push(slipTrace('slip up', opens, op, clock, 'triangle-up'));
   if (closes.length > 0) data.push(slipTrace('slip down', closes, op, clock, 'triangle-down'));
 
-  const unit = record.pvUnit === '' ? '' : `, ${record.pvUnit}`;
+  const pvName = sp ? 'PV and SP' : 'PV';
   const pvExtent = extent(pv);
   const opExtent = extent(op);
   const lookFor =
@@ -41,12 +40,12 @@ export function trendFigure(findings: Findings): Figure {
   return makeFigure({
     id: 'trend',
     title: `${record.loop}: the record`,
-    caption: `PV${sp ? ' and SP' : ''} above, OP${travel ? ' and measured travel' : ''} below. ${words} ${lookFor}`,
-    alt: `Trend of ${record.loop} over ${duration(seconds)} from ${clock.text(0)}: PV from ${short(pvExtent.low)} to ${short(pvExtent.high)}${unit === '' ? '' : ` ${record.pvUnit}`}, OP from ${short(opExtent.low)} to ${short(opExtent.high)} %, ${slips.length} slips marked.`,
+    caption: `${pvName} above, OP${travel ? ' and measured travel' : ''} below. ${words} ${lookFor}`,
+    alt: `Trend of ${record.loop} over ${duration(seconds)} from ${clock.text(0)}: PV from ${short(pvExtent.low)} to ${`${short(pvExtent.high)} ${record.pvUnit}`.trim()}, OP from ${short(opExtent.low)} to ${short(opExtent.high)} %, ${slips.length} slips marked.`,
     caveats: recordCaveats(findings),
     data,
     annotations: [
-      panelName(`PV${sp ? ' and SP' : ''}${unit}`, 'y'),
+      panelName(withUnit(pvName, record.pvUnit), 'y'),
       panelName(travel ? 'OP, % of span; travel, %' : 'OP, % of span', 'y2'),
     ],
     layout: {
