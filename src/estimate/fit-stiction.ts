@@ -14,14 +14,8 @@ import { twoParameterValve } from '../valve/two-parameter';
 import { describeTravel } from './describe-travel';
 import { type Intervals, intervalsFromParts, type PartFit, recordParts } from './interval';
 import { misfitMap } from './misfit-map';
-import {
-  type Reconstruction,
-  reconstructTravel,
-  refitNear,
-  residualOf,
-  type SearchSettings,
-  swingOf,
-} from './search';
+import { type ProcessSettings, residualOf, swingOf } from './process-fit';
+import { followPart, type Reconstruction, reconstructTravel } from './reconstruct-travel';
 import type { Slip, StictionFit, StictionResult } from './stiction-fit';
 import { findLine, testValve } from './valve-test';
 
@@ -78,10 +72,10 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
       ? ['self-regulating', 'integrating']
       : [(options.response ?? record.response) as 'self-regulating' | 'integrating'];
   const notes: Note[] = [];
-  let found: { reconstruction: Reconstruction; settings: SearchSettings } | null = null;
+  let found: { reconstruction: Reconstruction; settings: ProcessSettings } | null = null;
   for (const response of responses) {
     const settings = settingsFor(record, response === 'integrating', period, deadTime, processGain);
-    const reconstruction = reconstructTravel(record.pv, record.op, settings);
+    const reconstruction = reconstructTravel(record.pv, record.op, settings)?.[0];
     if (!reconstruction) continue;
     if (!found || reconstruction.innovations < found.reconstruction.innovations) {
       found = { reconstruction, settings };
@@ -151,7 +145,7 @@ function settingsFor(
   period: number,
   deadTime: number | null,
   processGain: number | null,
-): SearchSettings {
+): ProcessSettings {
   const perSample = integrating ? record.samplePeriod : 1;
   const stated = processGain === null ? null : Math.abs(processGain) * perSample;
   return {
@@ -179,7 +173,7 @@ function gainSign(record: LoopRecord): 1 | -1 {
 
 function fitParts(
   record: LoopRecord,
-  found: { reconstruction: Reconstruction; settings: SearchSettings },
+  found: { reconstruction: Reconstruction; settings: ProcessSettings },
   travel: Float64Array,
   measured: boolean,
   whole: PartFit,
@@ -189,7 +183,7 @@ function fitParts(
     const op = record.op.slice(from, to);
     const near = measured
       ? { ...whole, travel: travel.slice(from, to) }
-      : refitNear(record.pv.slice(from, to), op, found.reconstruction, found.settings, largest);
+      : followPart(record.pv.slice(from, to), op, found.reconstruction, found.settings);
     return describeTravel(op, near.travel, { near, largest: largest * 1.05 });
   });
 }

@@ -77,7 +77,7 @@ function differenceAndSmooth(values: Float64Array, theta: number): Float64Array 
 }
 
 /** The second disturbance pole differs a little from the first, so that partial fractions exist. */
-function secondTheta(theta: number): number {
+export function secondTheta(theta: number): number {
   return 0.94 * theta;
 }
 

@@ -10,15 +10,15 @@ import { createTravelPieces, travelFromPieces, walkTwoParameter } from '../valve
 import { filterTravel, whiten } from './objective';
 import {
   bestTheta,
+  createTarget,
+  fitGain,
+  fitProcess,
   lagged,
-  plainMisfit,
-  processGrid,
-  type Reconstruction,
-  refineProcess,
+  type ProcessSettings,
   residualOf,
-  reversalTolerance,
-  type SearchSettings,
-} from './search';
+} from './process-fit';
+import type { Reconstruction } from './reconstruct-travel';
+import { processGrid, reversalTolerance } from './search';
 import type { ValveTest } from './stiction-fit';
 
 const blocks = 16;
@@ -36,13 +36,13 @@ export function testValve(
   pv: Float64Array,
   op: Float64Array,
   found: Reconstruction,
-  settings: SearchSettings,
+  settings: ProcessSettings,
   line: { readonly frequency: number; readonly coherent: boolean },
 ): ValveTest {
   const valve = explanation(pv, found.travel, found, settings);
-  const straight = bestExplanation(pv, op, [lagged(op, found.actuatorLag)], found, settings);
+  const straight = bestExplanation(pv, [lagged(op, found.actuatorLag)], found, settings);
   const deadBands = [0.7, 0.85, 0.93, 1, 1.07].map((share) => deadBandTravel(op, found, share * found.S));
-  const deadBand = bestExplanation(pv, op, deadBands, found, settings);
+  const deadBand = bestExplanation(pv, deadBands, found, settings);
   const valveLog = blockLogs(valve);
   const overLine = compare(valveLog, blockLogs(straight), pv.length);
   const overDeadBand = compare(valveLog, blockLogs(deadBand), pv.length);
@@ -80,7 +80,7 @@ function explanation(
   pv: Float64Array,
   travel: Float64Array,
   found: { lag: number; delay: number; theta: number },
-  settings: SearchSettings,
+  settings: ProcessSettings,
 ): Explanation {
   return {
     part: filterTravel(travel, found, found.theta, settings.integrating),
@@ -91,10 +91,9 @@ function explanation(
 /** The best of several travels, each with its own process and disturbance filter. */
 function bestExplanation(
   pv: Float64Array,
-  op: Float64Array,
   travels: readonly Float64Array[],
   found: Reconstruction,
-  settings: SearchSettings,
+  settings: ProcessSettings,
 ): Explanation {
   const grid = processGrid(settings);
   let best: Explanation | null = null;
@@ -102,26 +101,16 @@ function bestExplanation(
   for (const travel of travels) {
     let theta = found.theta;
     for (let pass = 0; pass < 2; pass++) {
-      const target = whiten(pv, theta, settings.integrating);
-      let power = 0;
-      for (let k = 0; k < op.length; k++) {
-        target[k] *= settings.sign;
-        power += target[k] * target[k];
-      }
-      let start = { lag: found.lag, delay: found.delay };
-      let lowest = plainMisfit(travel, target, power, start.lag, start.delay, theta, settings).misfit;
+      const target = createTarget(pv, theta, settings);
+      let start = fitGain(travel, target, found.lag, found.delay, settings);
       for (let i = 0; i < grid.lags.length; i += 3) {
         for (let d = 0; d < grid.delays.length; d += 3) {
-          const there = { lag: grid.lags[i], delay: grid.delays[d] };
-          const { misfit } = plainMisfit(travel, target, power, there.lag, there.delay, theta, settings);
-          if (misfit < lowest) {
-            lowest = misfit;
-            start = there;
-          }
+          const there = fitGain(travel, target, grid.lags[i], grid.delays[d], settings);
+          if (there.misfit < start.misfit) start = there;
         }
       }
-      const refined = refineProcess(travel, target, power, start, theta, settings);
-      const innovations = refined.misfit * power;
+      const refined = fitProcess(travel, target, start, settings);
+      const innovations = refined.misfit * target.power;
       if (innovations < least) {
         least = innovations;
         best = explanation(pv, travel, { ...refined, theta }, settings);

@@ -1,0 +1,186 @@
+/**
+ * Stage 1 of the estimate: the travel behind OP and PV.
+ *
+ * A grid search over the two-parameter element gives starts. A pair that explains PV well may still be far from
+ * the valve: where the stem moves mostly at reversals, a large gain with a small jump fits nearly as well as the
+ * truth. So the starts are spread over J/S, from each the travel is followed with live hypotheses (`track-travel.ts`),
+ * process and element are fitted again to what was followed, and the whole history with the lowest price wins.
+ */
+import { twoParameterValve } from '../valve/two-parameter';
+import { describeTravel } from './describe-travel';
+import { createObjective, secondTheta } from './objective';
+import {
+  bestTheta,
+  createTarget,
+  fitGain,
+  fitProcess,
+  lagged,
+  type ProcessFit,
+  type ProcessSettings,
+  residualOf,
+  swingOf,
+  type Target,
+} from './process-fit';
+import { firstTheta, type GridPoint, processGrid, searchGrid } from './search';
+import { trackTravel } from './track-travel';
+
+/** One history of the travel with the element and process that go with it. */
+export interface Reconstruction extends ProcessFit {
+  readonly S: number;
+  readonly J: number;
+  readonly actuatorLag: number;
+  readonly theta: number;
+  /** Negative log likelihood of PV plus the price of the liberties taken; comparable within one record. */
+  readonly price: number;
+  /** Power of the one-step prediction errors; comparable between disturbance filters and responses. */
+  readonly innovations: number;
+  /** % */
+  readonly travel: Float64Array;
+}
+
+const actuatorLags: readonly number[] = [0, 0.7, 1.4];
+/** Bands of J/S from each of which one start is taken. */
+const jumpBands: readonly number[] = [0, 0.08, 0.2, 0.35, 0.5, 0.7, 1.01];
+const rounds: readonly number[] = [6, 3, 2, 1];
+
+/** Null when OP does not move. `pv` in any unit, `op` in %, one length. */
+export function reconstructTravel(
+  pv: Float64Array,
+  op: Float64Array,
+  settings: ProcessSettings,
+): Reconstruction[] | null {
+  const largest = swingOf(op);
+  if (!(largest > 0)) return null;
+  const theta = firstTheta(pv, op, largest, settings);
+  const objective = createObjective(pv, op, { ...settings, ...processGrid(settings), theta });
+  const points = [
+    ...searchGrid(objective, op, 'slides-on', largest),
+    ...searchGrid(objective, op, 'sticks-again', largest),
+  ].sort((a, b) => a.misfit - b.misfit);
+  if (points[0].misfit >= 1) return null;
+  const target = createTarget(pv, theta, settings);
+  const actuatorLag = bestActuatorLag(op, points[0], target, settings);
+  const u = lagged(op, actuatorLag);
+  let live = startsFrom(points, u, target, settings, largest).map((start) => ({
+    ...start,
+    actuatorLag,
+    theta,
+    price: Number.POSITIVE_INFINITY,
+    innovations: start.misfit * target.power,
+    travel: u,
+  }));
+  let now = target;
+  for (const keep of rounds) {
+    live = live
+      .slice(0, keep)
+      .map((start) => follow(op, u, now, start, largest, settings))
+      .concat(live.slice(keep))
+      .sort((a, b) => a.price - b.price);
+  }
+  const [best] = live;
+  const better = bestTheta(residualOf(pv, best.travel, best, settings), settings.integrating);
+  if (better !== theta) {
+    now = createTarget(pv, better, settings);
+    live = live
+      .slice(0, 3)
+      .map((start) =>
+        follow(op, u, now, { ...start, theta: better, innovations: best.innovations }, largest, settings),
+      )
+      .sort((a, b) => a.price - b.price);
+  }
+  return live;
+}
+
+/** The travel of a part of the record, followed from the reconstruction of the whole. */
+export function followPart(
+  pv: Float64Array,
+  op: Float64Array,
+  whole: Reconstruction,
+  settings: ProcessSettings,
+): Reconstruction {
+  const target = createTarget(pv, whole.theta, settings);
+  const start = { ...whole, innovations: whole.misfit * target.power };
+  return follow(op, lagged(op, whole.actuatorLag), target, start, swingOf(op), settings);
+}
+
+function bestActuatorLag(
+  op: Float64Array,
+  point: GridPoint,
+  target: Target,
+  settings: ProcessSettings,
+): number {
+  let best = 0;
+  let least = Number.POSITIVE_INFINITY;
+  for (const lag of actuatorLags) {
+    const travel = twoParameterValve(lagged(op, lag), { S: point.S, J: point.J, model: point.model });
+    const { misfit } = fitProcess(travel, target, point, settings);
+    if (misfit < least) {
+      least = misfit;
+      best = lag;
+    }
+  }
+  return best;
+}
+
+type Start = ProcessFit & { readonly S: number; readonly J: number };
+
+/** The best tried point of every band of J/S, its process refined; bands without one borrow S from the best. */
+function startsFrom(
+  points: readonly GridPoint[],
+  u: Float64Array,
+  target: Target,
+  settings: ProcessSettings,
+  largest: number,
+): Start[] {
+  const [best] = points;
+  const starts: Start[] = [];
+  for (let band = 0; band + 1 < jumpBands.length; band++) {
+    const low = jumpBands[band];
+    const high = jumpBands[band + 1];
+    const point =
+      points.find(({ S, J }) => J / S >= low && J / S < high && Math.abs(S - best.S) < 0.3 * best.S) ??
+      ({ ...best, J: (best.S * (low + Math.min(high, 1))) / 2 } as GridPoint);
+    const S = Math.min(point.S, largest);
+    const travel = twoParameterValve(u, { S, J: Math.min(point.J, S), model: point.model });
+    const process = fitGain(travel, target, point.lag, point.delay, settings);
+    starts.push({ ...(process.gain > 0 ? process : best), S, J: Math.min(point.J, S) });
+  }
+  return starts.sort((a, b) => a.misfit - b.misfit);
+}
+
+/** Follows the travel once from `start`, then fits process and element to it. */
+function follow(
+  op: Float64Array,
+  u: Float64Array,
+  target: Target,
+  start: Start & { readonly actuatorLag: number; readonly theta: number; readonly innovations: number },
+  largest: number,
+  settings: ProcessSettings,
+): Reconstruction {
+  const { S, J, gain, lag, delay } = start;
+  const samples = op.length;
+  const { travel, penalty } = trackTravel(target.values, u, {
+    S,
+    J,
+    gain,
+    lag,
+    delay,
+    theta: target.theta,
+    secondTheta: settings.integrating ? secondTheta(target.theta) : null,
+    variance: start.innovations / samples,
+  });
+  const process = fitProcess(travel, target, { lag, delay }, settings);
+  const kept = process.gain > 0 ? process : { lag, delay, gain, misfit: 1 };
+  const element = describeTravel(op, travel, { near: { S, J }, largest: largest * 1.05 });
+  const innovations = kept.misfit * target.power;
+  return {
+    ...kept,
+    S: element.S,
+    J: element.J,
+    actuatorLag: start.actuatorLag,
+    theta: target.theta,
+    price: (samples / 2) * Math.log(innovations / samples) + penalty,
+    innovations,
+    travel,
+  };
+}
