@@ -12,6 +12,13 @@ const fewestSamples = 1088;
 /** Longer periods are thinned to this many samples a cycle, so that a segment holds several (own choice). */
 const longestPeriod = 40;
 
+/**
+ * The window couples neighbouring pairs and overlapping segments a little. For simulated Gaussian noise the mean scatters as that
+ * of this many times fewer pairs would, and stands higher by this factor (own choice; else false alarms are frequent).
+ */
+const dependence = 2.7;
+const overlap = 1.025;
+
 export interface NonlinearityIndexes {
   /** NGI: mean squared bicoherence less its 95 % limit for a Gaussian signal. */
   readonly nonGaussianity: number;
@@ -22,8 +29,10 @@ export interface NonlinearityIndexes {
 export function nonlinearityIndexes({ segments, squared }: Bicoherence): NonlinearityIndexes {
   const pairs = squared.length;
   const average = (values: Float64Array): number => values.reduce((sum, v) => sum + v, 0) / values.length;
-  // Each value times 2 segments is chi-square with two degrees of freedom, so their sum has 2 pairs of them.
-  const limit = chiSquareQuantile(0.95, 2 * pairs) / (2 * segments * pairs);
+  // Each value times 2 segments is chi-square with two degrees of freedom, and their sum has as many as it has
+  // independent pairs.
+  const independent = pairs / dependence;
+  const limit = (overlap * chiSquareQuantile(0.95, 2 * independent)) / (2 * segments * independent);
   const low = quantile(squared, 0.1);
   const high = quantile(squared, 0.9);
   const middle = squared.filter((value) => value >= low && value <= high);

@@ -2,7 +2,7 @@
  * Width of the PV-OP plot: an ellipse is fitted to the filtered plot, and its widest chord along OP is read as apparent
  * stiction. It is a size, not a verdict: any cycle whose PV lags OP has some width.
  */
-import { EigenvalueDecomposition, inverse, Matrix } from 'ml-matrix';
+import { determinant, EigenvalueDecomposition, inverse, Matrix } from 'ml-matrix';
 import { bandPass } from '../signal/filter';
 import { firstReason, needsBothCycles, needsShape } from './applies';
 import { figure, type Indicator } from './indicator';
@@ -27,6 +27,8 @@ export function ellipseChord(x: Float64Array, y: Float64Array): number | null {
   const s1 = products(quadratic, quadratic);
   const s2 = products(quadratic, linear);
   const s3 = products(linear, linear);
+  // Points on one line: x and y depend on each other.
+  if (determinant(s3) < 1e-12 * s3.get(0, 0) * s3.get(1, 1) * s3.get(2, 2)) return null;
   const back = inverse(s3).mmul(s2.transpose()).mul(-1);
   const reduced = s1.add(s2.mmul(back));
   // Premultiplied by the inverse of the constraint 4 a c - b^2 = 1.
@@ -56,9 +58,8 @@ export const ellipseWidth: Indicator = {
   source: 'Choudhury, Shah, Thornhill, Shook 2006, Control Eng. Practice 14:1395-1412; value from memory',
   skips: (facts) => firstReason(needsBothCycles(facts), needsShape(facts)),
   evaluate({ op, pv, period }) {
-    const low = 0.5 / period;
     const high = 4 / period;
-    const value = ellipseChord(bandPass(op, 1, low, high), bandPass(pv, 1, low, high));
+    const value = ellipseChord(bandPass(op, 1, 0, high), bandPass(pv, 1, 0, high));
     if (value === null) return 'The plot of PV against OP does not spread over an ellipse.';
     return {
       value,

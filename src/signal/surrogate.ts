@@ -54,10 +54,9 @@ export function selfPredictionError(values: Float64Array, embedding: number, nei
   // Sorted lists of the nearest so far, one row a stretch.
   const distance = new Float64Array(stretches * neighbours).fill(Number.POSITIVE_INFINITY);
   const target = new Float64Array(stretches * neighbours);
-  const offer = (i: number, far: number, value: number): void => {
-    const end = (i + 1) * neighbours - 1;
-    if (far >= distance[end]!) return;
-    let at = end;
+  const farthest = neighbours - 1;
+  const insert = (i: number, far: number, value: number): void => {
+    let at = i * neighbours + farthest;
     while (at > i * neighbours && distance[at - 1]! > far) {
       distance[at] = distance[at - 1]!;
       target[at] = target[at - 1]!;
@@ -72,8 +71,8 @@ export function selfPredictionError(values: Float64Array, embedding: number, nei
     let far = 0;
     for (let k = 0; k < embedding; k++) far += (values[k]! - values[k + gap]!) ** 2;
     for (let i = 0; i + gap < stretches; i++) {
-      offer(i, far, values[i + gap + ahead]!);
-      offer(i + gap, far, values[i + ahead]!);
+      if (far < distance[i * neighbours + farthest]!) insert(i, far, values[i + gap + ahead]!);
+      if (far < distance[(i + gap) * neighbours + farthest]!) insert(i + gap, far, values[i + ahead]!);
       far +=
         (values[i + embedding]! - values[i + gap + embedding]!) ** 2 - (values[i]! - values[i + gap]!) ** 2;
     }
