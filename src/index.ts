@@ -39,9 +39,11 @@ export { valveLoopFigure } from './figures/valve-loop-figure';
 export { canMakeDataFrames, dataFrame } from './notebook/data-frame';
 export { demoFile } from './notebook/demo-file';
 export {
+  type ShowTableOptions,
   showAnswer,
   showCautions,
   showFigure,
+  showFitness,
   showNextSteps,
   showReasons,
   showSetUp,

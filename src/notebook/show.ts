@@ -5,13 +5,14 @@ import type { Findings } from '../assessment/findings';
 import { answerCard } from '../assessment/make-answer-card';
 import { refuseUnknownOptions } from '../errors';
 import type { Figure } from '../figures/figure';
+import type { Forbids } from '../record/fitness';
 import { answerHtml, stepHtml } from '../report/answer-html';
 import { figureHtml } from '../report/figure-html';
 import { figureLibraryHtml } from '../report/figure-library';
-import { listHtml } from '../report/html-text';
+import { escapeHtml, listHtml } from '../report/html-text';
 import { componentStyle } from '../report/look';
 import { staticPictures } from '../report/static-picture';
-import { type Table, tableHtml } from '../report/table';
+import { type Table, type TableLook, tableHtml } from '../report/table';
 import { type FrameLike, tableOf } from './data-frame';
 import { showHtml } from './kernel-display';
 
@@ -40,21 +41,37 @@ export async function showFigure(...figures: (Figure | null)[]): Promise<void> {
   await showHtml(drawn.length > 1 ? `<div class="sb-row">${shown}</div>` : shown);
 }
 
-export interface ShowTableOptions {
-  /** Rows shown at most; the rest is counted. Default 40. */
-  readonly rows?: number;
+export interface ShowTableOptions extends TableLook {
   /** Title above the table. Default: the table's own, or `Data frame`. */
   readonly title?: string;
 }
 
 /** Shows a table or a danfo data frame. Throws WrongUse for an unknown option. */
 export async function showTable(table: Table | FrameLike, options: ShowTableOptions = {}): Promise<void> {
-  refuseUnknownOptions('showTable', options, ['rows', 'title']);
-  const { rows = 40, title } = options;
+  refuseUnknownOptions('showTable', options, ['rows', 'folded', 'title']);
+  const { title, ...look } = options;
   const shown =
     'title' in table ? { ...table, title: title ?? table.title } : tableOf(table, title ?? 'Data frame');
-  await showHtml(tableHtml(shown, rows));
+  await showHtml(tableHtml(shown, look));
 }
+
+/** Shows how many fitness checks the record passes, and of each other one what it found and what it takes away. */
+export async function showFitness({ fitness }: Findings): Promise<void> {
+  const failed = fitness.checks.filter((check) => !check.passed);
+  const count = `${fitness.checks.length - failed.length} of ${fitness.checks.length} checks of the record are passed.`;
+  const sentences = failed.map(({ text, limit, forbids }) => {
+    const taken = forbids.map((thing) => takenAway[thing]).join(', ');
+    return `${text} Limit: ${limit}. ${taken ? `This takes away: ${taken}.` : 'This is a warning only.'}`;
+  });
+  const advice = failed.length > 0 ? `<p>${escapeHtml(fitness.recordToAskFor)}</p>` : '';
+  await showHtml(`<p><strong>${count}</strong></p>${listHtml(sentences)}${advice}`);
+}
+
+const takenAway: Readonly<Record<Forbids, string>> = {
+  cycle: 'any word on a cycle',
+  cause: 'the cause',
+  numbers: 'the numbers S and J',
+};
 
 /** Shows why the cause was named, what was ruled out, what else may contribute, and why numbers were refused. */
 export async function showReasons({ assessment }: Findings): Promise<void> {

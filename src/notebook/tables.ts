@@ -16,23 +16,13 @@ function tableFrom<Key extends string>(
 export function fitnessTable(findings: Findings): Table {
   const rows = findings.fitness.checks.map((check) => ({
     check: check.title,
-    found: check.value,
-    unit: check.unit,
+    found: check.text,
     limit: check.limit,
     passed: check.passed,
-    'what it takes away': check.passed ? '' : check.forbids.join(', ') || 'nothing, it only warns',
     'source of the limit': check.source,
   }));
-  const names = [
-    'check',
-    'found',
-    'unit',
-    'limit',
-    'passed',
-    'what it takes away',
-    'source of the limit',
-  ] as const;
-  return tableFrom('Fitness of the record', names, rows);
+  const names = ['check', 'found', 'limit', 'passed', 'source of the limit'] as const;
+  return tableFrom('All checks, with their limits and where these are from', names, rows);
 }
 
 /** Dead band and slip jump with the ends of their 90 % intervals, and the process that was found with them. */
@@ -90,7 +80,11 @@ export function evidenceTable(findings: Findings): Table {
     why,
     source,
   }));
-  return tableFrom('Indicators', ['indicator', 'value', 'threshold', 'says', 'why', 'source'], rows);
+  return tableFrom(
+    'Every indicator, with its threshold and paper',
+    ['indicator', 'value', 'threshold', 'says', 'why', 'source'],
+    rows,
+  );
 }
 
 /** What the result was made from: file, fingerprint, version, options. */

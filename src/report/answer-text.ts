@@ -16,7 +16,8 @@ export function answerText(card: AnswerCard, width: number = 92): string {
   const wide = Math.max(...card.figures.map((figure) => figure.label.length), 0);
   const figures = card.figures.flatMap(({ label, value, note }) => {
     const start = `  ${label.padEnd(wide)}  `;
-    return wrapped(note ? `${value} (${note})` : value, width, start, ' '.repeat(start.length));
+    const remark = note.endsWith('.') ? `. ${note}` : ` (${note})`;
+    return wrapped(note ? value + remark : value, width, start, ' '.repeat(start.length));
   });
   const test = card.decidingTest;
   const sections: string[][] = [

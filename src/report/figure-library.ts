@@ -22,6 +22,9 @@ export function figureLibraryHtml(): string {
 const drawFigures = `async function () {
   if (window.stickbandDraws) return;
   window.stickbandDraws = true;
+  if (document.readyState === 'loading') {
+    await new Promise((parsed) => document.addEventListener('DOMContentLoaded', parsed));
+  }
   const holder = document.querySelector('script.sb-library');
   if (!holder || !window.DecompressionStream) return;
   const bytes = Uint8Array.from(atob(holder.textContent), (sign) => sign.charCodeAt(0));

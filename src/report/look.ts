@@ -44,6 +44,7 @@ export const componentStyle: string = `
 .sb-table thead th { border-bottom: 1px solid ${palette.faint}; font-weight: 600; }
 .sb-table table td { overflow-wrap: break-word; }
 .sb-table table .sb-number { text-align: right; font-variant-numeric: tabular-nums; }
+.sb-folded { margin: 0 0 1rem; } .sb-folded summary { cursor: pointer; margin-bottom: .4rem; }
 @media screen and (max-width: 600px) {
   .sb-wide table, .sb-wide tbody, .sb-wide tr, .sb-wide td { display: block; } .sb-wide thead { display: none; }
   .sb-wide tr { border-bottom: 1px solid ${palette.faint}; padding: .4rem 0; }
@@ -52,6 +53,7 @@ export const componentStyle: string = `
 }
 @media print {
   .sb-card { border-radius: 0; } .sb-figure, .sb-part, .sb-table tr { break-inside: avoid; }
+  .sb-folded::details-content { content-visibility: visible; }
   .sb-plot, .sb-drawn .sb-plot { display: none; } .sb-shown .sb-picture, .sb-picture { display: block; }
 }
 `.trim();

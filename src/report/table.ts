@@ -8,12 +8,19 @@ export interface Table {
   readonly columns: readonly { readonly name: string; readonly values: readonly TableValue[] }[];
 }
 
+export interface TableLook {
+  /** Rows shown at most; the others are counted. Default 40. */
+  readonly rows?: number;
+  /** Whether only the title shows until it is clicked. Default false. */
+  readonly folded?: boolean;
+}
+
 /**
- * Shows at most `rows` rows and says how many are left out. Numbers are shown with four significant digits; the
- * table itself keeps them whole. null is shown as a dash. On a narrow screen the rows of a table with more than four
- * columns stand as blocks.
+ * Numbers are shown with four significant digits; the table itself keeps them whole. null is shown as a dash. On a
+ * narrow screen the rows of a table with more than four columns stand as blocks.
  */
-export function tableHtml(table: Table, rows: number = 40): string {
+export function tableHtml(table: Table, look: TableLook = {}): string {
+  const { rows = 40, folded = false } = look;
   const count = table.columns[0]?.values.length ?? 0;
   const title = `<strong>${escapeHtml(table.title)}.</strong>`;
   if (count === 0) return `<p>${title} None.</p>`;
@@ -23,13 +30,14 @@ export function tableHtml(table: Table, rows: number = 40): string {
     const cells = table.columns.map((column) => cellHtml(column.name, column.values[row] ?? null));
     return `<tr>${cells.join('')}</tr>`;
   });
-  const more = count > shown ? ` First ${shown} of ${count}.` : '';
-  return [
+  const heading = count > shown ? `${title} First ${shown} of ${count}.` : title;
+  const grid = [
     `<div class="sb-table${table.columns.length > 4 ? ' sb-wide' : ''}"><table>`,
-    `<caption>${title}${more}</caption>`,
+    folded ? '' : `<caption>${heading}</caption>`,
     `<thead><tr>${head}</tr></thead><tbody>${body.join('')}</tbody>`,
     '</table></div>',
   ].join('');
+  return folded ? `<details class="sb-folded"><summary>${heading}</summary>${grid}</details>` : grid;
 }
 
 function cellHtml(column: string, value: TableValue): string {

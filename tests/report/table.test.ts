@@ -21,9 +21,19 @@ describe('a table as HTML', () => {
   });
 
   it('says how many rows it leaves out', () => {
-    const html = tableHtml(table, 2);
+    const html = tableHtml(table, { rows: 2 });
     expect(html).toContain('First 2 of 3.');
     expect(html.match(/<tr>/g)).toHaveLength(3);
     expect(html).not.toContain('120');
+  });
+
+  it('can be folded under its title', () => {
+    expect(tableHtml(table, { folded: true })).toMatch(/^<details.*<summary><strong>Cycles &lt;all&gt;/);
+  });
+
+  it('says that it is empty instead of showing a bare head', () => {
+    expect(tableHtml({ title: 'Slips', columns: [{ name: 'time, s', values: [] }] })).toBe(
+      '<p><strong>Slips.</strong> None.</p>',
+    );
   });
 });
