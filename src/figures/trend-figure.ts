@@ -7,7 +7,7 @@ import { type RecordClock, recordClock } from './clock';
 import type { Figure } from './figure';
 import { axis, makeFigure, panelName, timeAxis, withUnit } from './layout';
 import { lineWidth, palette } from './palette';
-import { extent, plain, short } from './plain-numbers';
+import { extent, padded, plain, short } from './plain-numbers';
 import { thin } from './thin';
 
 /** Slips that can be marked without hiding OP. */
@@ -49,7 +49,8 @@ export function trendFigure(findings: Findings): Figure {
       panelName(travel ? 'OP, % of span; travel, %' : 'OP, % of span', 'y2'),
     ],
     layout: {
-      xaxis: timeAxis(clock, 'y2'),
+      // Room at the ends keeps the first label, the one with the date, inside the figure.
+      xaxis: { ...timeAxis(clock, 'y2'), range: padded(clock.at(0), clock.at(seconds), 0.03, 0.03) },
       yaxis: axis({ domain: [0.53, 1] }),
       yaxis2: axis({ domain: [0, 0.43] }),
     },
