@@ -34,6 +34,13 @@ export interface Candidate {
 
 /** Improvement of the squared misfit, over its error, that a further setting must bring (own choice, about 4.5 sigma). */
 const worthASetting = 20;
+/**
+ * Misfit, over that of the plainer reading, at which a shift or action on PV alone is believed (own choices). The right
+ * shift explains far more than its neighbours; a log that is too slow lets the process pass for a controller one sample
+ * off, a little better than the true one.
+ */
+const betterWhenShifted = 0.5;
+const betterOnPv = 0.95;
 /** Share of OP's mean square below which a misfit is lost among the digits of the sums. */
 export const lostInDigits = 1e-9;
 
@@ -53,8 +60,9 @@ export function bestCandidate(sums: Sums, sp: 'none' | 'still' | 'moves'): Candi
       for (const proportionalOn of sp === 'moves' ? (['error', 'pv'] as const) : (['error'] as const)) {
         const candidate = bestForm(sums, sp === 'none', { pvShift, spShift, proportionalOn });
         if (candidate === null) continue;
-        // Shifts and action on PV must better the plain reading by a twentieth (own choice).
-        if (best === null || candidate.squares < 0.95 * best.squares) best = candidate;
+        const shifted = pvShift !== 0 || spShift !== 0;
+        const needed = shifted ? betterWhenShifted : betterOnPv;
+        if (best === null || candidate.squares < needed * best.squares) best = candidate;
       }
     }
   }

@@ -78,12 +78,19 @@ export interface IsaTag {
   readonly text: string;
 }
 
+/**
+ * Letters of a loop or its transmitter: the measured variable, a modifier (difference, ratio, scan, total), indicating or
+ * recording, and controller, control valve, transmitter or element. Narrow enough not to see a tag in `loop 7` or `file1`.
+ */
+const isaLetters = '[A-Z][DFKQ]?(?:(?:IR?|R)?(?:CV?|T|E)|I|R)';
+const isaPattern = new RegExp(
+  `(?:^|[^\\p{L}\\p{N}])((?:(\\d{1,4})[-_ ]?)?(${isaLetters})[-_ ]?(\\d{1,6}[A-Z]?))(?=$|[^\\p{L}\\p{N}])`,
+  'iu',
+);
+
 /** Finds an ISA-5.1 tag in a name such as `area31/31-FC-104.block`; null when there is none. */
 export function isaTag(name: string): IsaTag | null {
-  const found =
-    /(?:^|[^\p{L}\p{N}])((?:(\d{1,4})[-_ ]?)?([A-Z]{2,5})[-_ ]?(\d{1,6}[A-Z]?))(?=$|[^\p{L}\p{N}])/iu.exec(
-      name,
-    );
+  const found = isaPattern.exec(name);
   if (found === null) return null;
   return {
     area: found[2] ?? '',

@@ -1,6 +1,6 @@
 /** Checks on how much was logged and how evenly: samples, cycles, gaps, duplicates, filled samples, skew. */
 import { countReversals } from '../oscillation/reversals';
-import { standardDeviation } from '../signal/statistics';
+import { noiseLevel, standardDeviation } from '../signal/statistics';
 import { all, type Checked, causeAndNumbers, numbers, percent, short, warns } from './checked';
 import type { FitnessCheck } from './fitness';
 
@@ -71,14 +71,11 @@ function samplesACycle({ record, period }: Checked): FitnessCheck {
   };
 }
 
-function reversals({ record, opCycle }: Checked): FitnessCheck {
-  // Without a cycle, turns of OP larger than its standard deviation are counted.
-  const spread = record.op.length > 1 ? standardDeviation(record.op) : 0;
-  const value = opCycle.present
-    ? 2 * opCycle.cycles
-    : spread > 0
-      ? countReversals(record.op, spread).count
-      : 0;
+function reversals({ record: { op }, opCycle, opStep }: Checked): FitnessCheck {
+  // Without a cycle, turns of OP that stand out of its noise, its rounding and its wandering are counted.
+  const tolerance =
+    op.length < 3 ? Infinity : Math.max(5 * noiseLevel(op), 2 * opStep, 0.2 * standardDeviation(op));
+  const value = opCycle.present ? 2 * opCycle.cycles : countReversals(op, tolerance).count;
   const passed = value >= fewestReversals;
   return {
     code: 'reversals',

@@ -163,12 +163,12 @@ function compression(
 
 /**
  * Samples of OP that the controller makes from the logged SP and PV: they, and the PV behind them, are as measured. Where
- * OP moves too little to tell sample by sample, a controller that explains OP over longer intervals vouches for all
- * (null), and one that does not for none.
+ * OP moves too little to tell sample by sample, a controller that explains OP over longer intervals vouches for all,
+ * and one that does not for none. null when there is no controller to vouch.
  */
 function accountedFor({ record, controller, opStep, pvStep }: Checked): Uint8Array | null {
-  if (controller === null) return null;
   const { op } = record;
+  if (controller === null) return null;
   const tolerance = 1.01 * (opStep + (controller.form === 'I' ? 0 : Math.abs(controller.gain) * pvStep));
   let squares = 0;
   for (let i = 1; i < op.length; i++) squares += (op[i]! - op[i - 1]!) ** 2;
@@ -177,5 +177,6 @@ function accountedFor({ record, controller, opStep, pvStep }: Checked): Uint8Arr
       Math.abs(value - controller.reproduced[i]!) <= tolerance ? 1 : 0,
     );
   }
-  return record.sp === null || controller.explains >= vouches ? null : new Uint8Array(op.length);
+  if (controller.explains >= vouches) return new Uint8Array(op.length).fill(1);
+  return record.sp === null ? null : new Uint8Array(op.length);
 }
