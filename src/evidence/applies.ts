@@ -1,9 +1,14 @@
-/** Reasons, shared by several indicators, why one does not apply to a loop. Each gives a sentence, or null. */
+/**
+ * Reasons, shared by several indicators, why one does not apply to a loop. Each gives a sentence, or null.
+ */
 import type { LoopFacts } from './loop-facts';
 
 /** Fewest samples a cycle that keep its shape (Thornhill 2005, value from memory). */
 const fewestSamples = 7;
-/** Periods of OP and PV further apart than this factor are two cycles (as in findCycle; an uneven one reads unevenly). */
+/**
+ * Periods of OP and PV further apart than this factor are two cycles (as in findCycle; an uneven one reads
+ * unevenly).
+ */
 const samePeriod = 1.6;
 
 /** The first reason there is. */

@@ -1,17 +1,18 @@
 /**
- * Area under each half cycle of the control error before its peak over the area behind it. A valve that sticks and jumps makes the
- * error of a self-regulating loop rise slowly to a late peak and then switch over; a sine is the same on both sides.
+ * Area under each half cycle of the control error before its peak over the area behind it. A valve that
+ * sticks and jumps makes the error of a self-regulating loop rise slowly to a late peak and then switch over;
+ * a sine is the same on both sides.
  */
 import { studentTQuantile } from '../signal/distributions';
 import { mean, standardDeviation } from '../signal/statistics';
+import { threeDigits } from '../signal/three-digits';
 import { slowTrend } from '../signal/trend';
 import { firstReason, needsPvCycle, needsSelfRegulating, needsShape } from './applies';
-import { type HalfCycle, halfCycles } from './half-cycles';
-import { figure, type Indicator } from './indicator';
+import { type HalfCycle, halfCycles, tooFewHalves } from './half-cycles';
+import type { Indicator } from './indicator';
 
 /** Ratios up to this count as about 1 (own choice). */
 const aboutOne = 1.15;
-const fewestHalves = 6;
 
 /** Share of the area of one half cycle that lies before its peak, 0..1. */
 export function shareBeforePeak(values: Float64Array, { from, to, sign }: HalfCycle): number {
@@ -27,7 +28,8 @@ export function shareBeforePeak(values: Float64Array, { from, to, sign }: HalfCy
     if (i < peak) before += area;
     else behind += area;
   }
-  return before / (before + behind);
+  // A half cycle lies above zero somewhere; should noise leave nothing, neither side has more.
+  return before + behind > 0 ? before / (before + behind) : 0.5;
 }
 
 export const areaRatio: Indicator = {
@@ -39,13 +41,10 @@ export const areaRatio: Indicator = {
   evaluate({ error, pvCycle, record }) {
     const period = pvCycle.period! / record.samplePeriod;
     const smooth = slowTrend(error, Math.max(1, Math.floor(period / 12)));
-    const shares = halfCycles(error, period)
-      .map((half) => shareBeforePeak(smooth, half))
-      .filter(Number.isFinite);
-    if (shares.length < fewestHalves) {
-      return `The error has ${shares.length} clear half cycles; at least ${fewestHalves} are needed.`;
-    }
-    const all = Float64Array.from(shares);
+    const halves = halfCycles(error, period);
+    const tooFew = tooFewHalves(halves);
+    if (tooFew !== null) return tooFew;
+    const all = Float64Array.from(halves, (half) => shareBeforePeak(smooth, half));
     const share = Math.min(0.98, Math.max(0.02, mean(all)));
     const reach = (studentTQuantile(0.975, all.length - 1) * standardDeviation(all)) / Math.sqrt(all.length);
     const value = share / (1 - share);
@@ -54,7 +53,7 @@ export const areaRatio: Indicator = {
     return {
       value,
       says,
-      why: `Over ${all.length} half cycles of the error, the area before the peak is ${figure(value)} times that behind it${says === 'undecided' ? ', too scattered to tell from 1' : ''}.`,
+      why: `Over ${all.length} half cycles of the error, the area before the peak is ${threeDigits(value)} times that behind it${says === 'undecided' ? ', too scattered to tell from 1' : ''}.`,
     };
   },
 };

@@ -1,10 +1,14 @@
-/** Nonlinearity of the loop from the bicoherence of its control error: a non-Gaussianity and a nonlinearity index. */
+/**
+ * Nonlinearity of the loop from the bicoherence of its control error: a non-Gaussianity and a nonlinearity
+ * index.
+ */
 import { type Bicoherence, squaredBicoherence } from '../signal/bispectrum';
 import { blockMeans } from '../signal/block-means';
 import { chiSquareQuantile } from '../signal/distributions';
 import { quantile } from '../signal/statistics';
+import { threeDigits } from '../signal/three-digits';
 import { needsPvCycle } from './applies';
-import { figure, type Indicator } from './indicator';
+import type { Indicator } from './indicator';
 
 const segment = 128;
 /** Fewest samples, about sixteen segments that overlap by one half (own choice). */
@@ -13,8 +17,9 @@ const fewestSamples = 1088;
 const longestPeriod = 40;
 
 /**
- * The window couples neighbouring pairs and overlapping segments a little. For simulated Gaussian noise the mean scatters as that
- * of this many times fewer pairs would, and stands higher by this factor (own choice; else false alarms are frequent).
+ * The window couples neighbouring pairs and overlapping segments a little. For simulated Gaussian noise the
+ * mean scatters as that of this many times fewer pairs would, and stands higher by this factor (own choice;
+ * else false alarms are frequent).
  */
 const dependence = 2.7;
 const overlap = 1.025;
@@ -29,7 +34,8 @@ export interface NonlinearityIndexes {
 export function nonlinearityIndexes({ segments, squared }: Bicoherence): NonlinearityIndexes {
   const pairs = squared.length;
   const average = (values: Float64Array): number => values.reduce((sum, v) => sum + v, 0) / values.length;
-  // Each value times 2 segments is chi-square with two degrees of freedom, and their sum has as many as it has
+  // Each value times 2 segments is chi-square with two degrees of freedom, and their sum has as many as it
+  // has
   // independent pairs.
   const independent = pairs / dependence;
   const limit = (overlap * chiSquareQuantile(0.95, 2 * independent)) / (2 * segments * independent);
@@ -67,7 +73,7 @@ export const bicoherence: Indicator = {
     return {
       value: nonGaussianity,
       says: nonlinear ? 'stiction' : 'not',
-      why: `Over ${found.segments} segments of the error, NGI is ${figure(nonGaussianity)} and NLI ${figure(nonlinearity)}: ${nonlinear ? 'nonlinear' : nonGaussianity > 0.001 ? 'not Gaussian but linear' : 'Gaussian and linear'}.`,
+      why: `Over ${found.segments} segments of the error, NGI is ${threeDigits(nonGaussianity)} and NLI ${threeDigits(nonlinearity)}: ${nonlinear ? 'nonlinear' : nonGaussianity > 0.001 ? 'not Gaussian but linear' : 'Gaussian and linear'}.`,
     };
   },
 };

@@ -1,10 +1,12 @@
 /**
  * Cross-correlation of OP and PV: an odd function of the lag for stiction, an even one for tuning or a
- * disturbance. Two ratios read how odd it is: from the zero crossings nearest lag 0, and from the heights between.
+ * disturbance. Two ratios read how odd it is: from the zero crossings nearest lag 0, and from the heights
+ * between.
  */
 import { crossCorrelation } from '../signal/autocorrelation';
+import { threeDigits } from '../signal/three-digits';
 import { firstReason, needsBothCycles, needsSelfRegulating, needsShape } from './applies';
-import { figure, type Indicator, sayBetween } from './indicator';
+import { type Indicator, sayBetween } from './indicator';
 import type { LoopFacts } from './loop-facts';
 
 const source = 'Horch 1999, Control Eng. Practice 7:1221-1231; thresholds: value from memory';
@@ -12,7 +14,7 @@ const source = 'Horch 1999, Control Eng. Practice 7:1221-1231; thresholds: value
 const skips = (facts: LoopFacts): string | null =>
   firstReason(needsSelfRegulating(facts), needsBothCycles(facts), needsShape(facts));
 
-export interface CorrelationShape {
+interface CorrelationShape {
   /** Zero crossings nearest lag 0, samples, both as distances. */
   readonly left: number;
   readonly right: number;
@@ -22,11 +24,7 @@ export interface CorrelationShape {
 }
 
 /** null when the correlation does not cross zero within a period on both sides. */
-export function correlationShape(
-  op: Float64Array,
-  pv: Float64Array,
-  period: number,
-): CorrelationShape | null {
+function correlationShape(op: Float64Array, pv: Float64Array, period: number): CorrelationShape | null {
   const maxLag = Math.min(op.length - 1, Math.ceil(period));
   const r = crossCorrelation(op, pv, maxLag);
   const at = (lag: number): number => r[lag + maxLag]!;
@@ -63,7 +61,7 @@ export const crossCorrelationLags: Indicator = {
     return {
       value,
       says: sayBetween(value, 1 / 3, 2 / 3),
-      why: `The correlation of OP and PV crosses zero ${figure(left)} samples before and ${figure(right)} after lag 0: ratio ${figure(value)}.`,
+      why: `The correlation of OP and PV crosses zero ${threeDigits(left)} samples before and ${threeDigits(right)} after lag 0: ratio ${threeDigits(value)}.`,
     };
   },
 };
@@ -81,7 +79,7 @@ export const crossCorrelationHeights: Indicator = {
     return {
       value,
       says: sayBetween(value, 0.072, 1 / 3),
-      why: `The correlation of OP and PV is ${figure(atZero)} at lag 0 and ${figure(extreme)} at most beside it: ratio ${figure(value)}.`,
+      why: `The correlation of OP and PV is ${threeDigits(atZero)} at lag 0 and ${threeDigits(extreme)} at most beside it: ratio ${threeDigits(value)}.`,
     };
   },
 };

@@ -1,14 +1,18 @@
 /**
- * Second derivative of PV in integrating loops. A valve that jumps makes PV a triangle: its second derivative is noise
- * about zero, one hump. A sine stays a sine: its histogram has two humps, at the turning points.
+ * Second derivative of PV in integrating loops. A valve that jumps makes PV a triangle: its second derivative
+ * is noise about zero, one hump. A sine stays a sine: its histogram has two humps, at the turning points.
  */
 import { savitzkyGolay } from '../signal/filter';
 import { noiseLevel, quantile, standardDeviation } from '../signal/statistics';
+import { threeDigits } from '../signal/three-digits';
 import { firstReason, needsIntegrating, needsPvCycle, needsShape } from './applies';
-import { figure, type Indicator, sayBetween } from './indicator';
+import { type Indicator, sayBetween } from './indicator';
 
 const bins = 41;
-/** The sine in the two-hump curve is this many times the noise in it, or more: below, its two humps merge into one. */
+/**
+ * The sine in the two-hump curve is this many times the noise in it, or more: below, its two humps merge into
+ * one.
+ */
 const leastSine = 1.7;
 
 export interface HumpFit {
@@ -75,14 +79,14 @@ export const derivativeHistogram: Indicator = {
     const noise = noiseLevel(pv) * Math.sqrt(gain);
     const sine = pvCycle.amplitude! * ((2 * Math.PI) / period) ** 2;
     if (noise > sine / leastSine) {
-      return `The noise of PV hides its curvature: ${figure(noise / sine)} of that of a sine of its size.`;
+      return `The noise of PV hides its curvature: ${threeDigits(noise / sine)} of that of a sine of its size.`;
     }
     const { one, two } = fitHumps(second);
     const value = two / (one + two);
     return {
       value,
       says: sayBetween(value, 0.4, 0.6),
-      why: `The second derivative of PV is fitted ${value >= 0.5 ? 'better' : 'worse'} by one hump than by two: two humps leave ${figure(value)} of the misfit of both.`,
+      why: `The second derivative of PV is fitted ${value >= 0.5 ? 'better' : 'worse'} by one hump than by two: two humps leave ${threeDigits(value)} of the misfit of both.`,
     };
   },
 };

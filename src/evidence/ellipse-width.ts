@@ -1,16 +1,17 @@
 /**
- * Width of the PV-OP plot: an ellipse is fitted to the filtered plot, and its widest chord along OP is read as apparent
- * stiction. It is a size, not a verdict: any cycle whose PV lags OP has some width.
+ * Width of the PV-OP plot: an ellipse is fitted to the filtered plot, and its widest chord along OP is read
+ * as apparent stiction. It is a size, not a verdict: any cycle whose PV lags OP has some width.
  */
 import { determinant, EigenvalueDecomposition, inverse, Matrix } from 'ml-matrix';
 import { bandPass } from '../signal/filter';
+import { threeDigits } from '../signal/three-digits';
 import { firstReason, needsBothCycles, needsShape } from './applies';
-import { figure, type Indicator } from './indicator';
+import type { Indicator } from './indicator';
 
 /**
- * Longest chord along `x` of the ellipse fitted to the points, in the unit of `x`. The fit minimises the algebraic
- * distance among ellipses only (Fitzgibbon, Pilu, Fisher 1999, IEEE Trans. Pattern Anal. 21:476-480, in the stable form of
- * Halir and Flusser 1998).
+ * Longest chord along `x` of the ellipse fitted to the points, in the unit of `x`. The fit minimises the
+ * algebraic distance among ellipses only (Fitzgibbon, Pilu, Fisher 1999, IEEE Trans. Pattern Anal.
+ * 21:476-480, in the stable form of Halir and Flusser 1998).
  *
  * @returns null when the points do not spread over an ellipse
  */
@@ -64,7 +65,7 @@ export const ellipseWidth: Indicator = {
     return {
       value,
       says: 'undecided',
-      why: `The ellipse fitted to PV against OP is ${figure(value)} % of OP span wide; that is a size and tells no cause.`,
+      why: `The ellipse fitted to PV against OP is ${threeDigits(value)} % of OP span wide; that is a size and tells no cause.`,
     };
   },
 };

@@ -11,15 +11,27 @@ export interface HalfCycle {
   readonly sign: 1 | -1;
 }
 
-/** The signal must go this share of its standard deviation beyond zero for a crossing to count (own choice). */
+/**
+ * The signal must go this share of its standard deviation beyond zero for a crossing to count (own choice).
+ */
 const beyond = 0.3;
 /** Half cycles shorter or longer than these shares of half a period are left out (own choice). */
 const shortest = 0.4;
 const longest = 2.5;
 
+/** Fewer half cycles are no basis for a mean (own choice). */
+const fewest = 6;
+
+/** The reason why these half cycles are too few for an indicator, or null. */
+export function tooFewHalves(halves: readonly HalfCycle[]): string | null {
+  return halves.length >= fewest
+    ? null
+    : `There are ${halves.length} clear half cycles; at least ${fewest} are needed.`;
+}
+
 /**
- * Half cycles between neighbouring zero crossings. The signal is averaged over a twelfth of the period first, and
- * a crossing counts only when the signal then goes well beyond zero, so that noise makes none.
+ * Half cycles between neighbouring zero crossings. The signal is averaged over a twelfth of the period first,
+ * and a crossing counts only when the signal then goes well beyond zero, so that noise makes none.
  *
  * @param values samples, slow trend removed
  * @param period samples

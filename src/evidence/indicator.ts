@@ -2,7 +2,7 @@
 import type { Evidence } from './evidence';
 import type { LoopFacts } from './loop-facts';
 
-/** What an indicator found; undefined in its rule is said as `undecided`. */
+/** What an indicator found; `undecided` where its value lies between its limits. */
 export interface Reading {
   readonly value: number;
   readonly says: 'stiction' | 'not' | 'undecided';
@@ -30,14 +30,11 @@ export function rowOf(indicator: Indicator, facts: LoopFacts | null): Evidence {
     : { indicator: name, value: reading.value, threshold, says: reading.says, why: reading.why, source };
 }
 
-/** A verdict by two limits: from `stiction` on it is, up to `not` it is not (either may be the larger one). */
+/**
+ * A verdict by two limits: from `stiction` on it is, up to `not` it is not (either may be the larger one).
+ */
 export function sayBetween(value: number, not: number, stiction: number): Reading['says'] {
   const sign = Math.sign(stiction - not);
   if (sign * (value - stiction) >= 0) return 'stiction';
   return sign * (value - not) <= 0 ? 'not' : 'undecided';
-}
-
-/** Three significant digits for a sentence. */
-export function figure(value: number): string {
-  return String(Number(value.toPrecision(3)));
 }

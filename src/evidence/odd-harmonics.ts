@@ -1,8 +1,12 @@
-/** Odd harmonics: the corners that a jumping valve puts into PV and OP; a linear loop's cycle has next to none. */
+/**
+ * Odd harmonics: the corners that a jumping valve puts into PV and OP; a linear loop's cycle has next to
+ * none.
+ */
 import type { Cycle } from '../oscillation/cycle';
 import { noiseLevel } from '../signal/statistics';
+import { threeDigits } from '../signal/three-digits';
 import { firstReason, needsShape } from './applies';
-import { figure, type Indicator, sayBetween } from './indicator';
+import { type Indicator, sayBetween } from './indicator';
 import type { LoopFacts } from './loop-facts';
 
 /** Half of a triangle's share (1/81 + 1/625 + 1/2401 against 1), and a seventh of it (own choice). */
@@ -36,11 +40,11 @@ export const oddHarmonics: Indicator = {
     ),
   evaluate(facts) {
     const most = sharesOf(facts).reduce((a, b) => (b.share > a.share ? b : a));
-    if (most.noise > much / 2) return `Noise alone can make a share of ${figure(most.noise)}.`;
+    if (most.noise > much / 2) return `Noise alone can make a share of ${threeDigits(most.noise)}.`;
     return {
       value: most.share,
       says: sayBetween(most.share, little, much),
-      why: `Harmonics 3, 5 and 7 hold ${figure(100 * most.share)} % of the power of ${most.name}'s cycle. A square disturbance from outside would show the same.`,
+      why: `Harmonics 3, 5 and 7 hold ${threeDigits(100 * most.share)} % of the power of ${most.name}'s cycle. A square disturbance from outside would show the same.`,
     };
   },
 };

@@ -1,10 +1,12 @@
-/** Which fits PV's half cycles best: a sine, or the answer of a process to a relay (or a triangle, for integrators). */
+/**
+ * Which fits PV's half cycles best: a sine, or the answer of a process to a relay (or a triangle, for
+ * integrators).
+ */
+import { threeDigits } from '../signal/three-digits';
 import { firstReason, needsPvCycle, needsShape } from './applies';
-import { halfCycles } from './half-cycles';
-import { figure, type Indicator, sayBetween } from './indicator';
+import { halfCycles, tooFewHalves } from './half-cycles';
+import { type Indicator, sayBetween } from './indicator';
 import { sumOfFits } from './shape-fits';
-
-const fewestHalves = 6;
 
 export const relayFit: Indicator = {
   name: 'relay, triangle, sine',
@@ -13,9 +15,8 @@ export const relayFit: Indicator = {
   skips: (facts) => firstReason(needsPvCycle(facts), needsShape(facts)),
   evaluate({ error, pvCycle, record }) {
     const halves = halfCycles(error, pvCycle.period! / record.samplePeriod);
-    if (halves.length < fewestHalves) {
-      return `There are ${halves.length} clear half cycles; at least ${fewestHalves} are needed.`;
-    }
+    const tooFew = tooFewHalves(halves);
+    if (tooFew !== null) return tooFew;
     const { sine, triangle, relay } = sumOfFits(error, halves);
     const other = Math.min(triangle, relay);
     if (sine + other === 0) return 'All shapes fit equally well.';
@@ -23,7 +24,7 @@ export const relayFit: Indicator = {
     return {
       value,
       says: sayBetween(value, -0.21, 0.21),
-      why: `Over ${halves.length} half cycles of PV the ${relay <= triangle ? 'relay' : 'triangle'} fits ${value >= 0 ? 'better' : 'worse'} than the sine: ${figure(value)} on a scale from -1 to 1.`,
+      why: `Over ${halves.length} half cycles of PV the ${relay <= triangle ? 'relay' : 'triangle'} fits ${value >= 0 ? 'better' : 'worse'} than the sine: ${threeDigits(value)} on a scale from -1 to 1.`,
     };
   },
 };

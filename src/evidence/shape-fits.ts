@@ -1,4 +1,7 @@
-/** Least-squares fits of one half cycle by a sine, a triangle, and the answer of a first-order process to a relay. */
+/**
+ * Least-squares fits of one half cycle by a sine, a triangle, and the answer of a first-order process to a
+ * relay.
+ */
 import type { HalfCycle } from './half-cycles';
 
 /** Sum of squared residuals of a half cycle after each fit, and its number of samples. */
@@ -21,8 +24,8 @@ const triangle =
     x < tip ? x / tip : (1 - x) / (1 - tip);
 
 /**
- * Between its zero crossings, the answer to a relay rises as 1 - exp(-x / lag) until the relay's switch gets through
- * (dead time) and then falls along -1 + (1 + peak) exp(-(x - switch) / lag), to zero at x = 1.
+ * Between its zero crossings, the answer to a relay rises as 1 - exp(-x / lag) until the relay's switch gets
+ * through (dead time) and then falls along -1 + (1 + peak) exp(-(x - switch) / lag), to zero at x = 1.
  */
 function relay(lag: number): (x: number) => number {
   const fall = lag * Math.log(2 - Math.exp(-switchOf(lag) / lag));

@@ -1,16 +1,20 @@
 /**
- * Pairs of what OP and PV do at a time: rising, falling or steady. In a fast loop with a sticking valve, PV stands still
- * while OP rises or falls, and then follows it.
+ * Pairs of what OP and PV do at a time: rising, falling or steady. In a fast loop with a sticking valve, PV
+ * stands still while OP rises or falls, and then follows it.
  */
 import { standardDeviation } from '../signal/statistics';
+import { threeDigits } from '../signal/three-digits';
 import { slowTrend } from '../signal/trend';
 import { firstReason, needsBothCycles, needsShape } from './applies';
-import { figure, type Indicator } from './indicator';
+import type { Indicator } from './indicator';
 
 /** A step below this share of the steps' standard deviation counts as steady (own choice). */
 const steadyShare = 0.5;
 
-/** Per step: 1 rising, -1 falling, 0 steady. Steps are a twelfth of the period, as noise allows no single samples. */
+/**
+ * Per step: 1 rising, -1 falling, 0 steady. Steps are a twelfth of the period, as noise allows no single
+ * samples.
+ */
 export function movements(values: Float64Array, period: number): Int8Array {
   const stride = Math.max(1, Math.floor(period / 12));
   const smooth = slowTrend(values, stride);
@@ -22,8 +26,9 @@ export function movements(values: Float64Array, period: number): Int8Array {
 }
 
 /**
- * Share of the time, without that in which both are steady, that PV stands still while OP moves, counting only stretches
- * after which PV goes the way of OP (or OP and PV go on as they were at the end of the record).
+ * Share of the time, without that in which both are steady, that PV stands still while OP moves, counting
+ * only stretches after which PV goes the way of OP (or OP and PV go on as they were at the end of the
+ * record).
  */
 export function stuckShare(op: Int8Array, pv: Int8Array): number | null {
   let moving = 0;
@@ -59,7 +64,7 @@ export const shapePairs: Indicator = {
     return {
       value,
       says: value > 0.25 ? 'stiction' : 'not',
-      why: `PV stands still while OP moves, and then follows it, in ${figure(100 * value)} % of the time in which anything moves.`,
+      why: `PV stands still while OP moves, and then follows it, in ${threeDigits(100 * value)} % of the time in which anything moves.`,
     };
   },
 };

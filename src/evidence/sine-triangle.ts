@@ -1,13 +1,12 @@
 /**
- * Sine against triangle: after an integrator, the jumps of a sticking valve show as a triangle, in OP where the
- * controller is the first integrator (self-regulating process), in PV where the process is.
+ * Sine against triangle: after an integrator, the jumps of a sticking valve show as a triangle, in OP where
+ * the controller is the first integrator (self-regulating process), in PV where the process is.
  */
+import { threeDigits } from '../signal/three-digits';
 import { firstReason, needsKnownResponse, needsOpCycle, needsPvCycle, needsShape } from './applies';
-import { halfCycles } from './half-cycles';
-import { figure, type Indicator, sayBetween } from './indicator';
+import { halfCycles, tooFewHalves } from './half-cycles';
+import { type Indicator, sayBetween } from './indicator';
 import { sumOfFits } from './shape-fits';
-
-const fewestHalves = 6;
 
 export const sineTriangle: Indicator = {
   name: 'sine against triangle',
@@ -23,16 +22,15 @@ export const sineTriangle: Indicator = {
     const inPv = record.response === 'integrating';
     const signal = inPv ? pv : op;
     const halves = halfCycles(signal, period);
-    if (halves.length < fewestHalves) {
-      return `There are ${halves.length} clear half cycles; at least ${fewestHalves} are needed.`;
-    }
+    const tooFew = tooFewHalves(halves);
+    if (tooFew !== null) return tooFew;
     const { sine, triangle } = sumOfFits(signal, halves);
     if (sine + triangle === 0) return 'Sine and triangle fit equally well.';
     const value = sine / (sine + triangle);
     return {
       value,
       says: sayBetween(value, 0.4, 0.6),
-      why: `Over ${halves.length} half cycles of ${inPv ? 'PV' : 'OP'} the sine leaves ${figure(value)} of the misfit of sine and triangle together.`,
+      why: `Over ${halves.length} half cycles of ${inPv ? 'PV' : 'OP'} the sine leaves ${threeDigits(value)} of the misfit of sine and triangle together.`,
     };
   },
 };

@@ -1,14 +1,15 @@
 /**
- * Surrogate test: a nonlinear cycle foretells itself better than signals with the same spectrum and random phases do.
- * In a plant-wide oscillation it is strongest near the source.
+ * Surrogate test: a nonlinear cycle foretells itself better than signals with the same spectrum and random
+ * phases do. In a plant-wide oscillation it is strongest near the source.
  */
 import type { SingleCycle } from '../oscillation/cycle';
 import { seededRandom } from '../signal/random';
 import { mean, standardDeviation } from '../signal/statistics';
 import { randomPhases, selfPredictionError, surrogate } from '../signal/surrogate';
+import { threeDigits } from '../signal/three-digits';
 import { slowTrend } from '../signal/trend';
 import { firstReason, needsPvCycle, needsShape } from './applies';
-import { figure, type Indicator } from './indicator';
+import type { Indicator } from './indicator';
 
 /** Twelve cycles at least, and 7 to 25 samples in each (Thornhill 2005, value from memory). */
 const fewestCycles = 12;
@@ -19,13 +20,13 @@ const surrogates = 30;
 const neighbours = 8;
 
 /**
- * (mean over the surrogates - signal) / (3 standard deviations over the surrogates) of the errors with which each foretells
- * itself; null when all surrogates do so equally well.
+ * (mean over the surrogates - signal) / (3 standard deviations over the surrogates) of the errors with which
+ * each foretells itself; null when all surrogates do so equally well.
  *
- * @param values samples of whole cycles, `cycle` samples in each on average: where the ends do not meet, surrogates of a plain
- *   sine come out less regular than the sine
+ * @param values samples of whole cycles, `cycle` samples in each on average: where the ends do not meet,
+ *   surrogates of a plain sine come out less regular than the sine
  */
-export function surrogateIndex(values: Float64Array, cycle: number, seed: number): number | null {
+function surrogateIndex(values: Float64Array, cycle: number, seed: number): number | null {
   const random = seededRandom(seed);
   const errors = new Float64Array(surrogates).map(() =>
     selfPredictionError(surrogate(values, randomPhases(values.length, random)), cycle, neighbours),
@@ -35,10 +36,11 @@ export function surrogateIndex(values: Float64Array, cycle: number, seed: number
 }
 
 /**
- * The cycles in `single` as one stretch of `samplesACycle` samples a cycle, by straight lines between local means. Its end is
- * moved by up to a quarter of a cycle to where the stretch holds just that many turns of its fundamental.
+ * The cycles in `single` as one stretch of `samplesACycle` samples a cycle, by straight lines between local
+ * means. Its end is moved by up to a quarter of a cycle to where the stretch holds just that many turns of
+ * its fundamental.
  */
-export function wholeCycles(
+function wholeCycles(
   values: Float64Array,
   samplePeriod: number,
   single: readonly SingleCycle[],
@@ -90,7 +92,7 @@ export const surrogateIndicator: Indicator = {
     return {
       value,
       says: value > 1 ? 'stiction' : 'not',
-      why: `Over ${single.length} cycles the error foretells itself ${value >= 0 ? 'better' : 'worse'} than ${surrogates} linear surrogates do, by ${figure(Math.abs(value))} times three standard deviations.`,
+      why: `Over ${single.length} cycles the error foretells itself ${value >= 0 ? 'better' : 'worse'} than ${surrogates} linear surrogates do, by ${threeDigits(Math.abs(value))} times three standard deviations.`,
     };
   },
 };

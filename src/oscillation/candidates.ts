@@ -14,15 +14,20 @@ export interface Candidate {
 
 /** A known cycle's power is taken to lie within this factor of its frequency. */
 const knownFactor = 1.4;
-/** Bands reach from frequency / 1.2 to frequency x 1.2, so that a cycle whose period wanders stays one band. */
+/**
+ * Bands reach from frequency / 1.2 to frequency x 1.2, so that a cycle whose period wanders stays one band.
+ */
 const bandFactor = 1.2;
-/** The neighbours lie this factor below and above: clear of the band itself, and short of a third harmonic. */
+/**
+ * The neighbours lie this factor below and above: clear of the band itself, and short of a third harmonic.
+ */
 const neighbourFactor = 2.2;
 const bandsPerOctave = 24;
 
 /**
- * Candidates from `slowest` to `fastest` (cycles a sample), strongest band first. The power is summed in bands of equal
- * *relative* width: in these, white noise rises, a random walk falls, and only a real peak stands out on both sides.
+ * Candidates from `slowest` to `fastest` (cycles a sample), strongest band first. The power is summed in
+ * bands of equal *relative* width: in these, white noise rises, a random walk falls, and only a real peak
+ * stands out on both sides.
  *
  * @param values samples, not all equal
  * @param known frequency of a cycle already found, cycles a sample: as a neighbour it hides no other

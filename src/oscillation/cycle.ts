@@ -14,7 +14,10 @@ export interface Cycle {
   readonly why: string;
   /** s; null when not present. */
   readonly period: number | null;
-  /** Regularity r of Thornhill, Huang, Zhang 2003 (r > 1 is regular); null when it cannot be had. */
+  /**
+   * Regularity r of Thornhill, Huang, Zhang 2003 (r > 1 is regular); null when it cannot be had. A cycle that is
+   * present with less has a steady swing and an uneven period.
+   */
   readonly regularity: number | null;
   /** Number of whole cycles in the record. */
   readonly cycles: number;

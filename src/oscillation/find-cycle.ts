@@ -2,20 +2,22 @@
 import { WrongUse } from '../errors';
 import { autocorrelation } from '../signal/autocorrelation';
 import { powerSpectrum } from '../signal/fourier';
+import { checkSamplePeriod } from '../signal/sample-period';
 import { median, quantile } from '../signal/statistics';
+import { threeDigits } from '../signal/three-digits';
 import { removeLine, removeSlowTrend } from '../signal/trend';
 import { type Candidate, cycleCandidates } from './candidates';
 import type { Cycle, SingleCycle } from './cycle';
 import { oddHarmonicShare } from './odd-harmonics';
-import { type Regularity, regularityAt } from './regularity';
+import { largestRegularity, type Regularity, regularityAt } from './regularity';
 import { cycleStarts, singleCycles } from './single-cycles';
 import { type SteadySwing, steadySwing } from './steady-swing';
 
 /**
  * What a cycle must have. r > 1 is the paper's rule (see regularity.ts); filtered noise and drifting records
- * pass it so often that more is asked for. The rest are own choices, set so that white and coloured noise, random
- * walks and well-damped loops (damping 0.4 and more) rarely pass while a stick-slip cycle whose period wanders by a
- * fifth, a sine in noise of its own size and a cycle on a strong drift do.
+ * pass it so often that more is asked for. The rest are own choices, set so that white and coloured noise,
+ * random walks and well-damped loops (damping 0.4 and more) rarely pass while a stick-slip cycle whose period
+ * wanders by a fifth, a sine in noise of its own size and a cycle on a strong drift do.
  */
 const rule = {
   regularity: 1,
@@ -29,16 +31,20 @@ const rule = {
 };
 
 /**
- * How far a peak must stand above its neighbours: 9 times when 0.4 of a cycle comes back in the next, 1.5 times
- * when all of it does. Noise can do the one or the other by chance, but hardly both.
+ * How far a peak must stand above its neighbours: 9 times when 0.4 of a cycle comes back in the next, 1.5
+ * times when all of it does. Noise can do the one or the other by chance, but hardly both.
  */
 function neededContrast(persistence: number): number {
   return 30 * Math.exp(-3 * Math.max(0, persistence));
 }
 
-/** A further period has at least this share of the main one's power: a fifth of its amplitude (own choice). */
+/**
+ * A further period has at least this share of the main one's power: a fifth of its amplitude (own choice).
+ */
 const furtherPower = 0.04;
-/** Fewest samples: five cycles of seven (Thornhill 2005, value from memory: below seven the shape is lost). */
+/**
+ * Fewest samples: five cycles of seven (Thornhill 2005, value from memory: below seven the shape is lost).
+ */
 const fewestSamples = 35;
 /** A cycle of fewer samples than this is not told from alternating noise (own choice). */
 const shortestPeriod = 4;
@@ -46,7 +52,9 @@ const shortestPeriod = 4;
 const mostCandidates = 6;
 /** The power within this factor of the frequency belongs to the peak. */
 const peakFactor = 1.3;
-/** A period this close to an integer fraction of the main one, relatively, can be its harmonic (own choice). */
+/**
+ * A period this close to an integer fraction of the main one, relatively, can be its harmonic (own choice).
+ */
 const harmonicTolerance = 0.06;
 /** Two periods closer than this factor are not told apart: their bands overlap. */
 const skirtFactor = 1.6;
@@ -63,22 +71,21 @@ interface Found {
 }
 
 /**
- * Finds the cycle of an evenly sampled signal. Candidates are the peaks of the spectrum; each is judged by the
- * regularity of Thornhill, Huang and Zhang (2003) and further conditions (stated in `why` when they fail). The
- * strongest that passes is the cycle, weaker ones are `others`. Where none passes, a cycle of steady swing and uneven
- * period is looked for (steady-swing.ts); its `period` is the median length of its cycles.
+ * Finds the cycle of an evenly sampled signal. Candidates are the peaks of the spectrum; each is judged by
+ * the regularity of Thornhill, Huang and Zhang (2003) and further conditions (stated in `why` when they
+ * fail). The strongest that passes is the cycle, weaker ones are `others`. Where none passes, a cycle of
+ * steady swing and uneven period is looked for (steady-swing.ts); its `period` is the median length of its
+ * cycles.
  *
- * Limits: a cycle of less than four samples, or with fewer than five repeats in the record, is not found. Two cycles
- * whose periods differ by less than a factor of 1.6 count as one.
+ * Limits: a cycle of less than four samples, or with fewer than five repeats in the record, is not found. Two
+ * cycles whose periods differ by less than a factor of 1.6 count as one.
  *
  * @param values samples, all finite, any unit
  * @param samplePeriod s
  * @throws WrongUse when a value is not finite or the sample period is not above 0
  */
 export function findCycle(values: Float64Array, samplePeriod: number): Cycle {
-  if (!(samplePeriod > 0 && Number.isFinite(samplePeriod))) {
-    throw new WrongUse(`A sample period is a number of seconds above 0. Received ${samplePeriod}.`);
-  }
+  checkSamplePeriod(samplePeriod);
   const bad = values.findIndex((value) => !Number.isFinite(value));
   if (bad >= 0) {
     throw new WrongUse(
@@ -148,19 +155,19 @@ function judge(values: Float64Array, samplePeriod: number, candidate: Candidate)
   } else {
     const needed = neededContrast(regularity.persistence);
     if (regularity.value <= rule.regularity) {
-      lacks.push(`its regularity is ${figure(regularity.value)} (above ${rule.regularity} wanted)`);
+      lacks.push(`its regularity is ${threeDigits(regularity.value)} (above ${rule.regularity} wanted)`);
     }
     if (candidate.contrast < needed) {
       const back = Math.round(100 * Math.max(0, regularity.persistence));
       lacks.push(
-        `its power is ${figure(candidate.contrast)} times that of its neighbours (at least ${figure(needed)} wanted where ${back} % of a cycle comes back in the next)`,
+        `its power is ${threeDigits(candidate.contrast)} times that of its neighbours (at least ${threeDigits(needed)} wanted where ${back} % of a cycle comes back in the next)`,
       );
     }
   }
   const count = values.length / period;
   const weighty = count * evenness(single);
   if (count < rule.cycles) {
-    lacks.push(`the record holds ${figure(count)} such cycles (at least ${rule.cycles} wanted)`);
+    lacks.push(`the record holds ${threeDigits(count)} such cycles (at least ${rule.cycles} wanted)`);
   } else if (weighty < Math.max(rule.weightyCycles, rule.weightyShare * count)) {
     lacks.push(
       `only about ${Math.round(weighty)} of ${Math.floor(count)} cycles carry its power: it dies out or comes in bursts`,
@@ -169,7 +176,10 @@ function judge(values: Float64Array, samplePeriod: number, candidate: Candidate)
   return { candidate, detrended, regularity, powerShare: share, single, lacks };
 }
 
-/** (sum of squares)^2 over n times the sum of fourth powers: 1 when all cycles are equally large, small when few are. */
+/**
+ * (sum of squares)^2 over n times the sum of fourth powers: 1 when all cycles are equally large, small when
+ * few are.
+ */
 function evenness(single: readonly SingleCycle[]): number {
   let squares = 0;
   let fourth = 0;
@@ -193,8 +203,8 @@ function powerShareAt(detrended: Float64Array, frequency: number): number {
 }
 
 /**
- * Whether a further peak is a known cycle's own: its skirt (too close to be told apart) or a harmonic, which has at
- * most 1 / order^2 of its power (square waves and sawteeth have that much; some room for noise).
+ * Whether a further peak is a known cycle's own: its skirt (too close to be told apart) or a harmonic, which
+ * has at most 1 / order^2 of its power (square waves and sawteeth have that much; some room for noise).
  */
 function belongsTo(known: Found, other: Candidate): boolean {
   const order = known.regularity!.period * other.frequency;
@@ -213,7 +223,7 @@ function regularCycle(main: Found, others: readonly number[], samplePeriod: numb
   const count = Math.floor(main.detrended.length / regularity.period);
   return {
     present: true,
-    why: `It cycles every ${figure(period)} s: ${count} cycles with regularity ${figure(regularity.value)}${regularity.value >= 1000 ? ' or more' : ''} (above 1 is regular) and ${Math.round(100 * main.powerShare)} % of the power.`,
+    why: `It cycles every ${threeDigits(period)} s: ${count} cycles with regularity ${threeDigits(regularity.value)}${regularity.value >= largestRegularity ? ' or more' : ''} (above 1 is regular) and ${Math.round(100 * main.powerShare)} % of the power.`,
     period,
     regularity: regularity.value,
     cycles: count,
@@ -238,10 +248,10 @@ function unevenCycle(
   const starts = turns.filter((_, i) => i % 2 === 0);
   const single = singleCycles(values, samplePeriod, period, starts);
   const lengths = Float64Array.from(single, ({ from, to }) => to - from);
-  const quarter = (share: number): string => figure(quantile(lengths, share));
+  const quarter = (share: number): string => threeDigits(quantile(lengths, share));
   return {
     present: true,
-    why: `It cycles at uneven intervals, about every ${figure(period * samplePeriod)} s (half of the cycles last ${quarter(0.25)} to ${quarter(0.75)} s): ${single.length} cycles that turn round at steady levels, ${figure(swing)} apart.`,
+    why: `It cycles at uneven intervals, about every ${threeDigits(period * samplePeriod)} s (half of the cycles last ${quarter(0.25)} to ${quarter(0.75)} s): ${single.length} cycles that turn round at steady levels, ${threeDigits(swing)} apart.`,
     period: period * samplePeriod,
     regularity,
     cycles: single.length,
@@ -284,16 +294,11 @@ function whyNot(best: Found, samplePeriod: number): string {
     best.lacks.length > 0
       ? best.lacks
       : [
-          `it holds ${figure(100 * best.powerShare)} % of the power (at least ${100 * rule.powerShare} % wanted)`,
+          `it holds ${threeDigits(100 * best.powerShare)} % of the power (at least ${100 * rule.powerShare} % wanted)`,
         ];
-  return `No regular cycle. The strongest candidate has a period of ${figure(period)} s, but ${lacks.join('; ')}.`;
+  return `No regular cycle. The strongest candidate has a period of ${threeDigits(period)} s, but ${lacks.join('; ')}.`;
 }
 
 function lagged(value: Float64Array, samplePeriod: number): { lag: Float64Array; value: Float64Array } {
   return { lag: value.map((_, i) => i * samplePeriod), value };
-}
-
-/** Three significant digits for a sentence. */
-function figure(value: number): string {
-  return String(Number(value.toPrecision(3)));
 }

@@ -1,4 +1,7 @@
-/** How much of a cycle's shape lies in its odd harmonics: 0 for a sine, 0.014 for a triangle, 0.146 for a square. */
+/**
+ * How much of a cycle's shape lies in its odd harmonics: 0 for a sine, 0.014 for a triangle, 0.146 for a
+ * square.
+ */
 import type { SingleCycle } from './cycle';
 
 /**

@@ -1,8 +1,8 @@
 /**
- * Regularity of a cycle from the zero crossings of its autocorrelation (Thornhill, Huang, Zhang 2003, J. Process
- * Control 13:91-100; details from memory): the signal is band-filtered around one spectral peak, the lags of up to
- * eleven zero crossings of its autocorrelation are taken, and r = mean(Tp) / (3 std(Tp)) over the periods Tp
- * (twice the distance of neighbouring crossings). r > 1 is regular.
+ * Regularity of a cycle from the zero crossings of its autocorrelation (Thornhill, Huang, Zhang 2003, J.
+ * Process Control 13:91-100; details from memory): the signal is band-filtered around one spectral peak, the
+ * lags of up to eleven zero crossings of its autocorrelation are taken, and r = mean(Tp) / (3 std(Tp)) over
+ * the periods Tp (twice the distance of neighbouring crossings). r > 1 is regular.
  */
 import { forwardTransform, inverseTransform, nextPowerOfTwo } from '../signal/fourier';
 
@@ -21,9 +21,14 @@ export interface Regularity {
 export const largestRegularity = 1000;
 
 const mostCrossings = 11;
-/** Four intervals between crossings are the fewest of which a standard deviation is worth anything (own choice). */
+/**
+ * Four intervals between crossings are the fewest of which a standard deviation is worth anything (own
+ * choice).
+ */
 const fewestCrossings = 5;
-/** Full weight within this factor of the peak, none beyond its square. Narrow filters make noise look regular. */
+/**
+ * Full weight within this factor of the peak, none beyond its square. Narrow filters make noise look regular.
+ */
 const passFactor = 1.35;
 
 /**

@@ -8,8 +8,8 @@ export interface Reversals {
 }
 
 /**
- * Changes of direction larger than `tolerance`: a turn counts once the signal has come back from its last extreme by
- * more than that. Smaller wiggles (noise, quantisation) do not count.
+ * Changes of direction larger than `tolerance`: a turn counts once the signal has come back from its last
+ * extreme by more than that. Smaller wiggles (noise, quantisation) do not count.
  *
  * @param values samples
  * @param tolerance unit of the signal, at least 0

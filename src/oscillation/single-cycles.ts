@@ -5,13 +5,16 @@ import type { SingleCycle } from './cycle';
 
 /** A new cycle starts no sooner than this share of the period after the last (own choice). */
 const shortestCycle = 0.4;
-/** Below this share of the amplitude noise is left alone: smoothing would cut sharp turns by more (own choice). */
+/**
+ * Below this share of the amplitude noise is left alone: smoothing would cut sharp turns by more (own
+ * choice).
+ */
 const noticeableNoise = 0.03;
 
 /**
- * Where cycles start, in fractional samples: the upward zero crossings of the signal averaged twice over half a
- * period. That leaves the fundamental, no second harmonic and little of the others, so that noise makes no cycles
- * and a wandering period is followed.
+ * Where cycles start, in fractional samples: the upward zero crossings of the signal averaged twice over half
+ * a period. That leaves the fundamental, no second harmonic and little of the others, so that noise makes no
+ * cycles and a wandering period is followed.
  *
  * @param values samples, slow trend removed
  * @param period of the cycle, samples
@@ -29,9 +32,9 @@ export function cycleStarts(values: Float64Array, period: number): number[] {
 }
 
 /**
- * The cycles between neighbouring starts. The amplitude is taken from the signal itself; where its noise is above 3 % of the
- * amplitude, it is first smoothed by the average over a twentieth of the period. What noise is left makes the
- * amplitude read high.
+ * The cycles between neighbouring starts. The amplitude is taken from the signal itself; where its noise is
+ * above 3 % of the amplitude, it is first smoothed by the average over a twentieth of the period. What noise
+ * is left makes the amplitude read high.
  *
  * @param values samples, slow trend removed
  * @param samplePeriod s

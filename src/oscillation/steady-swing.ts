@@ -1,9 +1,9 @@
 /**
- * Cycles that keep their size but not their period. A valve that sticks where PV almost meets SP can wait there for
- * any time: OP and PV then turn round at the same levels at uneven intervals, which spectrum and autocorrelation miss.
- * Such cycles show in the number of reversals: it is the same for any tolerance between noise and swing, while that of
- * noise and random walks falls steeply. The method and its limits are own choices, set so that white, coloured and smooth
- * noise and random walks pass at most one time in fifty.
+ * Cycles that keep their size but not their period. A valve that sticks where PV almost meets SP can wait
+ * there for any time: OP and PV then turn round at the same levels at uneven intervals, which spectrum and
+ * autocorrelation miss. Such cycles show in the number of reversals: it is the same for any tolerance between
+ * noise and swing, while that of noise and random walks falls steeply. The method and its limits are own
+ * choices, set so that white, coloured and smooth noise and random walks pass at most one time in fifty.
  */
 import { blockMeans } from '../signal/block-means';
 import { resolution } from '../signal/resolution';
@@ -62,7 +62,10 @@ function inAverages(values: Float64Array): SteadySwing | null {
   return { turns, swing, period: median(periods) };
 }
 
-/** A tolerance in the middle of the range over which the number of reversals does not change; null without one. */
+/**
+ * A tolerance in the middle of the range over which the number of reversals does not change; null without
+ * one.
+ */
 function steadyTolerance(values: Float64Array): number | null {
   const range = quantile(values, 1) - quantile(values, 0);
   if (!(range > 0)) return null;

@@ -4,9 +4,9 @@ import { forwardTransform, inverseTransform, nextPowerOfTwo } from './fourier';
 import { removeMean } from './trend';
 
 /**
- * Autocorrelation coefficients for the lags 0 to `maxLag`: r(k) = sum x(i) x(i + k) / sum x(i)^2 with the mean
- * taken off (the biased form, which fades towards long lags). Length `maxLag` + 1, 1 at lag 0; all zero for a
- * constant signal.
+ * Autocorrelation coefficients for the lags 0 to `maxLag`: r(k) = sum x(i) x(i + k) / sum x(i)^2 with the
+ * mean taken off (the biased form, which fades towards long lags). Length `maxLag` + 1, 1 at lag 0; all zero
+ * for a constant signal.
  *
  * @param maxLag samples, less than the length
  * @throws WrongUse when the lag does not fit the length
@@ -16,9 +16,9 @@ export function autocorrelation(values: Float64Array, maxLag: number): Float64Ar
 }
 
 /**
- * Cross-correlation coefficients r(k) = sum a(i) b(i + k) / sqrt(sum a^2 sum b^2), means taken off, for the lags
- * k = -`maxLag` to `maxLag`: the value at index `maxLag` is lag 0, and a peak at positive lags means that b
- * follows a. Length 2 `maxLag` + 1; all zero when either signal is constant.
+ * Cross-correlation coefficients r(k) = sum a(i) b(i + k) / sqrt(sum a^2 sum b^2), means taken off, for the
+ * lags k = -`maxLag` to `maxLag`: the value at index `maxLag` is lag 0, and a peak at positive lags means
+ * that b follows a. Length 2 `maxLag` + 1; all zero when either signal is constant.
  *
  * @param maxLag samples, less than the length
  * @throws WrongUse when lengths differ or the lag does not fit them

@@ -1,4 +1,7 @@
-/** Squared bicoherence: how strongly pairs of frequencies drive their sum, which linear systems with Gaussian input never do. */
+/**
+ * Squared bicoherence: how strongly pairs of frequencies drive their sum, which linear systems with Gaussian
+ * input never do.
+ */
 import { WrongUse } from '../errors';
 import { forwardTransform } from './fourier';
 import { removeMean } from './trend';
@@ -14,12 +17,12 @@ export interface Bicoherence {
 }
 
 /**
- * Squared bicoherence over segments of `segment` samples that overlap by one half, each with its mean taken off and a
- * Hann window: |E[X1 X2 X3*]|^2 / (E[|X1 X2|^2] E[|X3|^2]), X3 at the sum of the two frequencies (Kim and Powers 1979,
- * IEEE Trans. Plasma Sci. 7:120-131).
+ * Squared bicoherence over segments of `segment` samples that overlap by one half, each with its mean taken
+ * off and a Hann window: |E[X1 X2 X3*]|^2 / (E[|X1 X2|^2] E[|X3|^2]), X3 at the sum of the two frequencies
+ * (Kim and Powers 1979, IEEE Trans. Plasma Sci. 7:120-131).
  *
- * Limits: a strong sine leaks into neighbouring frequencies, and when its period divides half a segment it does so in step in
- * all segments, which reads as coupling. Needs some tens of segments.
+ * Limits: a strong sine leaks into neighbouring frequencies, and when its period divides half a segment it
+ * does so in step in all segments, which reads as coupling. Needs some tens of segments.
  *
  * @param segment samples, even, at least 8 and not longer than the signal
  * @throws WrongUse when the segment does not fit

@@ -1,12 +1,14 @@
 /// <reference path="./untyped-packages.d.ts" />
 /**
- * Quantiles and upper-tail probabilities of the usual distributions. A quantile takes the probability `p` below
- * it, between 0 and 1 (ends left out); a tail is the probability above `x`.
+ * Quantiles and upper-tail probabilities of the usual distributions. A quantile takes the probability `p`
+ * below it, between 0 and 1 (ends left out); a tail is the probability above `x`.
  */
 import jStat from 'jstat';
 import { WrongUse } from '../errors';
 
-/** Value that a standard normal variable stays below with probability `p`. @throws WrongUse for p outside 0..1 */
+/**
+ * Value that a standard normal variable stays below with probability `p`. @throws WrongUse for p outside 0..1
+ */
 export function normalQuantile(p: number): number {
   checkProbability(p);
   return jStat.normal.inv(p, 0, 1);

@@ -2,11 +2,12 @@
 import { Matrix, pseudoInverse } from 'ml-matrix';
 import { WrongUse } from '../errors';
 import { forwardTransform, inverseTransform } from './fourier';
+import { checkSamplePeriod } from './sample-period';
 
 /**
  * Zero-phase band-pass in the frequency domain: the signal is continued by its mirror image (so that its two
- * ends meet), transformed, and each frequency weighted by the square of a second-order Butterworth magnitude at
- * either edge, half power at the edges. It delays nothing; steps ring a little before and after.
+ * ends meet), transformed, and each frequency weighted by the square of a second-order Butterworth magnitude
+ * at either edge, half power at the edges. It delays nothing; steps ring a little before and after.
  *
  * @param samplePeriod s
  * @param low 1/s; 0 keeps the slow side and the mean
@@ -60,9 +61,9 @@ export function firstOrderLag(values: Float64Array, samplePeriod: number, tau: n
 }
 
 /**
- * Smoothing, or a smoothed derivative per sample, by a polynomial fitted to each window of samples and read in
- * its middle (Savitzky and Golay 1964, Analytical Chemistry 36:1627-1639). Within half a window of the ends the
- * polynomial of the first or last whole window is read.
+ * Smoothing, or a smoothed derivative per sample, by a polynomial fitted to each window of samples and read
+ * in its middle (Savitzky and Golay 1964, Analytical Chemistry 36:1627-1639). Within half a window of the
+ * ends the polynomial of the first or last whole window is read.
  *
  * @param window samples, odd, above the degree and not longer than the signal
  * @param degree of the polynomial
@@ -115,10 +116,4 @@ export function savitzkyGolay(
     for (let i = 0; i < window; i++) sum += weights[i]! * values[start + i]!;
     return sum;
   });
-}
-
-function checkSamplePeriod(samplePeriod: number): void {
-  if (!(samplePeriod > 0 && Number.isFinite(samplePeriod))) {
-    throw new WrongUse(`A sample period is a number of seconds above 0. Received ${samplePeriod}.`);
-  }
 }

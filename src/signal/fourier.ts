@@ -2,6 +2,7 @@
 /** Discrete Fourier transform of real signals of any length, and the power spectrum made from it. */
 import FFT from 'fft.js';
 import { WrongUse } from '../errors';
+import { checkSamplePeriod } from './sample-period';
 
 /** Complex values of the frequencies 0, 1, ... floor(n / 2) over n samples. */
 export interface HalfSpectrum {
@@ -26,7 +27,8 @@ export function nextPowerOfTwo(length: number): number {
 /**
  * Forward transform, X(k) = sum over i of x(i) exp(-2 pi j i k / n), for k = 0 to floor(n / 2). The length is
  * used exactly as it is: a record of whole cycles shows sharp lines. Powers of two go straight to the fast
- * transform, other lengths through that of a chirp (Bluestein 1970, IEEE Trans. Audio Electroacoust. 18:451-455).
+ * transform, other lengths through that of a chirp (Bluestein 1970, IEEE Trans. Audio Electroacoust.
+ * 18:451-455).
  *
  * @throws WrongUse without values
  */
@@ -68,16 +70,14 @@ export function inverseTransform(spectrum: HalfSpectrum, length: number): Float6
 }
 
 /**
- * One-sided power spectrum of the signal as it is (no window, nothing taken off): floor(n / 2) + 1 values, with
- * the power of negative frequencies added to the positive ones.
+ * One-sided power spectrum of the signal as it is (no window, nothing taken off): floor(n / 2) + 1 values,
+ * with the power of negative frequencies added to the positive ones.
  *
  * @param samplePeriod s
  * @throws WrongUse without values or with a sample period that is not above 0
  */
 export function powerSpectrum(values: Float64Array, samplePeriod: number): PowerSpectrum {
-  if (!(samplePeriod > 0 && Number.isFinite(samplePeriod))) {
-    throw new WrongUse(`A sample period is a number of seconds above 0. Received ${samplePeriod}.`);
-  }
+  checkSamplePeriod(samplePeriod);
   const n = values.length;
   const { re, im } = forwardTransform(values);
   const frequency = re.map((_, k) => k / (n * samplePeriod));
@@ -89,8 +89,9 @@ export function powerSpectrum(values: Float64Array, samplePeriod: number): Power
 }
 
 /**
- * A real signal of 2 m samples as one complex transform of m: even samples are the real, odd ones the imaginary part,
- * and the two spectra are told apart by their symmetry (Cooley, Lewis, Welch 1970, J. Sound Vib. 12:315-337).
+ * A real signal of 2 m samples as one complex transform of m: even samples are the real, odd ones the
+ * imaginary part, and the two spectra are told apart by their symmetry (Cooley, Lewis, Welch 1970, J. Sound
+ * Vib. 12:315-337).
  */
 function packedTransform(values: Float64Array): HalfSpectrum {
   const m = values.length / 2;

@@ -19,13 +19,16 @@ export interface LeastSquaresFit {
   readonly degreesOfFreedom: number;
 }
 
-/** A column whose part that the others do not give is smaller than this share of it counts as none of its own. */
+/**
+ * A column whose part that the others do not give is smaller than this share of it counts as none of its own.
+ */
 const collinear = 1e-13;
 
 /**
  * Fits y = constant + sum of coefficient x column by least squares. Columns are scaled to unit length before
- * the decomposition (Householder QR), and one step of refinement follows, so that ill-conditioned designs keep
- * their digits: the NIST StRD sets Norris and Longley come out to 12 digits, the tenth-degree polynomial Filip to 7.
+ * the decomposition (Householder QR), and one step of refinement follows, so that ill-conditioned designs
+ * keep their digits: the NIST StRD sets Norris and Longley come out to 12 digits, the tenth-degree polynomial
+ * Filip to 7.
  *
  * @param columns one array a regressor, all as long as `y`
  * @throws WrongUse when lengths differ, when there are not more samples than coefficients, or when a column
@@ -94,7 +97,9 @@ export function leastSquares(
   };
 }
 
-/** y less the fit, each sum carried with its rounding error (Ogita, Rump, Oishi 2005), which refinement needs. */
+/**
+ * y less the fit, each sum carried with its rounding error (Ogita, Rump, Oishi 2005), which refinement needs.
+ */
 function residualsOf(
   design: readonly Float64Array[],
   coefficients: Float64Array,

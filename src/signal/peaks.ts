@@ -1,8 +1,8 @@
 /** Peaks of a curve, such as a spectrum. */
 
 /**
- * Indices of the local maxima, highest first. A maximum is higher than the value before it and not lower than the
- * one after; a flat top counts once, at its start. The two ends are no maxima.
+ * Indices of the local maxima, highest first. A maximum is higher than the value before it and not lower than
+ * the one after; a flat top counts once, at its start. The two ends are no maxima.
  */
 export function peaksOf(values: Float64Array): number[] {
   const found: number[] = [];

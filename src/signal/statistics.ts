@@ -62,11 +62,12 @@ export function quantile(values: Float64Array, share: number): number {
 
 /**
  * Standard deviation of the fast noise on a signal, in the signal's unit: the median size of the second
- * differences over what it would be for white noise of standard deviation 1 (0.6745 times the square root of 6).
- * Jumps and slow movement hardly touch it.
+ * differences over what it would be for white noise of standard deviation 1 (0.6745 times the square root of
+ * 6). Jumps and slow movement hardly touch it.
  *
  * Limits: noise that is not white reads low. A signal of fewer than about ten samples a cycle reads high.
- * Where more than half of the second differences are zero (coarse quantisation, held or interpolated values) it is 0.
+ * Where more than half of the second differences are zero (coarse quantisation, held or interpolated values)
+ * it is 0.
  *
  * @throws WrongUse with fewer than three values
  */

@@ -9,8 +9,9 @@ export function randomPhases(length: number, random: SeededRandom): Float64Array
 }
 
 /**
- * A signal with the same power spectrum (so the same linear properties) and phases moved by `phases` (Theiler et al. 1992,
- * Physica D 58:77-94). The two ends of the signal should match: the spectrum takes the record as periodic.
+ * A signal with the same power spectrum (so the same linear properties) and phases moved by `phases` (Theiler
+ * et al. 1992, Physica D 58:77-94). The two ends of the signal should match: the spectrum takes the record as
+ * periodic.
  *
  * @param phases one for each frequency between 0 and one half, floor((length - 1) / 2) of them
  * @throws WrongUse when the number of phases does not fit
@@ -34,9 +35,10 @@ export function surrogate(values: Float64Array, phases: Float64Array): Float64Ar
 }
 
 /**
- * Root mean square error with which stretches of the signal foretell what comes: for each stretch of `embedding` samples, the
- * `neighbours` stretches most like it are taken (not those that start within one `embedding` of it), and the mean of what
- * stood `embedding` samples after their ends is compared with what stood there after the stretch itself.
+ * Root mean square error with which stretches of the signal foretell what comes: for each stretch of
+ * `embedding` samples, the `neighbours` stretches most like it are taken (not those that start within one
+ * `embedding` of it), and the mean of what stood `embedding` samples after their ends is compared with what
+ * stood there after the stretch itself.
  *
  * Time grows with the square of the length.
  *

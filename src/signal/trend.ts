@@ -27,9 +27,9 @@ export function removeSlowTrend(values: Float64Array, window: number): Float64Ar
 }
 
 /**
- * Slow trend of a signal: at each sample, the straight line fitted to the `window` samples around it. Inside the
- * record that is the centred moving average; within half a window of the ends the line of the first or last
- * whole window is used, so that a straight drift is followed exactly to the ends.
+ * Slow trend of a signal: at each sample, the straight line fitted to the `window` samples around it. Inside
+ * the record that is the centred moving average; within half a window of the ends the line of the first or
+ * last whole window is used, so that a straight drift is followed exactly to the ends.
  *
  * @param window samples; an even window is taken one longer, one longer than the record is the whole record
  * @throws WrongUse without values, or when the window is not a whole number of at least 1
@@ -57,7 +57,9 @@ export function slowTrend(values: Float64Array, window: number): Float64Array {
   return trend;
 }
 
-/** Least-squares line through the samples `from`..`to`, read at the samples `first`..`last` (ends left out). */
+/**
+ * Least-squares line through the samples `from`..`to`, read at the samples `first`..`last` (ends left out).
+ */
 function line(values: Float64Array, from: number, to: number, first: number, last: number): Float64Array {
   const n = to - from;
   const middle = (from + to - 1) / 2;

@@ -8,7 +8,8 @@ const n = 4000;
 const period = 80;
 
 describe('for two sines the correlation is a cosine, from which both ratios follow', () => {
-  // The zero crossings lie at pi/2 - phi and pi/2 + phi: ratio 2 phi / pi. Heights: (1 - cos phi) / (1 + cos phi).
+  // The zero crossings lie at pi/2 - phi and pi/2 + phi: ratio 2 phi / pi. Heights: (1 - cos phi) / (1 + cos
+  // phi).
   test.each([5, 20, 30, 45, 60, 75])('phase %d degrees', (degrees) => {
     const phi = (degrees * Math.PI) / 180;
     const signals = { op: cosine(n, period), pv: cosine(n, period, Math.PI + phi) };

@@ -1,6 +1,6 @@
 /**
- * Bicoherence, surrogates and self prediction against NumPy and SciPy (nonlinearity-numpy.py made the values; its versions
- * stand in nonlinearity-numpy.json). Tolerances allow for rounding only.
+ * Bicoherence, surrogates and self prediction against NumPy and SciPy (nonlinearity-numpy.py made the values;
+ * its versions stand in nonlinearity-numpy.json). Tolerances allow for rounding only.
  */
 import { expect, test } from 'vitest';
 import { squaredBicoherence } from '../../src/signal/bispectrum';

@@ -1,4 +1,6 @@
-/** Regularity of a cycle against a NumPy computation of its definition (regularity-numpy.py made the values). */
+/**
+ * Regularity of a cycle against a NumPy computation of its definition (regularity-numpy.py made the values).
+ */
 import { expect, test } from 'vitest';
 import { regularityAt } from '../../src/oscillation/regularity';
 import { expectAllClose, expectClose } from '../closeness';

@@ -1,7 +1,7 @@
 /**
- * src/signal against sources outside the project: SciPy and NumPy (signal-scipy.py made signal-scipy.json; the
- * versions stand in it), mathjs, NIST's reference data sets and NIST/SEMATECH tables.
- * Tolerances of 1e-9 and below allow for rounding only; wider ones are explained where they stand.
+ * src/signal against sources outside the project: SciPy and NumPy (signal-scipy.py made signal-scipy.json;
+ * the versions stand in it), mathjs, NIST's reference data sets and NIST/SEMATECH tables. Tolerances of 1e-9
+ * and below allow for rounding only; wider ones are explained where they stand.
  */
 import { type Complex, fft as mathFft } from 'mathjs';
 import { describe, expect, test } from 'vitest';
