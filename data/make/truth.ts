@@ -11,12 +11,19 @@ export interface ValveTruth {
   readonly J: number;
   /** Share of the variance of the true travel that the element explains, at most 1. */
   readonly explains: number;
+  /**
+   * Lowest and highest J with which the element, with any S tried, explains all but {@link NEARLY} as much: where they
+   * lie apart, not even the true travel tells J.
+   */
+  readonly jumpAsGood: readonly [number, number];
 }
 
 /** The element is started at the true position; this share of the record is then left out to forget the start. */
 const FORGOTTEN = 0.1;
 /** Share of S by which OP may turn back before it counts as a reversal, as in the fit of a record. */
 const TOLERANCE = 0.02;
+/** Share of the travel's variance within which two fits count as equally good in `jumpAsGood`. */
+const NEARLY = 0.005;
 /** A wide grid over S and J/S, then a fine one over J/S around its best S, as the surface is rugged along J. */
 const WIDE = { S: 40, ratio: 9 };
 const FINE = { S: 15, ratio: 41, reach: 0.1 };
@@ -74,6 +81,7 @@ export function fitTruth(
   if (!(variance > 1e-9 * count) || !(high > low)) return null;
 
   const pieces = createTravelPieces(samples);
+  const all: Point[] = [];
   const at = (model: ValveModel, S: number, ratio: number): Point => {
     walkTwoParameter(op, S, ratio * S, model === 'slides-on', TOLERANCE * S, 0, travel[0], pieces);
     let sum = 0;
@@ -93,7 +101,9 @@ export function fitTruth(
       sum += offset * (b - a) + u - t;
       squares += offset * offset * (b - a) + uu + tt + 2 * (offset * (u - t) - ut);
     }
-    return { model, S, ratio, misfit: (squares - (sum * sum) / count) / variance };
+    const point = { model, S, ratio, misfit: (squares - (sum * sum) / count) / variance };
+    all.push(point);
+    return point;
   };
 
   const best: Point[] = [];
@@ -116,7 +126,14 @@ export function fitTruth(
   }
   best.sort((a, b) => a.misfit - b.misfit);
   const { model, S, ratio, misfit } = best[0];
-  return { model, S, J: ratio * S, explains: 1 - misfit };
+  const jumps = all.filter((point) => point.misfit <= misfit + NEARLY).map((point) => point.ratio * point.S);
+  return {
+    model,
+    S,
+    J: ratio * S,
+    explains: 1 - misfit,
+    jumpAsGood: [Math.min(...jumps), Math.max(...jumps)],
+  };
 }
 
 /** Pattern search in log S and J/S: steps are halved when none of the eight around a point is better. */

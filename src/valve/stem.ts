@@ -67,6 +67,8 @@ const LARGEST_STEP = 0.1;
 const FIRST_STEP = 1e-4;
 const SMALLEST_STEP = 1e-7;
 const POSITION_ERROR = 1e-4;
+/** A drive beyond the breakaway force by less than this, % of stroke, does not move the stem. */
+const ROUNDING = 1e-9;
 
 /** The linear part (mass, spring, viscous friction) carried over one step: e11 ... e22 is its matrix exponential. */
 interface LinearStep {
@@ -123,7 +125,7 @@ export function createStem(options: StemOptions = {}): SteppableValve {
 
   const viscous = friction.viscous;
   const newtonPerPercent = (spring * stroke) / 100;
-  const breakaway = friction.breakaway / newtonPerPercent;
+  const holds = friction.breakaway / newtonPerPercent + ROUNDING;
   const largest = actuatorLag > 0 ? Math.min(LARGEST_STEP, actuatorLag / 4) : LARGEST_STEP;
   const allowed = (POSITION_ERROR / 100) * stroke;
 
@@ -204,11 +206,24 @@ export function createStem(options: StemOptions = {}): SteppableValve {
         if (fromRest) {
           endX = x; // the drive exceeds friction by less than rounding: still at rest
         } else {
-          // The stem stops inside this step: the secant through the speeds at its ends finds when.
-          for (let i = 0; i < 3; i++) {
-            time = Math.min(step.h, (time * v) / (v - endV));
+          // The stem stops inside this step: false position between the speeds at its ends finds when.
+          let early = 0;
+          let late = step.h;
+          let earlyV = v;
+          let lateV = endV;
+          for (let i = 0; i < 4 && lateV !== 0; i++) {
+            const next = early + ((late - early) * earlyV) / (earlyV - lateV);
+            if (!(next > early && next < late)) break;
+            time = next;
             const part = linearStep(mass, spring, viscous, time);
             tryStep(x, v, direction, force, force + ((nextForce - force) * time) / step.h, part);
+            if (endV * direction > 0) {
+              early = time;
+              earlyV = endV;
+            } else {
+              late = time;
+              lateV = endV;
+            }
           }
         }
         used += time;
@@ -231,11 +246,11 @@ export function createStem(options: StemOptions = {}): SteppableValve {
 
   /** Seconds until the resting stem breaks loose; Infinity when it does not. */
   const timeToBreak = (op: number): number => {
-    const now = actuatorLag > 0 ? drive : op;
-    if (Math.abs(now - position) > breakaway) return 0;
-    if (Math.abs(op - position) <= breakaway) return Number.POSITIVE_INFINITY;
-    const edge = position + Math.sign(op - position) * breakaway;
-    return Math.max(0, actuatorLag * Math.log((drive - op) / (edge - op)));
+    if (Math.abs(driveAfter(op, 0) - position) > holds) return 0;
+    const beyond = Math.abs(op - position) - holds;
+    if (beyond <= 0) return Number.POSITIVE_INFINITY;
+    const toGo = Math.sign(op - position) * (op - drive);
+    return Math.max(0, actuatorLag * Math.log(toGo / beyond));
   };
 
   return {
@@ -253,7 +268,7 @@ export function createStem(options: StemOptions = {}): SteppableValve {
           }
           drive = driveAfter(op, wait);
           left -= wait;
-          const pulled = Math.abs(drive - position) > breakaway ? drive : op;
+          const pulled = Math.abs(drive - position) > holds ? drive : op;
           left -= slide(op, left, Math.sign(pulled - position));
         } else {
           left -= slide(op, left, Math.sign(speed));

@@ -111,6 +111,14 @@ describe('stem', () => {
     expect(travel).toBeCloseTo(50 + (100 * x) / TEXTBOOK_VALVE.stroke, 2);
   });
 
+  it('stays finite and quick when OP stops within a rounding error of the breakaway force', () => {
+    const friction = relayFriction({ coulomb: 0.3 * newtonPerPercent, viscous: 612.9 });
+    const stem = createStem({ friction, actuatorLag: 1, startOp: 50 });
+    for (let k = 0; k < 200; k++) stem.advance(50.3 + (k - 100) * 1e-15, 1);
+    expect(stem.travel).toBeCloseTo(50, 6);
+    expect(stem.advance(60, 60)).toBeCloseTo(59.7, 6);
+  });
+
   it('refuses what cannot be', () => {
     expect(() => createStem({ mass: 0 })).toThrow(/mass must be above 0/);
     expect(() => createStem({ backlash: -1 })).toThrow(/backlash must be 0 or more/);
