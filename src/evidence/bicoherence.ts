@@ -11,8 +11,8 @@ import { needsPvCycle } from './applies';
 import type { Indicator } from './indicator';
 
 const segment = 128;
-/** Fewest samples, about sixteen segments that overlap by one half (own choice). */
-const fewestSamples = 1088;
+/** Fewest samples, fifteen segments that overlap by one half (own choice). */
+const fewestSamples = 1024;
 /** Longer periods are thinned to this many samples a cycle, so that a segment holds several (own choice). */
 const longestPeriod = 40;
 
