@@ -6,7 +6,6 @@
 import {
   createTravelPieces,
   type TravelPieces,
-  travelFromPieces,
   type ValveModel,
   walkTwoParameter,
 } from '../valve/two-parameter';
@@ -27,53 +26,86 @@ export interface DescribeSettings {
   readonly largest: number;
 }
 
+/** Share of the record that is not counted, to forget the start. */
+const notCounted = 0.1;
 const coarseS = 26;
 const coarseJ = 9;
 const startsKept = 5;
 
-class TravelMisfit {
+/**
+ * Share of a travel's variance that an element leaves unexplained, offset free. Sums over OP and travel are made
+ * once, so that a piece of the element's travel costs the same at any length.
+ */
+export class TravelMisfit {
   private readonly pieces: TravelPieces;
-  private readonly model: Float64Array;
   private readonly first: number;
-  private readonly variance: number;
+  private readonly opMean: number;
+  private readonly travelMean: number;
+  private readonly sums: Record<'t' | 'u' | 'tt' | 'uu' | 'ut', Float64Array>;
   private readonly start: number;
 
+  /** `start`: travel before the first sample, %; default: the travel's first value, shifted to OP's mean. */
   constructor(
     private readonly op: Float64Array,
-    private readonly travel: Float64Array,
+    travel: Float64Array,
+    start?: number,
   ) {
-    this.pieces = createTravelPieces(op.length);
-    this.model = new Float64Array(op.length);
-    this.first = Math.floor(op.length / 10);
-    let opSum = 0;
-    let sum = 0;
-    let square = 0;
-    const counted = op.length - this.first;
-    for (let k = this.first; k < op.length; k++) {
-      opSum += op[k];
-      sum += travel[k];
-      square += travel[k] * travel[k];
+    const samples = op.length;
+    this.pieces = createTravelPieces(samples);
+    this.first = Math.floor(notCounted * samples);
+    this.opMean = meanFrom(op, this.first);
+    this.travelMean = meanFrom(travel, this.first);
+    this.start = start ?? travel[0] - this.travelMean + this.opMean;
+    const sum = (): Float64Array => new Float64Array(samples + 1);
+    this.sums = { t: sum(), u: sum(), tt: sum(), uu: sum(), ut: sum() };
+    const { t, u, tt, uu, ut } = this.sums;
+    for (let k = this.first; k < samples; k++) {
+      const a = travel[k] - this.travelMean;
+      const b = op[k] - this.opMean;
+      t[k + 1] = t[k] + a;
+      u[k + 1] = u[k] + b;
+      tt[k + 1] = tt[k] + a * a;
+      uu[k + 1] = uu[k] + b * b;
+      ut[k + 1] = ut[k] + a * b;
     }
-    this.variance = square / counted - (sum / counted) ** 2;
-    this.start = travel[0] - (sum - opSum) / counted;
   }
 
-  /** Share of the travel's variance left unexplained. */
   of(S: number, J: number, model: ValveModel): number {
-    const { op, travel, first } = this;
-    if (!(this.variance > 0)) return 1;
-    walkTwoParameter(op, S, J, model === 'slides-on', reversalTolerance * S, 0, this.start, this.pieces);
-    travelFromPieces(this.pieces, op, this.model);
+    const { op, pieces, first, sums } = this;
+    const samples = op.length;
+    const variance = sums.tt[samples];
+    const counted = samples - first;
+    if (!(variance > 1e-12 * counted)) return 1;
+    walkTwoParameter(op, S, J, model === 'slides-on', reversalTolerance * S, 0, this.start, pieces);
+    const shift = this.opMean - this.travelMean;
+    const { t, u, uu, ut } = sums;
     let sum = 0;
-    let square = 0;
-    for (let k = first; k < op.length; k++) {
-      const off = travel[k] - this.model[k];
-      sum += off;
-      square += off * off;
+    let squares = 0;
+    for (let i = 0; i < pieces.count; i++) {
+      const to = i + 1 < pieces.count ? pieces.from[i + 1] : samples;
+      if (to <= first) continue;
+      const from = Math.max(first, pieces.from[i]);
+      const travel = t[to] - t[from];
+      if (pieces.slope[i] === 0) {
+        const level = pieces.offset[i] - this.travelMean;
+        sum += level * (to - from) - travel;
+        squares += level * level * (to - from) - 2 * level * travel;
+      } else {
+        const level = pieces.offset[i] + shift;
+        const off = u[to] - u[from] - travel;
+        sum += level * (to - from) + off;
+        squares +=
+          level * level * (to - from) + 2 * level * off + uu[to] - uu[from] - 2 * (ut[to] - ut[from]);
+      }
     }
-    const counted = op.length - first;
-    return (square / counted - (sum / counted) ** 2) / this.variance;
+    return (squares + variance - (sum * sum) / counted) / variance;
   }
+}
+
+function meanFrom(values: Float64Array, first: number): number {
+  let sum = 0;
+  for (let k = first; k < values.length; k++) sum += values[k];
+  return sum / (values.length - first);
 }
 
 /** Finds the element of either variant that best describes `travel` (%), given `op` (%), both of one length. */

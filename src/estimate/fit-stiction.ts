@@ -16,7 +16,7 @@ import { type Intervals, intervalsFromParts, type PartFit, recordParts } from '.
 import { misfitMap } from './misfit-map';
 import { type ProcessSettings, residualOf, swingOf } from './process-fit';
 import { followPart, type Reconstruction, reconstructTravel } from './reconstruct-travel';
-import type { Slip, StictionFit, StictionResult } from './stiction-fit';
+import type { Slip, StictionFit, StictionResult, ValveTest } from './stiction-fit';
 import { findLine, testValve } from './valve-test';
 
 export interface FitOptions {
@@ -36,8 +36,11 @@ export interface FitOptions {
 const statedGainTolerance = 0.15;
 const fewestReversals = 10;
 const leastExplained = 0.5;
-/** Refused when S is this close to the whole OP swing and OP carries a coherent line. */
+/** Least t over blocks of valve against straight line for numbers to be given. Own choice. */
+const leastT = 1.5;
+/** Refused when S is this close to the whole OP swing and, with the steady line out, t stays below `clearT`. */
 const nearSwing = 0.9;
+const clearT = 4;
 
 /**
  * Fits the two-parameter valve model to a loop record.
@@ -135,7 +138,7 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
       deadTime: reconstruction.delay * record.samplePeriod,
     },
   };
-  refused.push(...whyNumbersAreRefused(record, fit, largest, line.coherent));
+  refused.push(...whyNumbersAreRefused(record, fit, test, largest));
   return { fit: refused.length > 0 ? null : fit, drawn: fit, refused, test };
 }
 
@@ -227,8 +230,8 @@ function whyJIsNotResolved({ J, spreadJ }: Intervals, S: number): string | null 
 function whyNumbersAreRefused(
   record: LoopRecord,
   fit: StictionFit,
+  test: ValveTest,
   largest: number,
-  coherent: boolean,
 ): string[] {
   const reasons: string[] = [];
   const S = fit.S.value;
@@ -249,7 +252,13 @@ function whyNumbersAreRefused(
       `Only ${fit.slips.length} slips of the valve can be seen; at least ${fewestReversals} are asked for.`,
     );
   }
-  if (coherent && S > nearSwing * largest) {
+  if (fit.travelSource === 'measured') return reasons;
+  const t = Math.min(test.tOverLine, test.tWithoutLine ?? test.tOverLine);
+  if (t < leastT) {
+    reasons.push(
+      `A straight line from OP to travel predicts PV about as well as a sticking valve (t = ${t.toFixed(1)} over ${test.blocks} blocks, at least ${leastT} is asked for), so this record holds no S and J to read.`,
+    );
+  } else if (test.tWithoutLine !== null && test.tWithoutLine < clearT && S > nearSwing * largest) {
     reasons.push(
       `The fitted S (${S.toFixed(1)} %) is nearly the whole swing of OP (${largest.toFixed(1)} %) and OP carries a steady line: an outside cycle many times larger than S gives the same picture.`,
     );

@@ -5,13 +5,13 @@ import type { Reconstruction } from './reconstruct-travel';
 import { PairTrial } from './search';
 import type { MisfitMap } from './stiction-fit';
 
-const stepsS = 28;
-const stepsJ = 21;
-const everyLag: readonly number[] = [0, 1, 2];
+const stepsS = 24;
+const stepsJ = 17;
+const onlyLag: readonly number[] = [0];
 
 /**
  * Map around the pair `found`: S from 0.3 to 2 times its value (at most the largest), J from 0 to S. Each point is
- * the better of the two variants, with lag and dead time free to move a little and the gain freely.
+ * the better of the two variants, with dead time free to move by a sample and the gain freely.
  */
 export function misfitMap(
   pv: Float64Array,
@@ -38,6 +38,6 @@ export function misfitMap(
   });
   const trials = (['slides-on', 'sticks-again'] as const).map((model) => new PairTrial(objective, u, model));
   const misfit = (s: number, j: number): number =>
-    Math.max(0, Math.min(...trials.map((trial) => trial.of(s, j, everyLag).misfit)));
+    Math.max(0, Math.min(...trials.map((trial) => trial.of(s, j, onlyLag).misfit)));
   return { S, J, misfit: J.map((j) => S.map((s) => (j > s ? null : misfit(s, j)))) };
 }

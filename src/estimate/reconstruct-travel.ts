@@ -6,6 +6,7 @@
  * truth. So the starts are spread over J/S, from each the travel is followed with live hypotheses (`track-travel.ts`),
  * process and element are fitted again to what was followed, and the whole history with the lowest price wins.
  */
+import { noiseLevel } from '../signal/statistics';
 import { twoParameterValve } from '../valve/two-parameter';
 import { describeTravel } from './describe-travel';
 import { createObjective, secondTheta } from './objective';
@@ -32,12 +33,16 @@ export interface Reconstruction extends ProcessFit {
   readonly theta: number;
   /** Negative log likelihood of PV plus the price of the liberties taken; comparable within one record. */
   readonly price: number;
+  /** The price of the liberties alone. */
+  readonly penalty: number;
   /** Power of the one-step prediction errors; comparable between disturbance filters and responses. */
   readonly innovations: number;
   /** % */
   readonly travel: Float64Array;
 }
 
+/** S below this many times the noise of OP is not looked for: it could not be told from the noise. */
+const noiseFloor = 2;
 const actuatorLags: readonly number[] = [0, 0.7, 1.4];
 /** Bands of J/S from each of which one start is taken. */
 const jumpBands: readonly number[] = [0, 0.08, 0.2, 0.35, 0.5, 0.7, 1.01];
@@ -51,11 +56,12 @@ export function reconstructTravel(
 ): Reconstruction[] | null {
   const largest = swingOf(op);
   if (!(largest > 0)) return null;
-  const theta = firstTheta(pv, op, largest, settings);
+  const smallest = Math.min(noiseFloor * noiseLevel(op), largest / 4);
+  const theta = firstTheta(pv, op, smallest, largest, settings);
   const objective = createObjective(pv, op, { ...settings, ...processGrid(settings), theta });
   const points = [
-    ...searchGrid(objective, op, 'slides-on', largest),
-    ...searchGrid(objective, op, 'sticks-again', largest),
+    ...searchGrid(objective, op, 'slides-on', smallest, largest),
+    ...searchGrid(objective, op, 'sticks-again', smallest, largest),
   ].sort((a, b) => a.misfit - b.misfit);
   if (points[0].misfit >= 1) return null;
   const target = createTarget(pv, theta, settings);
@@ -66,6 +72,7 @@ export function reconstructTravel(
     actuatorLag,
     theta,
     price: Number.POSITIVE_INFINITY,
+    penalty: 0,
     innovations: start.misfit * target.power,
     travel: u,
   }));
@@ -180,6 +187,7 @@ function follow(
     actuatorLag: start.actuatorLag,
     theta: target.theta,
     price: (samples / 2) * Math.log(innovations / samples) + penalty,
+    penalty,
     innovations,
     travel,
   };

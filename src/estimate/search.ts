@@ -101,13 +101,14 @@ function gridPair(s: number, j: number, largest: number): { S: number; J: number
 }
 
 /** The thinned grid with a few of the lags, best first. */
-function searchCoarse(trial: PairTrial, largest: number): CoarsePoint[] {
+function searchCoarse(trial: PairTrial, smallest: number, largest: number): CoarsePoint[] {
   const lagCount = trial.objective.perLag.length;
   const fewLags = trial.objective.perLag.map((_, i) => i).filter((i) => i % 4 === 1 || lagCount < 5);
   const coarse: CoarsePoint[] = [];
   for (let s = 0; s < gridSteps; s += coarseStepS) {
     for (let j = 0; j < gridSteps; j += coarseStepJ) {
       const { S, J } = gridPair(s, j, largest);
+      if (S < smallest) continue;
       coarse.push({ s, j, misfit: trial.of(S, J, fewLags).misfit });
     }
   }
@@ -128,13 +129,14 @@ const neighbours: readonly (readonly [number, number])[] = [
 ];
 
 /**
- * Searches the grid for one variant and gives every point of the full grid that was tried, best first. `largest` is
- * the largest S, %.
+ * Searches the grid for one variant and gives every point of the full grid that was tried, best first. `smallest` and
+ * `largest` bound S, %.
  */
 export function searchGrid(
   objective: Objective,
   op: Float64Array,
   model: ValveModel,
+  smallest: number,
   largest: number,
 ): GridPoint[] {
   const trial = new PairTrial(objective, op, model);
@@ -143,6 +145,7 @@ export function searchGrid(
   const tried = new Map<number, GridPoint>();
   const misfit = (s: number, j: number): number => {
     if (s < 0 || j < 0 || s >= gridSteps || j >= gridSteps) return Number.POSITIVE_INFINITY;
+    if (gridPair(s, j, largest).S < smallest) return Number.POSITIVE_INFINITY;
     const key = s * gridSteps + j;
     let point = tried.get(key);
     if (!point) {
@@ -153,7 +156,7 @@ export function searchGrid(
     }
     return point.misfit;
   };
-  for (const start of searchCoarse(trial, largest).slice(0, climbersKept)) {
+  for (const start of searchCoarse(trial, smallest, largest).slice(0, climbersKept)) {
     let { s, j } = start;
     let here = misfit(s, j);
     for (let better = true; better; ) {
@@ -177,6 +180,7 @@ export function searchGrid(
 export function firstTheta(
   pv: Float64Array,
   op: Float64Array,
+  smallest: number,
   largest: number,
   settings: ProcessSettings,
 ): number {
@@ -186,7 +190,7 @@ export function firstTheta(
   let least = Number.POSITIVE_INFINITY;
   for (const theta of [0.4, 0.75, 0.92, 0.98]) {
     const objective = createObjective(pv, op, { ...settings, ...few, theta });
-    const [first] = searchCoarse(new PairTrial(objective, op, 'slides-on'), largest);
+    const [first] = searchCoarse(new PairTrial(objective, op, 'slides-on'), smallest, largest);
     const innovations = first.misfit * objective.power;
     if (innovations < least) {
       least = innovations;

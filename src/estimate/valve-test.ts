@@ -6,7 +6,7 @@
  * an outside sine makes it, can fake valve evidence: the test is then made again with that line and its
  * harmonics taken out of prediction errors and regressors alike.
  */
-import { createTravelPieces, travelFromPieces, walkTwoParameter } from '../valve/two-parameter';
+import { twoParameterValve, type ValveModel } from '../valve/two-parameter';
 import { filterTravel, whiten } from './objective';
 import {
   bestTheta,
@@ -18,7 +18,7 @@ import {
   residualOf,
 } from './process-fit';
 import type { Reconstruction } from './reconstruct-travel';
-import { processGrid, reversalTolerance } from './search';
+import { processGrid } from './search';
 import type { ValveTest } from './stiction-fit';
 
 const blocks = 16;
@@ -30,6 +30,8 @@ interface Explanation {
   /** Travel through process, both filtered; and PV filtered. */
   readonly part: Float64Array;
   readonly target: Float64Array;
+  /** Price of the liberties taken with the travel, in units of log likelihood. */
+  readonly price: number;
 }
 
 export function testValve(
@@ -39,22 +41,27 @@ export function testValve(
   settings: ProcessSettings,
   line: { readonly frequency: number; readonly coherent: boolean },
 ): ValveTest {
-  const valve = explanation(pv, found.travel, found, settings);
-  const straight = bestExplanation(pv, [lagged(op, found.actuatorLag)], found, settings);
-  const deadBands = [0.7, 0.85, 0.93, 1, 1.07].map((share) => deadBandTravel(op, found, share * found.S));
+  const u = lagged(op, found.actuatorLag);
+  const element = (S: number, J: number, model: ValveModel): Float64Array =>
+    twoParameterValve(u, { S, J, model });
+  const followed = { ...explanation(pv, found.travel, found, settings), price: found.penalty };
+  const jumping = bestExplanation(
+    pv,
+    [element(found.S, found.J, 'slides-on'), element(found.S, found.J, 'sticks-again')],
+    found,
+    settings,
+  );
+  const straight = bestExplanation(pv, [u], found, settings);
+  const deadBands = [0.7, 0.85, 0.93, 1, 1.07].map((share) => element(share * found.S, 0, 'slides-on'));
   const deadBand = bestExplanation(pv, deadBands, found, settings);
-  const valveLog = blockLogs(valve);
-  const overLine = compare(valveLog, blockLogs(straight), pv.length);
-  const overDeadBand = compare(valveLog, blockLogs(deadBand), pv.length);
+  const sticking = better(followed, jumping);
+  const valve = better(sticking, deadBand);
+  const overLine = compare(valve, straight);
+  const overDeadBand = compare(sticking, deadBand);
   let tWithoutLine: number | null = null;
   if (line.coherent) {
     const basis = lineBasis(pv.length, line.frequency);
-    const without = compare(
-      blockLogs(withoutLine(valve, basis)),
-      blockLogs(withoutLine(straight, basis)),
-      pv.length,
-    );
-    tWithoutLine = without.t;
+    tWithoutLine = compare(withoutLine(valve, basis), withoutLine(straight, basis)).t;
   }
   return {
     blocks,
@@ -67,15 +74,6 @@ export function testValve(
   };
 }
 
-function deadBandTravel(op: Float64Array, found: Reconstruction, S: number): Float64Array {
-  const u = lagged(op, found.actuatorLag);
-  const pieces = createTravelPieces(op.length);
-  walkTwoParameter(u, S, 0, true, reversalTolerance * S, 0, u[0], pieces);
-  const travel = new Float64Array(op.length);
-  travelFromPieces(pieces, u, travel);
-  return travel;
-}
-
 function explanation(
   pv: Float64Array,
   travel: Float64Array,
@@ -85,6 +83,7 @@ function explanation(
   return {
     part: filterTravel(travel, found, found.theta, settings.integrating),
     target: whiten(pv, found.theta, settings.integrating),
+    price: 0,
   };
 }
 
@@ -123,8 +122,8 @@ function bestExplanation(
   return best!;
 }
 
-/** Log of the mean squared prediction error in each block, the gain fitted over the whole record. */
-function blockLogs({ part, target }: Explanation): Float64Array {
+/** Prediction errors with the gain fitted over the whole record. */
+function errorsOf({ part, target }: Explanation): Float64Array {
   let dot = 0;
   let energy = 0;
   for (let k = 0; k < part.length; k++) {
@@ -132,36 +131,45 @@ function blockLogs({ part, target }: Explanation): Float64Array {
     energy += part[k] * part[k];
   }
   const gain = energy > 0 ? dot / energy : 0;
-  const logs = new Float64Array(blocks);
-  for (let b = 0; b < blocks; b++) {
-    const from = Math.floor((b * part.length) / blocks);
-    const to = Math.floor(((b + 1) * part.length) / blocks);
-    let sum = 0;
-    for (let k = from; k < to; k++) sum += (target[k] - gain * part[k]) ** 2;
-    logs[b] = Math.log(Math.max(sum / Math.max(1, to - from), 1e-300));
-  }
-  return logs;
+  return target.map((value, k) => value - gain * part[k]) as Float64Array;
 }
 
-function compare(
-  valve: Float64Array,
-  other: Float64Array,
-  samples: number,
-): { sum: number; t: number; wins: number } {
-  const perBlock = samples / blocks / 2;
+/** Negative log likelihood of the whole record, its liberties paid for. */
+function priceOf(explanation: Explanation): number {
+  const errors = errorsOf(explanation);
+  const power = errors.reduce((sum, error) => sum + error * error, 0);
+  return (errors.length / 2) * Math.log(power / errors.length) + explanation.price;
+}
+
+function better(one: Explanation, other: Explanation): Explanation {
+  return priceOf(one) <= priceOf(other) ? one : other;
+}
+
+/** Log likelihood gained by `valve` over `other` in each block: sum, t over blocks, and blocks won. */
+function compare(valve: Explanation, other: Explanation): { sum: number; t: number; wins: number } {
+  const mine = errorsOf(valve);
+  const theirs = errorsOf(other);
+  const paid = (valve.price - other.price) / blocks;
   let sum = 0;
   let square = 0;
   let wins = 0;
   for (let b = 0; b < blocks; b++) {
-    const gained = perBlock * (other[b] - valve[b]);
+    const from = Math.floor((b * mine.length) / blocks);
+    const to = Math.floor(((b + 1) * mine.length) / blocks);
+    let myPower = 1e-300;
+    let theirPower = 1e-300;
+    for (let k = from; k < to; k++) {
+      myPower += mine[k] * mine[k];
+      theirPower += theirs[k] * theirs[k];
+    }
+    const gained = ((to - from) / 2) * Math.log(theirPower / myPower) - paid;
     sum += gained;
     square += gained * gained;
     if (gained > 0) wins++;
   }
   const average = sum / blocks;
   const spread = Math.sqrt(Math.max(0, square / blocks - average * average) / (blocks - 1));
-  const t = spread > 0 ? average / spread : 0;
-  return { sum, t, wins };
+  return { sum, t: spread > 0 ? average / spread : 0, wins };
 }
 
 /** Orthonormal sines and cosines of a line and its harmonics over a record of `samples` samples. */
@@ -187,8 +195,8 @@ function subtract(values: Float64Array, direction: Float64Array): void {
   for (let k = 0; k < values.length; k++) values[k] -= dot * direction[k];
 }
 
-function withoutLine({ part, target }: Explanation, basis: readonly Float64Array[]): Explanation {
-  const clean = { part: Float64Array.from(part), target: Float64Array.from(target) };
+function withoutLine(from: Explanation, basis: readonly Float64Array[]): Explanation {
+  const clean = { ...from, part: from.part.slice(), target: from.target.slice() };
   for (const wave of basis) {
     subtract(clean.part, wave);
     subtract(clean.target, wave);
