@@ -13,7 +13,12 @@ export default defineConfig({
       { extends: true, test: { name: 'inside', include: ['tests/**/*.test.ts'], exclude: [rendered] } },
       {
         extends: true,
-        test: { name: 'rendered', include: [rendered], globalSetup: 'tests/rendered/outside-tools.ts' },
+        test: {
+          name: 'rendered',
+          include: [rendered],
+          globalSetup: 'tests/rendered/outside-tools.ts',
+          testTimeout: 300_000,
+        },
       },
     ],
   },
