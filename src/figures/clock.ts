@@ -7,11 +7,12 @@ export interface RecordClock {
   /** Name of the axis, with the zone when the start time carries one. */
   readonly title: string;
   /**
-   * Clock time `seconds` after the start, in milliseconds, such that a Plotly date axis, which knows no zones, shows
-   * the time that the clock on the wall showed. A change to or from summer time within the record is not followed.
+   * The time that the clock on the wall showed `seconds` after the start, as `2024-03-05 06:00:00`. Text, because
+   * Plotly would shift a number to the zone of the reader. A change to or from summer time within the record is not
+   * followed.
    */
-  at(seconds: number): number;
-  /** The same as text, `06:00`; with seconds where the record is shorter than 20 minutes. */
+  at(seconds: number): string;
+  /** The same without the day, `06:00`; with seconds where the record is shorter than 20 minutes. */
   text(seconds: number): string;
 }
 
@@ -25,11 +26,15 @@ export function recordClock(record: LoopRecord): RecordClock {
   }
   const wall = start.setZone('utc', { keepLocalTime: true }).toMillis();
   const zoned = /(Z|[+-]\d\d:?\d\d)$/i.test(record.start);
-  const form = record.pv.length * record.samplePeriod < 1200 ? 'HH:mm:ss' : 'HH:mm';
-  const at = (seconds: number): number => wall + Math.round(seconds * 1000);
+  const at = (seconds: number): string =>
+    new Date(wall + Math.round(seconds * 1000))
+      .toISOString()
+      .replace('T', ' ')
+      .replace(/(\.000)?Z$/, '');
+  const textLength = record.pv.length * record.samplePeriod < 1200 ? 8 : 5;
   return {
     title: zoned ? `clock time (${start.offset === 0 ? 'UTC' : start.toFormat("'UTC'ZZ")})` : 'clock time',
     at,
-    text: (seconds) => DateTime.fromMillis(at(seconds), { zone: 'utc' }).toFormat(form),
+    text: (seconds) => at(seconds).slice(11, 11 + textLength),
   };
 }

@@ -24,7 +24,7 @@ export function fitFigure(findings: Findings): Figure | null {
   const wanted =
     period === null ? samples : Math.min(samples, Math.ceil((cyclesShown * period) / samplePeriod) + 1);
   const first = Math.floor((samples - wanted) / 2);
-  const shown = (values: Float64Array): { x: number[]; y: (number | null)[] } => {
+  const shown = (values: Float64Array): { x: string[]; y: (number | null)[] } => {
     const part = values.subarray(first, first + wanted);
     const indices = thin(part);
     return { x: indices.map((i) => clock.at((first + i) * samplePeriod)), y: plain(part, indices) };

@@ -7,7 +7,7 @@ import { type RecordClock, recordClock } from './clock';
 import type { Figure } from './figure';
 import { axis, makeFigure, panelName, timeAxis, withUnit } from './layout';
 import { lineWidth, palette } from './palette';
-import { extent, padded, plain, short } from './plain-numbers';
+import { extent, plain, short } from './plain-numbers';
 import { thin } from './thin';
 
 /** Slips that can be marked without hiding OP. */
@@ -50,7 +50,7 @@ export function trendFigure(findings: Findings): Figure {
     ],
     layout: {
       // Room at the ends keeps the first label, the one with the date, inside the figure.
-      xaxis: { ...timeAxis(clock, 'y2'), range: padded(clock.at(0), clock.at(seconds), 0.03, 0.03) },
+      xaxis: { ...timeAxis(clock, 'y2'), range: [clock.at(-0.03 * seconds), clock.at(1.03 * seconds)] },
       yaxis: axis({ domain: [0.53, 1] }),
       yaxis2: axis({ domain: [0, 0.43] }),
     },

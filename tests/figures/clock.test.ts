@@ -7,9 +7,9 @@ const clockOf = (start: string, samples = 3600) => recordClock(fixtureFindings({
 describe('recordClock', () => {
   it('shows the clock of the plant, whatever the zone of the reader', () => {
     const clock = clockOf('2031-03-05T06:00:00+05:30');
-    // ECMA-262 Date.UTC is the outside reference: 06:00 on the wall, told to an axis that knows no zones.
-    expect(clock.at(0)).toBe(Date.UTC(2031, 2, 5, 6, 0, 0));
-    expect(clock.at(90.5)).toBe(Date.UTC(2031, 2, 5, 6, 1, 30, 500));
+    expect(clock.at(0)).toBe('2031-03-05 06:00:00');
+    expect(clock.at(90.5)).toBe('2031-03-05 06:01:30.500');
+    expect(clock.at(-60)).toBe('2031-03-05 05:59:00');
     expect(clock.title).toBe('clock time (UTC+05:30)');
     expect(clock.text(3600)).toBe('07:00');
   });
@@ -17,7 +17,7 @@ describe('recordClock', () => {
   it('names UTC, and claims no zone where the record has none', () => {
     expect(clockOf('2031-03-05T06:00:00Z').title).toBe('clock time (UTC)');
     expect(clockOf('2031-03-05T06:00:00').title).toBe('clock time');
-    expect(clockOf('2031-03-05T06:00:00').at(0)).toBe(Date.UTC(2031, 2, 5, 6));
+    expect(clockOf('2031-03-05T06:00:00').at(0)).toBe('2031-03-05 06:00:00');
   });
 
   it('writes seconds where the record is short', () => {

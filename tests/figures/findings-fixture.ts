@@ -43,14 +43,13 @@ export function expectSound(figure: Figure | null): asserts figure is Figure {
   }
 }
 
-/** The traces of a figure by name. */
-export function traceOf(
-  figure: Figure,
-  name: string,
-): { x: number[]; y: number[] } & Record<string, unknown> {
+type Trace<X> = { x: X[]; y: number[] } & Record<string, unknown>;
+
+/** The trace of a figure with this name; `X` is what its horizontal axis holds. */
+export function traceOf<X = number>(figure: Figure, name: string): Trace<X> {
   const found = (figure.data as { name?: string }[]).find((trace) => trace.name === name);
   expect(found, `trace "${name}"`).toBeDefined();
-  return found as { x: number[]; y: number[] } & Record<string, unknown>;
+  return found as Trace<X>;
 }
 
 export const S = 3.2;

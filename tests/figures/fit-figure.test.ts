@@ -7,11 +7,14 @@ describe('fitFigure', () => {
     const findings = fixtureFindings();
     const figure = fitFigure(findings);
     expectSound(figure);
-    const measured = traceOf(figure, 'PV, measured');
-    const simulated = traceOf(figure, 'PV, simulated');
+    const measured = traceOf<string>(figure, 'PV, measured');
+    const simulated = traceOf<string>(figure, 'PV, simulated');
     expect(measured.x).toEqual(simulated.x);
-    expect(measured.x.at(-1)! - measured.x[0]!).toBe(8 * period * 1000);
-    const first = (measured.x[0]! - Date.UTC(2031, 2, 5, 6)) / 1000;
+    const seconds = measured.x.map(
+      (time) => (Date.parse(`${time}Z`) - Date.parse('2031-03-05T06:00Z')) / 1000,
+    );
+    expect(seconds.at(-1)! - seconds[0]!).toBe(8 * period);
+    const first = seconds[0]!;
     expect(simulated.y[0]).toBeCloseTo(findings.stiction.fit!.simulatedPv[first]!, 2);
     expect(figure.caption).toContain("88 % of PV's movement");
     expect(figure.alt).toContain('S 3.20 %');
@@ -19,7 +22,7 @@ describe('fitFigure', () => {
 
   it('shows a record of a few cycles whole', () => {
     const figure = fitFigure(fixtureFindings({ samples: 500 }))!;
-    expect(traceOf(figure, 'OP').x).toHaveLength(500);
+    expect(traceOf<string>(figure, 'OP').x).toHaveLength(500);
     expect(figure.caption).toContain('The whole record');
   });
 

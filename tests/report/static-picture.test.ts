@@ -79,6 +79,20 @@ describe('staticPictures', () => {
     expect(backwards.reverse()).toEqual(again);
   });
 
+  it('shows the clock of the plant in every zone', async () => {
+    const zone = process.env.TZ;
+    process.env.TZ = 'Asia/Kolkata';
+    try {
+      // Half past five in the morning there when it is midnight in Greenwich: the zone is in force.
+      expect(new Date(0).getMinutes()).toBe(30);
+      expect(await staticPictures([figures[0]!])).toEqual([pictures[0]]);
+    } finally {
+      if (zone === undefined) delete process.env.TZ;
+      else process.env.TZ = zone;
+    }
+    expect(pictures[0]).toContain('>06:00</tspan>');
+  });
+
   it('leaves the figures as they were', async () => {
     const before = JSON.stringify(figures[0]);
     await staticPictures([figures[0]!]);
