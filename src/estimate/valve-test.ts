@@ -23,6 +23,8 @@ import type { ValveTest } from './stiction-fit';
 
 const blocks = 16;
 const harmonics = 5;
+/** Second lags, samples, with which the straight line may explain PV, so that the valve does not win as mere lag. */
+const secondLags: readonly number[] = [0, 1.5, 4, 10, 25];
 /** Share of the power around the cycle that one steady sine must hold for OP to carry a coherent line. Own choice. */
 export const coherentShare = 0.9;
 
@@ -51,7 +53,12 @@ export function testValve(
     found,
     settings,
   );
-  const straight = bestExplanation(pv, [u], found, settings);
+  const straight = bestExplanation(
+    pv,
+    secondLags.map((lag) => lagged(u, lag)),
+    found,
+    settings,
+  );
   const deadBands = [0.7, 0.85, 0.93, 1, 1.07].map((share) => element(share * found.S, 0, 'slides-on'));
   const deadBand = bestExplanation(pv, deadBands, found, settings);
   const sticking = better(followed, jumping);
