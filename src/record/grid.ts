@@ -2,7 +2,7 @@
 import { mean, median } from '../signal/statistics';
 
 /** A step this many times the usual one is a gap. */
-export const gapSteps = 1.5;
+const gapSteps = 1.5;
 /**
  * Missing samples that are filled with the last value; a longer gap splits the record. Own choice: half a cycle at the
  * 20 samples a cycle that are asked for; one spoilt half cycle among twenty hardly moves S, and the filled share is

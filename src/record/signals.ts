@@ -40,8 +40,8 @@ const emptyByDesign = 0.3;
  */
 export function readSignals(chosen: ChosenColumns, options: TimeOptions, what: string): Signals {
   const notes: Note[] = [];
-  const seen = new Map<Cells, Stamps>();
-  const stampsOf = ({ stamps }: Series): Stamps => {
+  const seen = new Map<Cells, ReadStamps>();
+  const stampsOf = ({ stamps }: Series): ReadStamps => {
     let known = seen.get(stamps);
     if (known === undefined) {
       const cells = stamps.cells();
@@ -141,7 +141,7 @@ export function readSignals(chosen: ChosenColumns, options: TimeOptions, what: s
   return { pv, op, sp, travel, mode, duplicates, unplaced: stamps.some(({ unplaced }) => unplaced), notes };
 }
 
-function readMode(series: Series, stamps: Stamps, notes: Note[]): Signal | null {
+function readMode(series: Series, stamps: ReadStamps, notes: Note[]): Signal | null {
   const modes = readModes(series.cells());
   notes.push({
     code: modes.automatic === null ? 'mode-not-understood' : 'mode',
@@ -151,7 +151,7 @@ function readMode(series: Series, stamps: Stamps, notes: Note[]): Signal | null 
   return { ms: stamps.ms, values: stamps.pick(modes.automatic) };
 }
 
-interface Stamps {
+interface ReadStamps {
   readonly ms: Float64Array;
   /** Values of the rows that were kept. */
   readonly pick: (values: Float64Array) => Float64Array;
@@ -168,7 +168,7 @@ function forward(
   cells: readonly unknown[],
   stamps: Cells,
   unplaced: boolean,
-): Omit<Stamps, 'unplaced'> {
+): Omit<ReadStamps, 'unplaced'> {
   const kept: number[] = [0];
   for (let i = 1; i < ms.length; i++) {
     const last = kept[kept.length - 1]!;
