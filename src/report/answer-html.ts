@@ -19,7 +19,10 @@ export function answerHtml(card: AnswerCard): string {
     figuresTable(card),
     `<div class="sb-columns">${reasons.join('')}</div>`,
     part('The test that decides', card.decidingTest ? stepBody(card.decidingTest) : ''),
-    part('Work request, to copy', card.workRequest ? `<pre>${escapeHtml(card.workRequest)}</pre>` : ''),
+    part(
+      'Work request, to copy',
+      card.workRequest ? `<blockquote>${escapeHtml(card.workRequest)}</blockquote>` : '',
+    ),
     part('The record', `<p>${escapeHtml(card.record)}</p>`),
     part('Cautions', listHtml(card.cautions), 'sb-cautions'),
     '<table class="sb-signatures"><tbody><tr><th>Prepared by</th><td></td><th>Reviewed by</th><td></td></tr></tbody></table>',

@@ -1,53 +1,56 @@
 /** The look of answer card, figures and tables, in notebooks and pages alike, as one style sheet. */
 import { palette } from '../figures/palette';
 
-/** Rules for what carries a class starting with `sb-`; nothing else on the page is touched. */
+/**
+ * Rules for what carries a class starting with `sb-`; nothing else on the page is touched. Sizes are in em, because
+ * older notebooks set a rem of 10 pixels.
+ */
 export const componentStyle: string = `
 .sb-card { --edge: ${palette.faint}; border: 1px solid #d9d5cb; border-left: 6px solid var(--edge); border-radius: 4px;
-  padding: 1.1rem 1.4rem; margin: 0 0 1.5rem; background: ${palette.paper}; color: ${palette.ink}; }
+  padding: 1.1em 1.4em; margin: 0 0 1.5em; background: ${palette.paper}; color: ${palette.ink}; }
 .sb-repair { --edge: ${palette.op}; } .sb-retune { --edge: ${palette.travel}; } .sb-look-outside { --edge: ${palette.pv}; }
 .sb-get-better-data { --edge: ${palette.stampEdge}; }
-.sb-card h2 { font-size: 1.45rem; line-height: 1.25; margin: .35rem 0 .4rem; }
-.sb-card h3 { font-size: .95rem; margin: 0 0 .3rem; color: ${palette.ink}; }
-.sb-card p, .sb-card ul { margin: 0 0 .5rem; } .sb-card ul { padding-left: 1.15rem; } .sb-card li { margin-bottom: .25rem; }
-.sb-kicker { font-size: .95rem; color: ${palette.faint}; }
-.sb-chip { display: inline-block; padding: .05rem .6rem; margin-right: .4rem; border: 1px solid var(--edge);
+.sb-card h2 { font-size: 1.45em; line-height: 1.25; margin: .35em 0 .4em; }
+.sb-card h3 { font-size: .95em; margin: 0 0 .3em; color: ${palette.ink}; }
+.sb-card p, .sb-card ul { margin: 0 0 .5em; } .sb-card ul { padding-left: 1.15em; } .sb-card li { margin-bottom: .25em; }
+.sb-kicker { font-size: .95em; color: ${palette.faint}; }
+.sb-chip { display: inline-block; padding: .05em .6em; margin-right: .4em; border: 1px solid var(--edge);
   border-radius: 3px; color: var(--edge); font-weight: 600; }
-.sb-cause { font-size: 1.08rem; }
-.sb-part { margin-top: .9rem; }
-.sb-columns { display: grid; grid-template-columns: repeat(auto-fit, minmax(min(20rem, 100%), 1fr)); gap: 0 2rem; }
-.sb-card table.sb-tiles { display: block; width: 100%; margin: .9rem 0 0; border: 0; }
+.sb-cause { font-size: 1.08em; }
+.sb-part { margin-top: .9em; }
+.sb-columns { display: grid; grid-template-columns: repeat(auto-fit, minmax(min(20em, 100%), 1fr)); gap: 0 2em; }
+.sb-card table.sb-tiles { display: block; width: 100%; margin: .9em 0 0; border: 0; }
 .sb-tiles tbody { display: flex; flex-wrap: wrap; gap: 1px; }
-.sb-card .sb-tiles tr { display: block; flex: 1 1 13rem; background: #f7f5f0; padding: .5rem .7rem; }
+.sb-card .sb-tiles tr { display: block; flex: 1 1 13em; background: #f7f5f0; padding: .5em .7em; }
 .sb-card .sb-tiles th, .sb-card .sb-tiles td { display: block; padding: 0; border: 0; text-align: left; background: none; }
-.sb-card .sb-tiles th { font-size: .82rem; font-weight: 400; color: ${palette.faint}; }
-.sb-card .sb-tiles .sb-value { font-size: 1.12rem; font-weight: 600; color: ${palette.ink}; }
-.sb-card .sb-tiles .sb-note { font-size: .82rem; color: ${palette.faint}; }
-.sb-card pre { white-space: pre-wrap; overflow-wrap: anywhere; font: inherit; margin: 0; padding: .6rem .8rem; background: #f7f5f0;
+.sb-card .sb-tiles th { font-size: .82em; font-weight: 400; color: ${palette.faint}; }
+.sb-card .sb-tiles .sb-value { font-size: 1.12em; font-weight: 600; color: ${palette.ink}; }
+.sb-card .sb-tiles .sb-note { font-size: .82em; color: ${palette.faint}; }
+.sb-card blockquote { font-size: inherit; overflow-wrap: anywhere; margin: 0; padding: .6em .8em; background: #f7f5f0;
   border: 1px dashed #b9b3a5; color: ${palette.ink}; }
-.sb-caution, .sb-cautions { background: ${palette.stampGround}; border-left: 3px solid ${palette.stampEdge}; padding: .5rem .8rem; }
-.sb-card .sb-caution, .sb-steps .sb-caution { margin: 0; } .sb-steps li { margin-bottom: 1rem; max-width: 46rem; } .sb-steps p { margin: 0 0 .4rem; } .sb-cautions ul:last-child { margin: 0; }
-.sb-card table.sb-signatures, .sb-signatures tbody { display: block; width: 100%; border: 0; font-size: .85rem; color: ${palette.faint}; }
-.sb-signatures tr { display: flex; flex-wrap: wrap; gap: .2rem .6rem; margin-top: 1.2rem; background: none; }
-.sb-card .sb-signatures th { font-weight: 400; padding: 0; border: 0; }
-.sb-card .sb-signatures td { flex: 1 1 11rem; border: 0; border-bottom: 1px solid ${palette.faint}; height: 1.4rem; }
-.sb-row { display: grid; grid-template-columns: repeat(auto-fit, minmax(min(24rem, 100%), 1fr)); gap: 0 1rem; }
-.sb-figure { margin: 0 0 1.2rem; min-width: 0; color: ${palette.ink}; background: ${palette.paper}; border: 1px solid ${palette.grid}; }
-.sb-figure figcaption { font-size: .92rem; color: ${palette.faint}; max-width: 48rem; padding: .2rem .8rem .7rem; }
+.sb-caution, .sb-cautions { background: ${palette.stampGround}; border-left: 3px solid ${palette.stampEdge}; padding: .5em .8em; }
+.sb-card .sb-caution, .sb-steps .sb-caution { margin: 0; } .sb-steps li { margin-bottom: 1em; max-width: 46em; } .sb-steps p { margin: 0 0 .4em; } .sb-cautions ul:last-child { margin: 0; }
+.sb-card table.sb-signatures, .sb-signatures tbody { display: block; width: 100%; border: 0; color: ${palette.faint}; }
+.sb-signatures tr { display: flex; flex-wrap: wrap; gap: .2em .6em; margin-top: 1.2em; background: none; }
+.sb-card .sb-signatures th { font-size: .85em; font-weight: 400; padding: 0; border: 0; }
+.sb-card .sb-signatures td { flex: 1 1 11em; border: 0; border-bottom: 1px solid ${palette.faint}; height: 1.4em; }
+.sb-row { display: grid; grid-template-columns: repeat(auto-fit, minmax(min(24em, 100%), 1fr)); gap: 0 1em; }
+.sb-figure { margin: 0 0 1.2em; min-width: 0; color: ${palette.ink}; background: ${palette.paper}; border: 1px solid ${palette.grid}; }
+.sb-figure figcaption { font-size: .92em; color: ${palette.faint}; max-width: 48em; padding: .2em .8em .7em; }
 .sb-plot { display: none; width: 100%; } .sb-drawn .sb-plot { display: block; }
 .sb-picture { max-width: 100%; height: auto; } .sb-shown .sb-picture { display: none; }
-.sb-table { overflow-x: auto; margin: 0 0 1.2rem; }
-.sb-table table { border-collapse: collapse; font-size: .9rem; color: ${palette.ink}; }
-.sb-table table caption { text-align: left; padding-bottom: .3rem; white-space: nowrap; }
-.sb-table table th, .sb-table table td { text-align: left; vertical-align: top; padding: .25rem .9rem .25rem 0; border: 0;
-  border-bottom: 1px solid ${palette.grid}; background: none; max-width: 32rem; }
+.sb-table { overflow-x: auto; margin: 0 0 1.2em; }
+.sb-table table { border-collapse: collapse; font-size: .9em; color: ${palette.ink}; }
+.sb-table table caption { text-align: left; padding-bottom: .3em; white-space: nowrap; }
+.sb-table table th, .sb-table table td { text-align: left; vertical-align: top; padding: .25em .9em .25em 0; border: 0;
+  border-bottom: 1px solid ${palette.grid}; background: none; max-width: 32em; }
 .sb-table thead th { border-bottom: 1px solid ${palette.faint}; font-weight: 600; }
 .sb-table table td { overflow-wrap: break-word; }
 .sb-table table .sb-number { text-align: right; font-variant-numeric: tabular-nums; }
-.sb-folded { margin: 0 0 1rem; } .sb-folded summary { cursor: pointer; margin-bottom: .4rem; }
+.sb-folded { margin: 0 0 1em; } .sb-folded summary { cursor: pointer; margin-bottom: .4em; }
 @media screen and (max-width: 600px) {
   .sb-wide table, .sb-wide tbody, .sb-wide tr, .sb-wide td { display: block; } .sb-wide thead { display: none; }
-  .sb-wide tr { border-bottom: 1px solid ${palette.faint}; padding: .4rem 0; }
+  .sb-wide tr { border-bottom: 1px solid ${palette.faint}; padding: .4em 0; }
   .sb-table.sb-wide table td { border: 0; padding: 0; text-align: left; } .sb-wide td:first-child { font-weight: 600; }
   .sb-wide td + td::before { content: attr(data-column) ": "; color: ${palette.faint}; } .sb-wide td:empty { display: none; }
 }
