@@ -32,17 +32,10 @@ const proportionalRatio = 1;
 export function nameCause(input: CauseInput): Cause {
   const { fitness, opCycle, pvCycle, stiction } = input;
   if (!fitness.allows.cycle) return cannotTell(failures(input, 'cycle'), []);
-  if (!opCycle.present && !pvCycle.present) {
-    return {
-      verdict: 'not-oscillating',
-      confidence: 0.9,
-      reasons: [`OP: ${opCycle.why}`, `PV: ${pvCycle.why}`],
-      ruledOut: [],
-      also: [],
-    };
-  }
   if (!fitness.allows.cause) return cannotTell(failures(input, 'cause'), []);
   const { test } = stiction;
+  const cycles = opCycle.present || pvCycle.present;
+  if (!cycles && !(test && valveStands(test))) return notOscillating(input);
   if (!test) {
     return cannotTell(
       ['OP and PV do not share a cycle to which a valve could be fitted.', ...stiction.refused],
@@ -50,6 +43,25 @@ export function nameCause(input: CauseInput): Cause {
     );
   }
   return weigh(input, test);
+}
+
+function notOscillating({ opCycle, pvCycle }: CauseInput): Cause {
+  return {
+    verdict: 'not-oscillating',
+    confidence: 0.9,
+    reasons: [`OP: ${opCycle.why}`, `PV: ${pvCycle.why}`],
+    ruledOut: [],
+    also: [],
+  };
+}
+
+/** t of valve against straight line: the lower one when OP carries a steady line that was also taken out. */
+function decisiveT(test: ValveTest): number {
+  return Math.min(test.tOverLine, test.tWithoutLine ?? test.tOverLine);
+}
+
+function valveStands(test: ValveTest): boolean {
+  return decisiveT(test) > clearT && test.blocksForValve / test.blocks >= clearWins;
 }
 
 function failures(input: CauseInput, what: 'cycle' | 'cause'): string[] {
@@ -63,17 +75,16 @@ function cannotTell(reasons: readonly string[], ruledOut: readonly string[]): Ca
 }
 
 function weigh(input: CauseInput, test: ValveTest): Cause {
-  const { record, opCycle, controller, stiction } = input;
+  const { record, opCycle, pvCycle, controller, stiction } = input;
   const share = test.blocksForValve / test.blocks;
   const coherent = test.tWithoutLine !== null;
-  const decisiveT = coherent ? Math.min(test.tOverLine, test.tWithoutLine as number) : test.tOverLine;
-  const forValve = decisiveT > clearT && share >= clearWins;
+  const t = decisiveT(test);
   const valveSentence = `A sticking valve predicts PV better than a straight line from OP to travel in ${test.blocksForValve} of ${test.blocks} blocks (t = ${test.tOverLine.toFixed(1)}).`;
   const lineSentence =
     'With the steady line in OP taken out, ' +
     `the comparison of valve and straight line gives t = ${(test.tWithoutLine ?? 0).toFixed(1)}.`;
 
-  if (forValve) {
+  if (valveStands(test)) {
     const drawn = stiction.drawn;
     const ratio = drawn ? drawn.jumpDrawn / drawn.S.value : 0;
     const jumpBeats = test.tOverDeadBand > 2 && ratio > lostMotionRatio;
@@ -81,6 +92,11 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
     const verdict: Verdict = integrating && !jumpBeats ? 'lost-motion' : 'stiction';
     const reasons = [valveSentence];
     if (coherent) reasons.push(lineSentence);
+    if (!opCycle.present && !pvCycle.present) {
+      reasons.push(
+        'The loop hunts without a fixed period, as a sticking valve makes it do when the load keeps changing.',
+      );
+    }
     if (drawn) {
       reasons.push(
         `The fitted valve explains ${percent(drawn.explains)} of the travel, and valve and process together ${percent(drawn.explainsPv)} of the movement of PV.`,
@@ -93,7 +109,7 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
     );
     return {
       verdict,
-      confidence: valveConfidence(decisiveT, share),
+      confidence: valveConfidence(t, share),
       reasons,
       ruledOut: [
         'tight tuning alone: the loop between OP and PV is not linear',
@@ -103,7 +119,7 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
     };
   }
 
-  const noValve = decisiveT < 1.5 || share < 0.6;
+  const noValve = t < 1.5 || share < 0.6;
   if (!noValve) {
     return cannotTell(
       [

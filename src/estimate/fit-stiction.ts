@@ -6,6 +6,7 @@
  */
 import { refuseUnknownOptions, WrongUse } from '../errors';
 import { findCycle } from '../oscillation/find-cycle';
+import { findRhythm } from '../oscillation/rhythm';
 import { checkRecord } from '../record/check-record';
 import type { Fitness } from '../record/fitness';
 import type { LoopRecord, Note, Response } from '../record/loop-record';
@@ -28,7 +29,7 @@ export interface FitOptions {
   readonly processGain?: number | null;
   /** Fitness of the record when already checked. Default: {@link checkRecord}. */
   readonly fitness?: Fitness;
-  /** Period of the cycle in OP, s, when already found. Default: {@link findCycle} on OP. */
+  /** Period of the cycle in OP, s, when already found. Default: that of {@link findCycle}, else of {@link findRhythm}, on OP. */
   readonly period?: number | null;
 }
 
@@ -57,7 +58,10 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
     throw new WrongUse(`A stated process gain is PV units per % of OP and not 0; received ${processGain}.`);
   }
   const fitness = options.fitness ?? checkRecord(record);
-  const period = options.period ?? findCycle(record.op, record.samplePeriod).period;
+  const period =
+    options.period ??
+    findCycle(record.op, record.samplePeriod).period ??
+    findRhythm(record.op, record.samplePeriod).period;
   const refused = fitness.checks
     .filter((check) => !check.passed && check.forbids.includes('numbers'))
     .map((check) => check.text);
@@ -65,7 +69,7 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
   if (period === null) {
     return {
       ...nothing,
-      refused: [...refused, 'OP does not cycle, so there are no reversals to read S and J from.'],
+      refused: [...refused, 'OP does not turn, so there are no reversals to read S and J from.'],
     };
   }
   if (!(swingOf(record.op) > 0) || !fitness.allows.cycle) return nothing;
