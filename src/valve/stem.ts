@@ -258,6 +258,9 @@ export function createStem(options: StemOptions = {}): SteppableValve {
       return plug;
     },
     advance(op: number, dt: number): number {
+      if (!(Number.isFinite(op) && dt > 0 && Number.isFinite(dt))) {
+        throw new WrongUse(`A stem takes a finite OP and a time above 0 s. Received ${op} and ${dt}.`);
+      }
       let left = dt;
       while (left > 1e-12 * dt) {
         if (speed === 0) {

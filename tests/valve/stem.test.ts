@@ -123,6 +123,8 @@ describe('stem', () => {
     expect(() => createStem({ mass: 0 })).toThrow(/mass must be above 0/);
     expect(() => createStem({ backlash: -1 })).toThrow(/backlash must be 0 or more/);
     expect(() => createStem({ springs: 1 } as object)).toThrow(/no option "springs"/);
+    expect(() => createStem().advance(Number.NaN, 1)).toThrow(/finite OP/);
+    expect(() => createStem().advance(50, 0)).toThrow(/time above 0 s/);
     expect(() => textbookFriction(1, 2)).toThrow(/0 <= J <= S/);
     expect(() => runValve(createStem(), new Float64Array(1), 0)).toThrow(/sample period must be above 0/);
   });
