@@ -38,8 +38,10 @@ const beamWidth = 16;
 const breakSpread = 0.05;
 /** Standard deviation of the landing point in shares of S. */
 const landSpread = 0.05;
-/** Price of any slip, so that many small slips do not pass for one. */
-const slipPrice = 3;
+/** Price of any departure from the element, on top of its size, so that many small ones do not pass for a slip. */
+const libertyPrice = 2;
+/** Price of a change between sliding on and sticking again. */
+const changePrice = 1.5;
 /** Landing points tried, in standard deviations short of or beyond the exact one. */
 const landings: readonly number[] = [0, -1.2, 1.2];
 /** A hypothesis this much dearer than the best is dropped. */
@@ -51,6 +53,8 @@ class Hypotheses {
   count = 0;
   readonly travel: Float64Array;
   readonly sliding: Uint8Array;
+  /** Whether the last slip slid on. */
+  readonly slides: Uint8Array;
   readonly direction: Int8Array;
   /** Sliding: the extreme of OP since the slip. Stuck: the furthest OP has been beyond the break-away point. */
   readonly extreme: Float64Array;
@@ -68,6 +72,7 @@ class Hypotheses {
   constructor(readonly room: number) {
     this.travel = new Float64Array(room);
     this.sliding = new Uint8Array(room);
+    this.slides = new Uint8Array(room);
     this.direction = new Int8Array(room);
     this.extreme = new Float64Array(room);
     this.lagged = new Float64Array(room);
@@ -84,6 +89,7 @@ class Hypotheses {
   copyFrom(other: Hypotheses, from: number, to: number): void {
     this.travel[to] = other.travel[from];
     this.sliding[to] = other.sliding[from];
+    this.slides[to] = other.slides[from];
     this.direction[to] = other.direction[from];
     this.extreme[to] = other.extreme[from];
     this.lagged[to] = other.lagged[from];
@@ -258,6 +264,7 @@ class Tracker {
     from: number,
     travel: number,
     sliding: 0 | 1,
+    slides: number,
     direction: number,
     extreme: number,
     price: number,
@@ -273,6 +280,7 @@ class Tracker {
     if (next.cost[to] < this.best) this.best = next.cost[to];
     next.travel[to] = travel;
     next.sliding[to] = sliding;
+    next.slides[to] = slides;
     next.direction[to] = direction;
     next.extreme[to] = extreme;
     next.penalty[to] = live.penalty[from] + price;
@@ -290,32 +298,48 @@ class Tracker {
     for (let i = 0; i < live.count; i++) {
       const travel = live.travel[i];
       const extreme = live.extreme[i];
+      const slides = live.slides[i];
       if (live.sliding[i] === 1) {
         const direction = live.direction[i];
         const ahead = direction * (u - extreme);
         if (ahead >= -tolerance * this.settings.S) {
-          this.branch(i, u - direction * behind, 1, direction, ahead > 0 ? u : extreme, 0, 0, 0);
+          this.branch(i, u - direction * behind, 1, 1, direction, ahead > 0 ? u : extreme, 0, 0, 0);
         } else {
           const rest = extreme - direction * behind;
-          this.branch(i, rest, 0, direction, 0, 0, 1, rest);
+          this.branch(i, rest, 0, 1, direction, 0, 0, 1, rest);
         }
         continue;
       }
       const pull = u - travel;
       const beyond = Math.abs(pull) - breakAt;
+      const firstBeyond = beyond > 0 && extreme === 0;
       const late = beyond > extreme ? (beyond * beyond - extreme * extreme) / twoVariances : 0;
       if (beyond < 3 * breakSd) {
         const furthest = beyond > extreme ? beyond : beyond < -2 * breakSd ? 0 : extreme;
-        this.branch(i, travel, 0, live.direction[i], furthest, late, 0, 0);
+        this.branch(
+          i,
+          travel,
+          0,
+          slides,
+          live.direction[i],
+          furthest,
+          firstBeyond ? late + libertyPrice : late,
+          0,
+          0,
+        );
       }
       if (beyond > -3 * breakSd) {
         const direction = pull > 0 ? 1 : -1;
-        const price = slipPrice + (beyond > 0 ? late : (beyond * beyond) / twoVariances);
-        this.branch(i, u - direction * behind, 1, direction, u, price, 1, -direction * behind);
+        const early = beyond > 0 ? 0 : libertyPrice + (beyond * beyond) / twoVariances;
+        const exact = u - direction * behind;
+        const onPrice = early + (slides === 1 ? 0 : changePrice);
+        this.branch(i, exact, 1, 1, direction, u, onPrice, 1, -direction * behind);
+        const restPrice = early + (slides === 0 ? 0 : changePrice);
         for (const sds of landings) {
-          const rest = u - direction * (behind + sds * landSd);
+          const rest = exact - direction * sds * landSd;
           if (direction * (rest - travel) <= 0) continue;
-          this.branch(i, rest, 0, direction, 0, price + (sds * sds) / 2, 1, rest);
+          const price = restPrice + (sds === 0 ? 0 : libertyPrice + (sds * sds) / 2);
+          this.branch(i, rest, 0, 0, direction, 0, price, 1, rest);
         }
       }
     }
