@@ -63,8 +63,8 @@ export async function assess(words: readonly string[], output: Output): Promise<
   if (jsonFile) prepareFolder(dirname(jsonFile));
   let jupyter: Jupyter | null = null;
   if (wantsNotebook) {
-    prepareFolder(folder);
     jupyter = ensureJupyter({ install: values.install, say: (line) => output.stderr.write(`${line}\n`) });
+    prepareFolder(folder);
   }
 
   const progress = startProgress(output.stderr);

@@ -106,6 +106,6 @@ export function provenanceTable(findings: Findings): Table {
 
 /** Everything that was assumed, seen or left out while reading. */
 export function noteTable(findings: Findings): Table {
-  const rows = findings.assessment.record.notes.map(({ code, text }) => ({ code, note: text }));
-  return tableFrom('Notes on the record', ['code', 'note'], rows);
+  const rows = findings.assessment.record.notes.map(({ code, text }) => ({ note: text, code }));
+  return tableFrom('Notes on the record', ['note', 'code'], rows);
 }

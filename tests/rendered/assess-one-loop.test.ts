@@ -227,6 +227,17 @@ describe('the notebook as it is kept', () => {
     expect(allOutputs(executed)).toContain(withInterval(sticky.assessment.stiction!.S));
   });
 
+  it('shares its kernel with the code of the README, which works as printed', async () => {
+    const source = /```ts\n([^`]*)```/.exec(readFileSync('README.md', 'utf8'))![1]!;
+    const cell: NotebookCell = { cell_type: 'code', id: 'readme', source, metadata: {}, outputs: [] };
+    const executed = await runNotebook(
+      { ...kept, cells: [{ ...cell, execution_count: null }] },
+      { jupyter: findJupyter()!, workingFolder: 'notebooks' },
+    );
+    expect(figuresIn(allOutputs(executed))).toEqual(['trend']);
+    expect(allOutputs(executed)).toContain('31-FC-104');
+  });
+
   it.each([
     [
       'does not compile',
