@@ -36,8 +36,10 @@ export function misfitMap(
     lags: [lag * 0.8, lag, lag * 1.25],
     delays,
   });
-  const trials = (['slides-on', 'sticks-again'] as const).map((model) => new PairTrial(objective, u, model));
+  const trials = (['slides-on', 'sticks-again'] as const).map(
+    (model) => new PairTrial(objective, u, model, 1),
+  );
   const misfit = (s: number, j: number): number =>
-    Math.max(0, Math.min(...trials.map((trial) => trial.of(s, j, onlyLag).misfit)));
+    Math.max(0, Math.min(...trials.map((trial) => trial.of(s, j, onlyLag).misfit[0])));
   return { S, J, misfit: J.map((j) => S.map((s) => (j > s ? null : misfit(s, j)))) };
 }

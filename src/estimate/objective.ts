@@ -57,11 +57,21 @@ interface LagTables {
   readonly responseAhead: Float64Array[];
 }
 
-export interface PiecesMisfit {
-  misfit: number;
-  lagIndex: number;
-  delayIndex: number;
-  gain: number;
+/** Best misfit of one travel in each band of dead times, with the lag and dead time (by index) and gain that give it. */
+export interface BandMisfits {
+  readonly misfit: Float64Array;
+  readonly lagIndex: Int32Array;
+  readonly delayIndex: Int32Array;
+  readonly gain: Float64Array;
+}
+
+export function createBandMisfits(bands: number): BandMisfits {
+  return {
+    misfit: new Float64Array(bands),
+    lagIndex: new Int32Array(bands),
+    delayIndex: new Int32Array(bands),
+    gain: new Float64Array(bands),
+  };
 }
 
 /** H once (self-regulating) or twice (integrating) on `values`; the first sample of each pass is 0. */
@@ -182,21 +192,25 @@ export function createScratch(delays: number): Scratch {
 }
 
 /**
- * Best misfit of a travel given as pieces over the lags `useLags` (indices) and all delays. `op` is the OP that
- * the objective was made with. The answer is written into `best` and only when it betters `best.misfit`.
+ * Best misfit of a travel given as pieces, over the lags `useLags` (indices) and all dead times, for each band of
+ * dead times: `bandOf[d]` is the band of dead time d. `op` is the OP that the objective was made with. The answers
+ * are written into `best`; 1 where nothing is explained.
  */
 export function misfitOfPieces(
   objective: Objective,
   pieces: TravelPieces,
   op: Float64Array,
   useLags: readonly number[],
+  bandOf: readonly number[],
   scratch: Scratch,
-  best: PiecesMisfit,
+  best: BandMisfits,
 ): void {
   const { samples, power, options } = objective;
   const { delays, gainLow, gainHigh } = options;
   const columns = delays.length;
   const { dot } = scratch;
+  best.misfit.fill(1);
+  best.gain.fill(0);
   for (const lagIndex of useLags) {
     const tables = objective.perLag[lagIndex];
     dot.fill(0);
@@ -206,11 +220,12 @@ export function misfitOfPieces(
       if (dot[d] <= 0) continue;
       const gain = Math.min(Math.max(dot[d] / energy, gainLow), gainHigh);
       const misfit = 1 - (gain * (2 * dot[d] - gain * energy)) / power;
-      if (misfit < best.misfit) {
-        best.misfit = misfit;
-        best.lagIndex = lagIndex;
-        best.delayIndex = d;
-        best.gain = gain;
+      const band = bandOf[d];
+      if (misfit < best.misfit[band]) {
+        best.misfit[band] = misfit;
+        best.lagIndex[band] = lagIndex;
+        best.delayIndex[band] = d;
+        best.gain[band] = gain;
       }
     }
   }

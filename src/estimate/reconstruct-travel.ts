@@ -22,7 +22,7 @@ import {
   swingOf,
   type Target,
 } from './process-fit';
-import { firstTheta, type GridPoint, processGrid, searchGrid } from './search';
+import { delayBands, firstTheta, type GridPoint, processGrid, searchGrid } from './search';
 import { trackTravel } from './track-travel';
 
 /** One history of the travel with the element and process that go with it. */
@@ -46,9 +46,13 @@ const noiseFloor = 2;
 const actuatorLags: readonly number[] = [0, 0.7, 1.4];
 /** Bands of J/S from each of which one start is taken. */
 const jumpBands: readonly number[] = [0, 0.08, 0.2, 0.35, 0.5, 0.7, 1.01];
-const rounds: readonly number[] = [6, 3, 2, 1];
+/** Starts followed with a narrow beam first, and how many of them then with the full one, round after round. */
+const narrowBeam = 6;
+const rounds: readonly number[] = [6, 3, 2];
+/** Steps of the last search: changes of S, of J against the gain, and of dead time against S. */
+const polishRounds = 2;
 
-/** Null when OP does not move. `pv` in any unit, `op` in %, one length. */
+/** Histories, cheapest first; null when OP does not move. `pv` in any unit, `op` in %, one length. */
 export function reconstructTravel(
   pv: Float64Array,
   op: Float64Array,
@@ -66,36 +70,68 @@ export function reconstructTravel(
   if (points[0].misfit >= 1) return null;
   const target = createTarget(pv, theta, settings);
   const actuatorLag = bestActuatorLag(op, points[0], target, settings);
-  const u = lagged(op, actuatorLag);
-  let live = startsFrom(points, u, target, settings, largest).map((start) => ({
-    ...start,
-    actuatorLag,
-    theta,
-    price: Number.POSITIVE_INFINITY,
-    penalty: 0,
-    innovations: start.misfit * target.power,
-    travel: u,
-  }));
-  let now = target;
+  const scene: Scene = { op, u: lagged(op, actuatorLag), actuatorLag, target, largest, settings };
+  let live = startsFrom(points, scene)
+    .map((start) => follow(scene, start, narrowBeam))
+    .sort(byPrice);
   for (const keep of rounds) {
     live = live
       .slice(0, keep)
-      .map((start) => follow(op, u, now, start, largest, settings))
+      .map((start) => cheaper(start, follow(scene, start)))
       .concat(live.slice(keep))
-      .sort((a, b) => a.price - b.price);
+      .sort(byPrice);
   }
-  const [best] = live;
+  let [best] = live;
   const better = bestTheta(residualOf(pv, best.travel, best, settings), settings.integrating);
   if (better !== theta) {
-    now = createTarget(pv, better, settings);
+    scene.target = createTarget(pv, better, settings);
     live = live
       .slice(0, 3)
-      .map((start) =>
-        follow(op, u, now, { ...start, theta: better, innovations: best.innovations }, largest, settings),
-      )
-      .sort((a, b) => a.price - b.price);
+      .map((start) => follow(scene, start))
+      .sort(byPrice);
+    [best] = live;
   }
-  return live;
+  best = polish(scene, best);
+  return [best, ...live.slice(1)];
+}
+
+/** What stays the same while histories are compared. */
+interface Scene {
+  readonly op: Float64Array;
+  /** OP after the actuator. */
+  readonly u: Float64Array;
+  readonly actuatorLag: number;
+  target: Target;
+  readonly largest: number;
+  readonly settings: ProcessSettings;
+}
+
+function byPrice(a: Reconstruction, b: Reconstruction): number {
+  return a.price - b.price;
+}
+
+function cheaper(one: Reconstruction, other: Reconstruction): Reconstruction {
+  return other.price < one.price ? other : one;
+}
+
+/** Tries small changes of the best history's element and process, along the directions in which they trade off. */
+function polish(scene: Scene, start: Reconstruction): Reconstruction {
+  let best = start;
+  let step = 1;
+  for (let round = 0; round < polishRounds; round++) {
+    const { S, J, gain, delay } = best;
+    for (const change of [
+      { J: Math.min(S, J * (1 + 0.3 * step)), gain: gain / (1 + 0.2 * step) },
+      { J: J / (1 + 0.3 * step), gain: gain * (1 + 0.2 * step) },
+      { S: S * (1 + 0.04 * step), delay: Math.max(1, delay - 0.5 * step) },
+      { S: S * (1 - 0.04 * step), delay: delay + 0.5 * step },
+      { J: Math.min(S, J + 0.15 * step * S) },
+    ]) {
+      best = cheaper(best, follow(scene, { ...best, ...change }));
+    }
+    step /= 2;
+  }
+  return best;
 }
 
 /** The travel of a part of the record, followed from the reconstruction of the whole. */
@@ -105,9 +141,10 @@ export function followPart(
   whole: Reconstruction,
   settings: ProcessSettings,
 ): Reconstruction {
-  const target = createTarget(pv, whole.theta, settings);
-  const start = { ...whole, innovations: whole.misfit * target.power };
-  return follow(op, lagged(op, whole.actuatorLag), target, start, swingOf(op), settings);
+  const { actuatorLag, theta } = whole;
+  const target = createTarget(pv, theta, settings);
+  const u = lagged(op, actuatorLag);
+  return follow({ op, u, actuatorLag, target, largest: swingOf(op), settings }, whole);
 }
 
 function bestActuatorLag(
@@ -131,42 +168,38 @@ function bestActuatorLag(
 
 type Start = ProcessFit & { readonly S: number; readonly J: number };
 
-/** The best tried point of every band of J/S, its process refined; bands without one borrow S from the best. */
-function startsFrom(
-  points: readonly GridPoint[],
-  u: Float64Array,
-  target: Target,
-  settings: ProcessSettings,
-  largest: number,
-): Start[] {
-  const [best] = points;
+/** The best tried point of every band of dead times and of J/S; bands of J/S without one borrow S from the best. */
+function startsFrom(points: readonly GridPoint[], { u, target, settings, largest }: Scene): Start[] {
   const starts: Start[] = [];
-  for (let band = 0; band + 1 < jumpBands.length; band++) {
-    const low = jumpBands[band];
-    const high = jumpBands[band + 1];
-    const point =
-      points.find(({ S, J }) => J / S >= low && J / S < high && Math.abs(S - best.S) < 0.3 * best.S) ??
-      ({ ...best, J: (best.S * (low + Math.min(high, 1))) / 2 } as GridPoint);
-    const S = Math.min(point.S, largest);
-    const travel = twoParameterValve(u, { S, J: Math.min(point.J, S), model: point.model });
-    const process = fitGain(travel, target, point.lag, point.delay, settings);
-    starts.push({ ...(process.gain > 0 ? process : best), S, J: Math.min(point.J, S) });
+  for (let delayBand = 0; delayBand < delayBands; delayBand++) {
+    const here = points.filter(({ band, misfit }) => band === delayBand && misfit < 1);
+    if (here.length === 0) continue;
+    const [best] = here;
+    for (let band = 0; band + 1 < jumpBands.length; band++) {
+      const low = jumpBands[band];
+      const high = jumpBands[band + 1];
+      const point = here.find(
+        ({ S, J }) => J / S >= low && J / S < high && Math.abs(S - best.S) < 0.3 * best.S,
+      ) ?? { ...best, J: (best.S * (low + Math.min(high, 1))) / 2 };
+      const S = Math.min(point.S, largest);
+      const J = Math.min(point.J, S);
+      const travel = twoParameterValve(u, { S, J, model: point.model });
+      const process = fitGain(travel, target, point.lag, point.delay, settings);
+      starts.push({ ...(process.gain > 0 ? process : best), S, J });
+    }
   }
-  return starts.sort((a, b) => a.misfit - b.misfit);
+  return starts;
 }
 
 /** Follows the travel once from `start`, then fits process and element to it. */
 function follow(
-  op: Float64Array,
-  u: Float64Array,
-  target: Target,
-  start: Start & { readonly actuatorLag: number; readonly theta: number; readonly innovations: number },
-  largest: number,
-  settings: ProcessSettings,
+  { op, u, actuatorLag, target, largest, settings }: Scene,
+  start: Start,
+  width?: number,
 ): Reconstruction {
   const { S, J, gain, lag, delay } = start;
   const samples = op.length;
-  const { travel, penalty } = trackTravel(target.values, u, {
+  const track = {
     S,
     J,
     gain,
@@ -174,8 +207,9 @@ function follow(
     delay,
     theta: target.theta,
     secondTheta: settings.integrating ? secondTheta(target.theta) : null,
-    variance: start.innovations / samples,
-  });
+    variance: (Math.min(start.misfit, 1) * target.power) / samples,
+  };
+  const { travel, penalty } = trackTravel(target.values, u, track, width);
   const process = fitProcess(travel, target, { lag, delay }, settings);
   const kept = process.gain > 0 ? process : { lag, delay, gain, misfit: 1 };
   const element = describeTravel(op, travel, { near: { S, J }, largest: largest * 1.05 });
@@ -184,7 +218,7 @@ function follow(
     ...kept,
     S: element.S,
     J: element.J,
-    actuatorLag: start.actuatorLag,
+    actuatorLag,
     theta: target.theta,
     price: (samples / 2) * Math.log(innovations / samples) + penalty,
     penalty,

@@ -11,11 +11,12 @@ import {
   walkTwoParameter,
 } from '../valve/two-parameter';
 import {
+  type BandMisfits,
+  createBandMisfits,
   createObjective,
   createScratch,
   misfitOfPieces,
   type Objective,
-  type PiecesMisfit,
   type Scratch,
 } from './objective';
 import type { ProcessSettings } from './process-fit';
@@ -28,12 +29,16 @@ const landingBlend = 0.5;
 export const gridSteps = 50;
 const coarseStepS = 2;
 const coarseStepJ = 7;
-const climbersKept = 12;
+/** Bands of dead times: a long one with a small S fits nearly as well as a short one with a large S. */
+export const delayBands = 3;
+const climbersKept = 5;
 const lagSteps = 13;
 const delaySteps = 18;
 
 export interface GridPoint {
   readonly model: ValveModel;
+  /** Band of dead times, 0 the shortest. */
+  readonly band: number;
   readonly S: number;
   readonly J: number;
   readonly misfit: number;
@@ -60,20 +65,25 @@ export function processGrid(settings: ProcessSettings): { lags: number[]; delays
 export class PairTrial {
   private readonly pieces: TravelPieces;
   private readonly scratch: Scratch;
+  private readonly bandOf: readonly number[];
+  private readonly best: BandMisfits;
 
   constructor(
     readonly objective: Objective,
     private readonly op: Float64Array,
     readonly model: ValveModel,
+    readonly bands: number,
   ) {
+    const delays = objective.options.delays.length;
     this.pieces = createTravelPieces(op.length);
-    this.scratch = createScratch(objective.options.delays.length);
+    this.scratch = createScratch(delays);
+    this.bandOf = objective.options.delays.map((_, d) => Math.floor((d * bands) / delays));
+    this.best = createBandMisfits(bands);
   }
 
-  /** Best misfit of the pair over the lags given by index and all dead times. */
-  of(S: number, J: number, lags: readonly number[]): PiecesMisfit {
-    const { op, pieces } = this;
-    const best = { misfit: 1, lagIndex: 0, delayIndex: 0, gain: 0 };
+  /** Best misfits of the pair over the lags given by index; overwritten by the next call. */
+  of(S: number, J: number, lags: readonly number[]): BandMisfits {
+    const { objective, op, pieces, bandOf, scratch, best } = this;
     walkTwoParameter(
       op,
       S,
@@ -84,7 +94,7 @@ export class PairTrial {
       op[0],
       pieces,
     );
-    misfitOfPieces(this.objective, pieces, op, lags, this.scratch, best);
+    misfitOfPieces(objective, pieces, op, lags, bandOf, scratch, best);
     return best;
   }
 }
@@ -92,7 +102,8 @@ export class PairTrial {
 interface CoarsePoint {
   readonly s: number;
   readonly j: number;
-  readonly misfit: number;
+  /** One a band. */
+  readonly misfit: readonly number[];
 }
 
 function gridPair(s: number, j: number, largest: number): { S: number; J: number } {
@@ -100,7 +111,7 @@ function gridPair(s: number, j: number, largest: number): { S: number; J: number
   return { S, J: (S * j) / (gridSteps - 1) };
 }
 
-/** The thinned grid with a few of the lags, best first. */
+/** The thinned grid with a few of the lags. */
 function searchCoarse(trial: PairTrial, smallest: number, largest: number): CoarsePoint[] {
   const lagCount = trial.objective.perLag.length;
   const fewLags = trial.objective.perLag.map((_, i) => i).filter((i) => i % 4 === 1 || lagCount < 5);
@@ -109,10 +120,10 @@ function searchCoarse(trial: PairTrial, smallest: number, largest: number): Coar
     for (let j = 0; j < gridSteps; j += coarseStepJ) {
       const { S, J } = gridPair(s, j, largest);
       if (S < smallest) continue;
-      coarse.push({ s, j, misfit: trial.of(S, J, fewLags).misfit });
+      coarse.push({ s, j, misfit: [...trial.of(S, J, fewLags).misfit] });
     }
   }
-  return coarse.sort((a, b) => a.misfit - b.misfit);
+  return coarse;
 }
 
 const neighbours: readonly (readonly [number, number])[] = [
@@ -129,8 +140,8 @@ const neighbours: readonly (readonly [number, number])[] = [
 ];
 
 /**
- * Searches the grid for one variant and gives every point of the full grid that was tried, best first. `smallest` and
- * `largest` bound S, %.
+ * Searches the grid for one variant and gives every point of the full grid that was tried, once for each band of dead
+ * times, best first. `smallest` and `largest` bound S, %.
  */
 export function searchGrid(
   objective: Objective,
@@ -139,41 +150,56 @@ export function searchGrid(
   smallest: number,
   largest: number,
 ): GridPoint[] {
-  const trial = new PairTrial(objective, op, model);
-  const everyLag = objective.perLag.map((_, i) => i);
   const { lags, delays } = objective.options;
-  const tried = new Map<number, GridPoint>();
-  const misfit = (s: number, j: number): number => {
-    if (s < 0 || j < 0 || s >= gridSteps || j >= gridSteps) return Number.POSITIVE_INFINITY;
-    if (gridPair(s, j, largest).S < smallest) return Number.POSITIVE_INFINITY;
+  const trial = new PairTrial(objective, op, model, Math.min(delayBands, delays.length));
+  const everyLag = objective.perLag.map((_, i) => i);
+  const tried = new Map<number, GridPoint[]>();
+  const pointsAt = (s: number, j: number): GridPoint[] | null => {
+    if (s < 0 || j < 0 || s >= gridSteps || j >= gridSteps) return null;
+    const pair = gridPair(s, j, largest);
+    if (pair.S < smallest) return null;
     const key = s * gridSteps + j;
-    let point = tried.get(key);
-    if (!point) {
-      const pair = gridPair(s, j, largest);
-      const { lagIndex, delayIndex, ...found } = trial.of(pair.S, pair.J, everyLag);
-      point = { model, ...pair, ...found, lag: lags[lagIndex], delay: delays[delayIndex] };
-      tried.set(key, point);
+    let points = tried.get(key);
+    if (!points) {
+      const { misfit, lagIndex, delayIndex, gain } = trial.of(pair.S, pair.J, everyLag);
+      points = Array.from(misfit, (value, band) => ({
+        model,
+        band,
+        ...pair,
+        misfit: value,
+        lag: lags[lagIndex[band]],
+        delay: delays[delayIndex[band]],
+        gain: gain[band],
+      }));
+      tried.set(key, points);
     }
-    return point.misfit;
+    return points;
   };
-  for (const start of searchCoarse(trial, smallest, largest).slice(0, climbersKept)) {
-    let { s, j } = start;
-    let here = misfit(s, j);
-    for (let better = true; better; ) {
-      better = false;
-      const [fromS, fromJ] = [s, j];
-      for (const [byS, byJ] of neighbours) {
-        const there = misfit(fromS + byS, fromJ + byJ);
-        if (there < here - 1e-12) {
-          here = there;
-          s = fromS + byS;
-          j = fromJ + byJ;
-          better = true;
-        }
+  const coarse = searchCoarse(trial, smallest, largest);
+  for (let band = 0; band < trial.bands; band++) {
+    coarse.sort((a, b) => a.misfit[band] - b.misfit[band]);
+    for (const { s, j } of coarse.slice(0, climbersKept))
+      climb(s, j, (a, b) => pointsAt(a, b)?.[band].misfit);
+  }
+  return [...tried.values()].flat().sort((a, b) => a.misfit - b.misfit);
+}
+
+/** Walks from grid point to better neighbour until there is none. */
+function climb(s: number, j: number, misfit: (s: number, j: number) => number | undefined): void {
+  let here = misfit(s, j) ?? Number.POSITIVE_INFINITY;
+  for (let better = true; better; ) {
+    better = false;
+    const [fromS, fromJ] = [s, j];
+    for (const [byS, byJ] of neighbours) {
+      const there = misfit(fromS + byS, fromJ + byJ);
+      if (there !== undefined && there < here - 1e-12) {
+        here = there;
+        s = fromS + byS;
+        j = fromJ + byJ;
+        better = true;
       }
     }
   }
-  return [...tried.values()].sort((a, b) => a.misfit - b.misfit);
 }
 
 /** The disturbance coefficient under which a thinned search leaves the smallest prediction errors. */
@@ -190,8 +216,8 @@ export function firstTheta(
   let least = Number.POSITIVE_INFINITY;
   for (const theta of [0.4, 0.75, 0.92, 0.98]) {
     const objective = createObjective(pv, op, { ...settings, ...few, theta });
-    const [first] = searchCoarse(new PairTrial(objective, op, 'slides-on'), smallest, largest);
-    const innovations = first.misfit * objective.power;
+    const coarse = searchCoarse(new PairTrial(objective, op, 'slides-on', 1), smallest, largest);
+    const innovations = Math.min(...coarse.map(({ misfit }) => misfit[0])) * objective.power;
     if (innovations < least) {
       least = innovations;
       best = theta;

@@ -32,8 +32,8 @@ export interface Track {
   readonly penalty: number;
 }
 
-/** Hypotheses kept alive. */
-const beamWidth = 16;
+/** Hypotheses kept alive when not stated. */
+const usualWidth = 16;
 /** Standard deviation of the moment of a slip, as OP beyond the break-away point in shares of S. */
 const breakSpread = 0.05;
 /** Standard deviation of the landing point in shares of S. */
@@ -133,15 +133,20 @@ class History {
 
 /**
  * The cheapest travel behind `target`: PV after the disturbance filter, with the sign of the process gain taken out,
- * as the objective has it. `op` is OP after the actuator, %, same length.
+ * as the objective has it. `op` is OP after the actuator, %, same length. `width`: hypotheses kept alive, at least 5.
  */
-export function trackTravel(target: Float64Array, op: Float64Array, settings: TrackSettings): Track {
-  return new Tracker(target, op, settings).run();
+export function trackTravel(
+  target: Float64Array,
+  op: Float64Array,
+  settings: TrackSettings,
+  width: number = usualWidth,
+): Track {
+  return new Tracker(target, op, settings, width).run();
 }
 
 class Tracker {
-  private live = new Hypotheses(beamWidth);
-  private next = new Hypotheses(beamWidth * 6);
+  private readonly live: Hypotheses;
+  private readonly next: Hypotheses;
   private readonly history = new History();
   private readonly breakAt: number;
   private readonly behind: number;
@@ -160,7 +165,10 @@ class Tracker {
     private readonly target: Float64Array,
     private readonly op: Float64Array,
     private readonly settings: TrackSettings,
+    private readonly width: number,
   ) {
+    this.live = new Hypotheses(width);
+    this.next = new Hypotheses(width * 6);
     const { S, J, lag, delay, variance, gain } = settings;
     this.breakAt = (S + J) / 2;
     this.behind = (S - J) / 2;
@@ -371,7 +379,7 @@ class Tracker {
         live.history[to] = this.history.add(k, next.sliding[i], next.offset[i], next.history[i]);
       }
       live.count++;
-      if (live.count === beamWidth) break;
+      if (live.count === this.width) break;
     }
   }
 }
