@@ -138,7 +138,9 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
     process: {
       response: settings.integrating ? 'integrating' : 'self-regulating',
       gain: (settings.sign * reconstruction.gain) / (settings.integrating ? record.samplePeriod : 1),
-      lag: settings.integrating ? null : reconstruction.lag * record.samplePeriod,
+      lag: settings.integrating
+        ? null
+        : (reconstruction.lag + reconstruction.secondLag) * record.samplePeriod,
       deadTime: reconstruction.delay * record.samplePeriod,
     },
   };

@@ -93,7 +93,7 @@ export function secondTheta(theta: number): number {
 
 /** Poles of travel move -> filtered PV, kept apart by at least 1e-3. */
 function polesFor(lag: number, theta: number, integrating: boolean): number[] {
-  const lagPole = lag <= 0 ? 0 : Math.exp(-1 / lag);
+  const lagPole = poleOf(lag);
   const others = integrating ? [theta, secondTheta(theta)] : [theta];
   let pole = lagPole;
   while (others.some((other) => Math.abs(other - pole) < 1e-3)) pole += 2.1e-3;
@@ -298,10 +298,15 @@ function walkPieces(
   return energy;
 }
 
-/** A process in the plain form: lag in samples (any, >= 0), dead time in samples (any, >= 1; between whole ones shared). */
+/** A process in the plain form, in samples: two lags in a row (each >= 0), dead time (any, >= 1; between whole ones shared). */
 export interface PlainProcess {
   readonly lag: number;
+  readonly secondLag: number;
   readonly delay: number;
+}
+
+export function poleOf(lag: number): number {
+  return lag <= 0 ? 0 : Math.exp(-1 / lag);
 }
 
 /** Travel through the process and the disturbance filter, gain 1 (per sample when integrating). */
@@ -311,24 +316,27 @@ export function filterTravel(
   theta: number,
   integrating: boolean,
 ): Float64Array {
-  const poles = polesFor(process.lag, theta, integrating);
   const samples = travel.length;
   const whole = Math.floor(process.delay);
   const part = process.delay - whole;
   const out = new Float64Array(samples);
-  const gain = 1 - poles[0];
-  const [a, b, c = 0] = poles;
+  const first = poleOf(process.lag);
+  const second = poleOf(process.secondLag);
+  const again = integrating ? secondTheta(theta) : 0;
+  let before = 0;
+  let w = 0;
   let x = 0;
   let y = 0;
   let z = 0;
-  for (let k = whole; k < samples; k++) {
+  for (let k = whole + 1; k < samples; k++) {
     const m = k - whole;
-    const now = m > 0 ? travel[m] - travel[m - 1] : 0;
-    const before = m > 1 ? travel[m - 1] - travel[m - 2] : 0;
-    x = a * x + gain * ((1 - part) * now + part * before);
-    y = b * y + x;
-    z = c * z + y;
+    const now = travel[m] - travel[m - 1];
+    w = second * w + (1 - second) * ((1 - part) * now + part * before);
+    x = first * x + (1 - first) * w;
+    y = theta * y + x;
+    z = again * z + y;
     out[k] = z;
+    before = now;
   }
   return out;
 }
@@ -342,17 +350,21 @@ export function simulateProcess(
   const samples = travel.length;
   const whole = Math.floor(process.delay);
   const part = process.delay - whole;
-  const pole = process.lag <= 0 ? 0 : Math.exp(-1 / process.lag);
+  const first = poleOf(process.lag);
+  const second = poleOf(process.secondLag);
   const out = new Float64Array(samples);
-  let lagged = 0;
+  let before = 0;
+  let w = 0;
+  let x = 0;
   let sum = 0;
   for (let k = 0; k < samples; k++) {
     const m = k - whole;
     const now = m > 0 ? travel[m] - travel[0] : 0;
-    const before = m > 1 ? travel[m - 1] - travel[0] : 0;
-    lagged = pole * lagged + (1 - pole) * ((1 - part) * now + part * before);
-    sum += lagged;
-    out[k] = integrating ? sum : lagged;
+    w = second * w + (1 - second) * ((1 - part) * now + part * before);
+    x = first * x + (1 - first) * w;
+    sum += x;
+    out[k] = integrating ? sum : x;
+    before = now;
   }
   return out;
 }

@@ -2,7 +2,7 @@
  * The linear process between a given travel and PV: lag, dead time, gain and disturbance coefficient, fitted in the
  * plain sample-by-sample form. `search.ts` does the same for thousands of travels at once on a grid.
  */
-import { filterTravel, simulateProcess, whiten } from './objective';
+import { filterTravel, type PlainProcess, poleOf, simulateProcess, whiten } from './objective';
 
 export interface ProcessSettings {
   readonly integrating: boolean;
@@ -26,6 +26,7 @@ export interface Target {
 export interface ProcessFit {
   /** Samples. */
   readonly lag: number;
+  readonly secondLag: number;
   readonly delay: number;
   /** Size of the gain, PV units per % (per % and sample when integrating). */
   readonly gain: number;
@@ -48,7 +49,7 @@ export function createTarget(pv: Float64Array, theta: number, settings: ProcessS
 /** First-order lag of `lag` samples on `op`, starting at rest; the array itself for lag 0. */
 export function lagged(op: Float64Array, lag: number): Float64Array {
   if (lag <= 0) return op;
-  const pole = Math.exp(-1 / lag);
+  const pole = poleOf(lag);
   const out = new Float64Array(op.length);
   let state = op[0];
   for (let k = 0; k < op.length; k++) {
@@ -58,53 +59,65 @@ export function lagged(op: Float64Array, lag: number): Float64Array {
   return out;
 }
 
-/** Fit of `travel` (%) to the target with a given lag and dead time, in samples. */
+/** Fit of the gain of `travel` (%) to the target, lags and dead time given, in samples. */
 export function fitGain(
   travel: Float64Array,
   target: Target,
-  lag: number,
-  delay: number,
+  process: PlainProcess,
   settings: ProcessSettings,
 ): ProcessFit {
-  const x = filterTravel(travel, { lag, delay }, target.theta, settings.integrating);
+  const { lag, secondLag, delay } = process;
+  const x = filterTravel(travel, process, target.theta, settings.integrating);
   let dot = 0;
   let energy = 0;
   for (let k = 0; k < x.length; k++) {
     dot += x[k] * target.values[k];
     energy += x[k] * x[k];
   }
-  if (!(energy > 1e-12) || dot <= 0) return { lag, delay, misfit: 1, gain: 0 };
+  if (!(energy > 1e-12) || dot <= 0) return { lag, secondLag, delay, misfit: 1, gain: 0 };
   const gain = Math.min(Math.max(dot / energy, settings.gainLow), settings.gainHigh);
-  return { lag, delay, misfit: 1 - (gain * (2 * dot - gain * energy)) / target.power, gain };
+  return { lag, secondLag, delay, misfit: 1 - (gain * (2 * dot - gain * energy)) / target.power, gain };
 }
 
-/** Refines lag and dead time for a fixed travel by a shrinking pattern, from `start`. */
+/** Steps in lag, second lag and dead time, in units of their step sizes; the last ones keep the sum of the three. */
+const directions: readonly (readonly [number, number, number])[] = [
+  [1, 0, 0],
+  [-1, 0, 0],
+  [0, 1, 0],
+  [0, -1, 0],
+  [0, 0, 1],
+  [0, 0, -1],
+  [1, 0, -1],
+  [-1, 0, 1],
+  [0, 1, -1],
+  [0, -1, 1],
+];
+
+/** Refines lags and dead time for a fixed travel by a shrinking pattern, from `start`. */
 export function fitProcess(
   travel: Float64Array,
   target: Target,
-  start: { readonly lag: number; readonly delay: number },
+  start: PlainProcess,
   settings: ProcessSettings,
 ): ProcessFit {
   const longestDelay = Math.max(2, settings.period / 6);
-  let best = fitGain(travel, target, start.lag, start.delay, settings);
+  const free = settings.deadTime === null;
+  let best = fitGain(travel, target, start, settings);
   let lagStep = Math.max(0.3, 0.25 * start.lag);
-  let delayStep = settings.deadTime === null ? 0.5 : 0;
+  let delayStep = 0.5;
   for (let round = 0; round < 4; round++) {
     for (let moved = true, turns = 0; moved && turns < 6; turns++) {
       moved = false;
-      for (const [byLag, byDelay] of [
-        [lagStep, 0],
-        [-lagStep, 0],
-        [0, delayStep],
-        [0, -delayStep],
-        [lagStep, -delayStep],
-        [-lagStep, delayStep],
-      ]) {
-        const lag = Math.max(0, best.lag + byLag);
-        const delay =
-          delayStep === 0 ? best.delay : Math.min(Math.max(1, best.delay + byDelay), longestDelay);
-        if (lag === best.lag && delay === best.delay) continue;
-        const there = fitGain(travel, target, lag, delay, settings);
+      for (const [byLag, bySecond, byDelay] of directions) {
+        if (byDelay !== 0 && !free) continue;
+        const next = {
+          lag: Math.max(0, best.lag + byLag * lagStep),
+          secondLag: Math.max(0, best.secondLag + bySecond * delayStep),
+          delay: Math.min(Math.max(1, best.delay + byDelay * delayStep), longestDelay),
+        };
+        if (next.secondLag > next.lag) continue;
+        if (next.lag === best.lag && next.secondLag === best.secondLag && next.delay === best.delay) continue;
+        const there = fitGain(travel, target, next, settings);
         if (there.misfit < best.misfit - 1e-9) {
           best = there;
           moved = true;
@@ -121,7 +134,7 @@ export function fitProcess(
 export function residualOf(
   pv: Float64Array,
   travel: Float64Array,
-  found: { readonly lag: number; readonly delay: number; readonly gain: number },
+  found: PlainProcess & { readonly gain: number },
   settings: ProcessSettings,
 ): Float64Array {
   const part = simulateProcess(travel, found, settings.integrating);

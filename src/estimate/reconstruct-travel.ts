@@ -157,7 +157,7 @@ function bestActuatorLag(
   let least = Number.POSITIVE_INFINITY;
   for (const lag of actuatorLags) {
     const travel = twoParameterValve(lagged(op, lag), { S: point.S, J: point.J, model: point.model });
-    const { misfit } = fitProcess(travel, target, point, settings);
+    const { misfit } = fitProcess(travel, target, { ...point, secondLag: 0 }, settings);
     if (misfit < least) {
       least = misfit;
       best = lag;
@@ -184,8 +184,8 @@ function startsFrom(points: readonly GridPoint[], { u, target, settings, largest
       const S = Math.min(point.S, largest);
       const J = Math.min(point.J, S);
       const travel = twoParameterValve(u, { S, J, model: point.model });
-      const process = fitGain(travel, target, point.lag, point.delay, settings);
-      starts.push({ ...(process.gain > 0 ? process : best), S, J });
+      const process = fitGain(travel, target, { ...point, secondLag: 0 }, settings);
+      starts.push({ ...(process.gain > 0 ? process : { ...best, secondLag: 0 }), S, J });
     }
   }
   return starts;
@@ -197,21 +197,22 @@ function follow(
   start: Start,
   width?: number,
 ): Reconstruction {
-  const { S, J, gain, lag, delay } = start;
+  const { S, J, gain, lag, secondLag, delay } = start;
   const samples = op.length;
   const track = {
     S,
     J,
     gain,
     lag,
+    secondLag,
     delay,
     theta: target.theta,
     secondTheta: settings.integrating ? secondTheta(target.theta) : null,
     variance: (Math.min(start.misfit, 1) * target.power) / samples,
   };
   const { travel, penalty } = trackTravel(target.values, u, track, width);
-  const process = fitProcess(travel, target, { lag, delay }, settings);
-  const kept = process.gain > 0 ? process : { lag, delay, gain, misfit: 1 };
+  const process = fitProcess(travel, target, { lag, secondLag, delay }, settings);
+  const kept = process.gain > 0 ? process : { lag, secondLag, delay, gain, misfit: 1 };
   const element = describeTravel(op, travel, { near: { S, J }, largest: largest * 1.05 });
   const innovations = kept.misfit * target.power;
   return {

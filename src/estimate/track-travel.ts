@@ -9,14 +9,16 @@
  *
  * Limits: one slip a sample; hypotheses that differ only in a past that no longer matters are merged.
  */
+import { poleOf } from './objective';
 
 export interface TrackSettings {
   readonly S: number;
   readonly J: number;
   /** Size of the process gain, PV units per % (per % and sample when integrating). */
   readonly gain: number;
-  /** Process lag and dead time, samples. */
+  /** Process lags and dead time, samples. */
   readonly lag: number;
+  readonly secondLag: number;
   readonly delay: number;
   /** Coefficients of the disturbance filter; the second is null for a self-regulating process. */
   readonly theta: number;
@@ -58,6 +60,7 @@ class Hypotheses {
   readonly direction: Int8Array;
   /** Sliding: the extreme of OP since the slip. Stuck: the furthest OP has been beyond the break-away point. */
   readonly extreme: Float64Array;
+  readonly early: Float64Array;
   readonly lagged: Float64Array;
   readonly once: Float64Array;
   readonly twice: Float64Array;
@@ -75,6 +78,7 @@ class Hypotheses {
     this.slides = new Uint8Array(room);
     this.direction = new Int8Array(room);
     this.extreme = new Float64Array(room);
+    this.early = new Float64Array(room);
     this.lagged = new Float64Array(room);
     this.once = new Float64Array(room);
     this.twice = new Float64Array(room);
@@ -92,6 +96,7 @@ class Hypotheses {
     this.slides[to] = other.slides[from];
     this.direction[to] = other.direction[from];
     this.extreme[to] = other.extreme[from];
+    this.early[to] = other.early[from];
     this.lagged[to] = other.lagged[from];
     this.once[to] = other.once[from];
     this.twice[to] = other.twice[from];
@@ -153,6 +158,7 @@ class Tracker {
   private readonly breakSd: number;
   private readonly landSd: number;
   private readonly pole: number;
+  private readonly secondPole: number;
   private readonly wholeDelay: number;
   private readonly partDelay: number;
   private readonly halfPrecision: number;
@@ -169,12 +175,13 @@ class Tracker {
   ) {
     this.live = new Hypotheses(width);
     this.next = new Hypotheses(width * 6);
-    const { S, J, lag, delay, variance, gain } = settings;
+    const { S, J, lag, secondLag, delay, variance, gain } = settings;
     this.breakAt = (S + J) / 2;
     this.behind = (S - J) / 2;
     this.breakSd = breakSpread * S;
     this.landSd = landSpread * S;
-    this.pole = lag <= 0 ? 0 : Math.exp(-1 / lag);
+    this.pole = poleOf(lag);
+    this.secondPole = poleOf(secondLag);
     this.wholeDelay = Math.floor(delay);
     this.partDelay = delay - this.wholeDelay;
     this.halfPrecision = 1 / (2 * variance);
@@ -236,15 +243,17 @@ class Tracker {
 
   /** Moves filters and cost of hypothesis `from` on by one sample with travel move `move`, into `to` of `into`. */
   private advance(source: Hypotheses, from: number, to: number, into: Hypotheses, move: number): void {
-    const { settings, pole, partDelay } = this;
+    const { settings, pole, secondPole, partDelay } = this;
     const input = (1 - partDelay) * move + partDelay * source.lastMove[from];
-    const lagged = pole * source.lagged[from] + (1 - pole) * input;
+    const early = secondPole * source.early[from] + (1 - secondPole) * input;
+    const lagged = pole * source.lagged[from] + (1 - pole) * early;
     const once = settings.theta * source.once[from] + lagged;
     let out = once;
     if (settings.secondTheta !== null) {
       out = settings.secondTheta * source.twice[from] + once;
       into.twice[to] = out;
     }
+    into.early[to] = early;
     into.lagged[to] = lagged;
     into.once[to] = once;
     into.lastMove[to] = move;
@@ -370,7 +379,8 @@ class Tracker {
           live.direction[l] === next.direction[i] &&
           Math.abs(live.travel[l] - next.travel[i]) < sameTravel &&
           Math.abs(live.once[l] - next.once[i]) < mergeError &&
-          Math.abs(live.lagged[l] - next.lagged[i]) < mergeError;
+          Math.abs(live.lagged[l] - next.lagged[i]) < mergeError &&
+          Math.abs(live.early[l] - next.early[i]) < mergeError;
       }
       if (standsFor) continue;
       const to = live.count;

@@ -7,7 +7,7 @@
  * harmonics taken out of prediction errors and regressors alike.
  */
 import { twoParameterValve, type ValveModel } from '../valve/two-parameter';
-import { filterTravel, whiten } from './objective';
+import { filterTravel, type PlainProcess, whiten } from './objective';
 import {
   bestTheta,
   createTarget,
@@ -84,7 +84,7 @@ export function testValve(
 function explanation(
   pv: Float64Array,
   travel: Float64Array,
-  found: { lag: number; delay: number; theta: number },
+  found: PlainProcess & { readonly theta: number },
   settings: ProcessSettings,
 ): Explanation {
   return {
@@ -108,10 +108,15 @@ function bestExplanation(
     let theta = found.theta;
     for (let pass = 0; pass < 2; pass++) {
       const target = createTarget(pv, theta, settings);
-      let start = fitGain(travel, target, found.lag, found.delay, settings);
+      let start = fitGain(travel, target, found, settings);
       for (let i = 0; i < grid.lags.length; i += 3) {
         for (let d = 0; d < grid.delays.length; d += 3) {
-          const there = fitGain(travel, target, grid.lags[i], grid.delays[d], settings);
+          const there = fitGain(
+            travel,
+            target,
+            { lag: grid.lags[i], secondLag: 0, delay: grid.delays[d] },
+            settings,
+          );
           if (there.misfit < start.misfit) start = there;
         }
       }
