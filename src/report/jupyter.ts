@@ -123,7 +123,11 @@ function pythonsOfJupyterOnPath(): string[] {
 
 /** Absolute path of the interpreter when it has what running a notebook takes, else ''. */
 function probe(python: string): string {
-  const code = 'import jupyter_client, nbclient, nbformat, sys; print(sys.executable)';
+  // Looked for, not imported: that would take a second.
+  const code = [
+    'import sys; from importlib.util import find_spec',
+    "sys.exit(1) if None in map(find_spec, ('jupyter_client', 'nbclient', 'nbformat')) else print(sys.executable)",
+  ].join('\n');
   const run = spawnSync(python, ['-c', code], { encoding: 'utf8', timeout: 60_000 });
   return run.status === 0 ? run.stdout.trim() : '';
 }
