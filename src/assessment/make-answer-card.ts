@@ -37,7 +37,10 @@ export function answerCard(findings: Findings): AnswerCard {
     figures: figuresOf(findings),
     decidingTest: assessment.next.find((step) => /manual/.test(step.do)) ?? null,
     workRequest: workRequest(assessment),
-    record: recordSentence(findings, fitness.checks.filter((check) => !check.passed).length),
+    record: [
+      recordSentence(findings, fitness.checks.filter((check) => !check.passed).length),
+      ...(decision === 'get-better-data' ? [fitness.recordToAskFor] : []),
+    ].join(' '),
     cautions: assessment.cautions,
   };
 }

@@ -14,8 +14,8 @@ export const componentStyle: string = `
 .sb-card h3 { font-size: .95em; margin: 0 0 .3em; color: ${palette.ink}; }
 .sb-card p, .sb-card ul { margin: 0 0 .5em; } .sb-card ul { padding-left: 1.15em; } .sb-card li { margin-bottom: .25em; }
 .sb-kicker { font-size: .95em; color: ${palette.faint}; }
-.sb-chip { display: inline-block; padding: .05em .6em; margin-right: .4em; border: 1px solid var(--edge);
-  border-radius: 3px; color: var(--edge); font-weight: 600; }
+.sb-chip { display: inline-block; padding: .05em .6em; margin-right: .4em; border: 2px solid var(--edge);
+  border-radius: 3px; color: ${palette.ink}; font-weight: 600; }
 .sb-cause { font-size: 1.08em; }
 .sb-part { margin-top: .9em; }
 .sb-columns { display: grid; grid-template-columns: repeat(auto-fit, minmax(min(20em, 100%), 1fr)); gap: 0 2em; }

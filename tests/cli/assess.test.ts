@@ -158,6 +158,7 @@ describe('a record that answers nothing', () => {
   ])('%s: exit code 0, cannot-tell, and the record to ask for', async (_, make) => {
     const { code, stdout, stderr } = await captured('assess', make(), '--json', '-');
     expect(stderr).toMatch(/cannot tell/i);
+    expect(stderr.replace(/\s+/g, ' ')).toMatch(/20 samples in a cycle and at least 20 cycles/);
     expect(code).toBe(0);
     const assessment = JSON.parse(stdout) as Assessment;
     expect(assessment.cause).toMatchObject({ verdict: 'cannot-tell', confidence: null });
