@@ -54,6 +54,7 @@ export function assessLoop(record: LoopRecord, options: AssessOptions = {}): Fin
     processGain,
     fitness,
     period: opCycle.period ?? pvCycle.period,
+    controller,
   });
   onProgress('naming the cause', 0.95);
   const cause = nameCause({ record, fitness, opCycle, pvCycle, stiction, controller });

@@ -7,10 +7,11 @@
 import { refuseUnknownOptions, WrongUse } from '../errors';
 import { findCycle } from '../oscillation/find-cycle';
 import { findRhythm } from '../oscillation/rhythm';
+import { type ControllerReading, readController } from '../process/read-controller';
 import { checkRecord } from '../record/check-record';
 import type { Fitness } from '../record/fitness';
 import type { LoopRecord, Note, Response } from '../record/loop-record';
-import { noiseLevel } from '../signal/statistics';
+import { mean, noiseLevel } from '../signal/statistics';
 import { twoParameterValve } from '../valve/two-parameter';
 import { describeTravel } from './describe-travel';
 import { type Intervals, intervalsFromParts, type PartFit, recordParts } from './interval';
@@ -31,10 +32,14 @@ export interface FitOptions {
   readonly fitness?: Fitness;
   /** Period of the cycle in OP, s, when already found. Default: that of {@link findCycle}, else of {@link findRhythm}, on OP. */
   readonly period?: number | null;
+  /** Controller as read from the record. Default: {@link readController}. */
+  readonly controller?: ControllerReading | null;
 }
 
 /** How far a stated process gain may be off; an operator's figure is seldom nearer. Own choice. */
 const statedGainTolerance = 0.15;
+/** Share of OP's moves that a controller reading must explain to be used. Own choice. */
+const trustedController = 0.6;
 const fewestReversals = 10;
 const leastExplained = 0.5;
 /** Least t over blocks of valve against straight line for numbers to be given. Own choice. */
@@ -49,7 +54,14 @@ const clearT = 4;
  * @throws WrongUse for an unknown option, or a stated dead time or gain that is not above 0.
  */
 export function fitStiction(record: LoopRecord, options: FitOptions = {}): StictionResult {
-  refuseUnknownOptions('fitStiction', options, ['response', 'deadTime', 'processGain', 'fitness', 'period']);
+  refuseUnknownOptions('fitStiction', options, [
+    'response',
+    'deadTime',
+    'processGain',
+    'fitness',
+    'period',
+    'controller',
+  ]);
   const { deadTime = null, processGain = null } = options;
   if (deadTime !== null && !(deadTime >= 0)) {
     throw new WrongUse(`A stated dead time is in seconds and not below 0; received ${deadTime}.`);
@@ -62,6 +74,10 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
     options.period ??
     findCycle(record.op, record.samplePeriod).period ??
     findRhythm(record.op, record.samplePeriod).period;
+  const controller =
+    options.controller === undefined
+      ? readController(record.sp, record.pv, record.op, record.samplePeriod)
+      : options.controller;
   const refused = fitness.checks
     .filter((check) => !check.passed && check.forbids.includes('numbers'))
     .map((check) => check.text);
@@ -81,7 +97,7 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
   const notes: Note[] = [];
   let found: { reconstruction: Reconstruction; settings: ProcessSettings } | null = null;
   for (const response of responses) {
-    const settings = settingsFor(record, response === 'integrating', period, deadTime, processGain);
+    const settings = settingsFor(record, response === 'integrating', period, controller, options);
     const reconstruction = reconstructTravel(record.pv, record.op, settings)?.[0];
     if (!reconstruction) continue;
     if (!found || reconstruction.innovations < found.reconstruction.innovations) {
@@ -152,31 +168,36 @@ function settingsFor(
   record: LoopRecord,
   integrating: boolean,
   period: number,
-  deadTime: number | null,
-  processGain: number | null,
+  controller: ControllerReading | null,
+  { deadTime = null, processGain = null }: FitOptions,
 ): ProcessSettings {
-  const perSample = integrating ? record.samplePeriod : 1;
-  const stated = processGain === null ? null : Math.abs(processGain) * perSample;
+  const { samplePeriod } = record;
+  const stated = processGain === null ? null : Math.abs(processGain) * (integrating ? samplePeriod : 1);
+  const trusted = controller !== null && controller.explains >= trustedController;
   return {
     integrating,
-    sign: processGain === null ? gainSign(record) : processGain > 0 ? 1 : -1,
-    period: period / record.samplePeriod,
-    deadTime: deadTime === null ? null : deadTime / record.samplePeriod,
+    sign: signOfGain(record, processGain, trusted ? controller : null),
+    period: period / samplePeriod,
+    deadTime: deadTime === null ? null : deadTime / samplePeriod,
     gainLow: stated === null ? 0 : stated * (1 - statedGainTolerance),
     gainHigh: stated === null ? Number.POSITIVE_INFINITY : stated * (1 + statedGainTolerance),
+    controller: trusted ? controller : null,
+    samplePeriod,
   };
 }
 
-/** Feedback is negative, so the process gain has the sign of the controller's: OP rises on the error SP - PV or falls. */
-function gainSign(record: LoopRecord): 1 | -1 {
+/**
+ * Sign of the process gain: the stated one, else that of the controller, as feedback is negative; without a trusted
+ * controller reading, whether OP moves with the error SP - PV or against it.
+ */
+function signOfGain(record: LoopRecord, stated: number | null, controller: ControllerReading | null): 1 | -1 {
+  if (stated !== null) return stated > 0 ? 1 : -1;
+  if (controller !== null) return controller.gain > 0 ? 1 : -1;
   const { pv, sp, op } = record;
-  const error = Float64Array.from(pv, (value, k) => (sp ? sp[k] : 0) - value);
-  const mean = error.reduce((sum, value) => sum + value, 0) / error.length;
+  const error = pv.map((value, k) => (sp ? sp[k] : 0) - value);
+  const middle = mean(error as Float64Array);
   let agree = 0;
-  for (let k = 1; k < op.length; k++) {
-    const move = op[k] - op[k - 1];
-    agree += move * (error[k] - mean);
-  }
+  for (let k = 1; k < op.length; k++) agree += (op[k] - op[k - 1]) * (error[k] - middle);
   return agree >= 0 ? 1 : -1;
 }
 

@@ -2,6 +2,7 @@
  * The linear process between a given travel and PV: lag, dead time, gain and disturbance coefficient, fitted in the
  * plain sample-by-sample form. `search.ts` does the same for thousands of travels at once on a grid.
  */
+import type { LoopController } from './loop-stability';
 import { filterTravel, type PlainProcess, poleOf, simulateProcess, whiten } from './objective';
 
 export interface ProcessSettings {
@@ -14,6 +15,10 @@ export interface ProcessSettings {
   /** Bounds of the size of the process gain, PV units per % (per % and sample when integrating). */
   readonly gainLow: number;
   readonly gainHigh: number;
+  /** Controller as read from the record, to tell which process gains the loop could bear; null: not used. */
+  readonly controller: LoopController | null;
+  /** s */
+  readonly samplePeriod: number;
 }
 
 /** PV under a disturbance filter, the sign of the process gain taken out, and its power. */

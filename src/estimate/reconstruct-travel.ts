@@ -9,6 +9,7 @@
 import { noiseLevel } from '../signal/statistics';
 import { twoParameterValve } from '../valve/two-parameter';
 import { describeTravel } from './describe-travel';
+import { gainMargin } from './loop-stability';
 import { createObjective, secondTheta } from './objective';
 import {
   bestTheta,
@@ -51,6 +52,10 @@ const narrowBeam = 6;
 const rounds: readonly number[] = [6, 3, 2];
 /** Steps of the last search: changes of S, of J against the gain, and of dead time against S. */
 const polishRounds = 2;
+
+/** Gain margin below which a fitted gain costs something, and how much. Own choice, set on simulated loops. */
+const usualMargin = 2.5;
+const marginPrice = 0.4;
 
 /** Histories, cheapest first; null when OP does not move. `pv` in any unit, `op` in %, one length. */
 export function reconstructTravel(
@@ -191,6 +196,13 @@ function startsFrom(points: readonly GridPoint[], { u, target, settings, largest
   return starts;
 }
 
+/** Price, for each sample, of a process gain that leaves the linear loop too little margin. */
+function priceOfGain(fit: ProcessFit, { controller, integrating, samplePeriod }: ProcessSettings): number {
+  if (controller === null || fit.gain === 0) return 0;
+  const margin = gainMargin(controller, fit, fit.gain, integrating, samplePeriod);
+  return margin >= usualMargin ? 0 : marginPrice * Math.log(usualMargin / Math.max(margin, 1e-3)) ** 2;
+}
+
 /** Follows the travel once from `start`, then fits process and element to it. */
 function follow(
   { op, u, actuatorLag, target, largest, settings }: Scene,
@@ -215,13 +227,14 @@ function follow(
   const kept = process.gain > 0 ? process : { lag, secondLag, delay, gain, misfit: 1 };
   const element = describeTravel(op, travel, { near: { S, J }, largest: largest * 1.05 });
   const innovations = kept.misfit * target.power;
+  const unstable = samples * priceOfGain(kept, settings);
   return {
     ...kept,
     S: element.S,
     J: element.J,
     actuatorLag,
     theta: target.theta,
-    price: (samples / 2) * Math.log(innovations / samples) + penalty,
+    price: (samples / 2) * Math.log(innovations / samples) + penalty + unstable,
     penalty,
     innovations,
     travel,
