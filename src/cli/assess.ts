@@ -113,34 +113,31 @@ function oneFile(files: readonly string[]): string {
   return files[0]!;
 }
 
-/** Only what was stated; everything else is left to the defaults of readLoop. */
-function readingOptions(values: Given): ReadLoopOptions {
-  const { tag, zone } = values;
-  const service = values.service;
-  const columns = stated({
-    time: values.time,
-    sp: values.sp,
-    pv: values.pv,
-    op: values.op,
-    travel: values.travel,
-    mode: values.mode,
-  });
-  return stated({
-    tag,
-    zone,
-    service: service === undefined ? undefined : wordOption('service', service, services),
-    response: values.response === undefined ? undefined : wordOption('response', values.response, responses),
-    pvRange: values['pv-range'] === undefined ? undefined : rangeOption('pv-range', values['pv-range']),
-    valveRange:
-      values['valve-range'] === undefined ? undefined : rangeOption('valve-range', values['valve-range']),
-    pvUnit: values['pv-unit'],
-    timeFormat: values['time-format'],
-    ...columns,
-  });
-}
-
 const services = ['flow', 'pressure', 'level', 'temperature', 'other'] as const;
 const responses = ['self-regulating', 'integrating'] as const;
+
+/** Only what was stated; everything else is left to the defaults of readLoop. */
+function readingOptions(values: Given): ReadLoopOptions {
+  const { tag, service, response, time, sp, pv, op, travel, mode, zone } = values;
+  const pvRange = values['pv-range'];
+  const valveRange = values['valve-range'];
+  return stated({
+    tag,
+    service: service === undefined ? service : wordOption('service', service, services),
+    response: response === undefined ? response : wordOption('response', response, responses),
+    pvRange: pvRange === undefined ? pvRange : rangeOption('pv-range', pvRange),
+    pvUnit: values['pv-unit'],
+    valveRange: valveRange === undefined ? valveRange : rangeOption('valve-range', valveRange),
+    time,
+    sp,
+    pv,
+    op,
+    travel,
+    mode,
+    timeFormat: values['time-format'],
+    zone,
+  });
+}
 
 function assessingOptions(values: Given): AssessOptions {
   const number = (name: 'dead-time' | 'process-gain' | 'seed'): number | undefined =>

@@ -18,7 +18,7 @@ export function figureLibraryHtml(): string {
   ].join('\n');
 }
 
-/** Runs in the browser. Kept as text because it is not ours to run, and for browsers of some years ago. */
+/** Kept as text, because it runs in the browser and not here. Draws what is there and watches for what comes. */
 const drawFigures = `async function () {
   if (window.stickbandDraws) return;
   window.stickbandDraws = true;
@@ -33,9 +33,11 @@ const drawFigures = `async function () {
   script.textContent = await new Response(unpacked).text();
   document.head.append(script);
   const draw = async (figure) => {
+    const stored = figure.querySelector('.sb-figure-data');
+    if (!stored) return; // taken away from a notebook that is not trusted
     figure.classList.add('sb-drawn');
     const plot = figure.querySelector('.sb-plot');
-    const { data, layout } = JSON.parse(figure.querySelector('.sb-figure-data').textContent);
+    const { data, layout } = JSON.parse(stored.textContent);
     await window.Plotly.newPlot(plot, data, layout, { displaylogo: false });
     figure.classList.add('sb-shown');
     let width = plot.clientWidth;
