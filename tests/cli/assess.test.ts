@@ -1,16 +1,16 @@
-import { mkdtempSync, readdirSync, readFileSync, writeFileSync } from 'node:fs';
-import { tmpdir } from 'node:os';
+import { readdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import Ajv from 'ajv';
 import { beforeAll, describe, expect, it } from 'vitest';
 import type { Assessment } from '../../src/assessment/assessment';
 import schema from '../../src/assessment/assessment.schema.json';
 import { cautions } from '../../src/assessment/cautions';
+import { scratchFolder } from '../scratch-folder';
 import { type Captured, captured } from './captured';
 
 const sticky = 'data/31-FC-104.csv';
 const [head, ...rows] = readFileSync(sticky, 'utf8').trim().split('\n');
-const folder = mkdtempSync(join(tmpdir(), 'stickband-test-'));
+const folder = scratchFolder();
 
 /** A file made from the rows of the sticky demo loop. */
 function fileOf(
@@ -71,7 +71,7 @@ describe('assess --json -', () => {
 
 describe('assess without a notebook', () => {
   it('prints the summary on stdout, writes the JSON whole, and makes nothing else', async () => {
-    const out = mkdtempSync(join(tmpdir(), 'stickband-test-'));
+    const out = scratchFolder();
     const json = join(out, 'deeper', 'result.json');
     const { code, stdout } = await captured('assess', sticky, '--no-notebook', '--json', json);
     expect(code).toBe(0);
@@ -140,7 +140,7 @@ describe('input that cannot be read', () => {
       /back/,
     ],
   ])('%s: exit code 2, a sentence, and nothing written', async (_, make, sentence) => {
-    const out = join(mkdtempSync(join(tmpdir(), 'stickband-test-')), 'out');
+    const out = join(scratchFolder(), 'out');
     const { code, stdout, stderr } = await captured('assess', make(), '--out', out);
     expect(code).toBe(2);
     expect(stdout).toBe('');

@@ -1,6 +1,5 @@
 /** The guided notebook through real Jupyter and its kernel, and the page made from it in a real browser, offline. */
-import { mkdirSync, mkdtempSync, readdirSync, readFileSync, statSync, writeFileSync } from 'node:fs';
-import { tmpdir } from 'node:os';
+import { mkdirSync, readdirSync, readFileSync, statSync, writeFileSync } from 'node:fs';
 import { basename, join } from 'node:path';
 import type { Browser, Page } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
@@ -12,6 +11,7 @@ import { findJupyter } from '../../src/report/jupyter';
 import { joined, type Notebook, type NotebookCell } from '../../src/report/notebook-file';
 import { runNotebook } from '../../src/report/run-notebook';
 import { captured } from '../cli/captured';
+import { scratchFolder } from '../scratch-folder';
 import { startBrowser } from './browser';
 
 interface Rendered {
@@ -20,7 +20,7 @@ interface Rendered {
   readonly assessment: Assessment;
 }
 
-const folder = mkdtempSync(join(tmpdir(), 'stickband-test-'));
+const folder = scratchFolder();
 
 async function render(file: string): Promise<Rendered> {
   const out = join(folder, 'out', basename(file, '.csv'));

@@ -1,11 +1,11 @@
 /** The built package as someone has it who installed it on a machine without Jupyter and Python. */
 import { spawnSync } from 'node:child_process';
-import { cpSync, mkdirSync, mkdtempSync, readdirSync, symlinkSync } from 'node:fs';
-import { tmpdir } from 'node:os';
+import { cpSync, mkdirSync, readdirSync, symlinkSync } from 'node:fs';
 import { join, resolve } from 'node:path';
 import { beforeAll, describe, expect, it } from 'vitest';
+import { scratchFolder } from '../scratch-folder';
 
-const folder = mkdtempSync(join(tmpdir(), 'stickband-test-'));
+const folder = scratchFolder();
 const installed = join(folder, 'installed');
 const work = join(folder, 'work');
 

@@ -1,22 +1,20 @@
-import { mkdtempSync, readdirSync, readFileSync, writeFileSync } from 'node:fs';
-import { tmpdir } from 'node:os';
+import { readdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { describe, expect, it } from 'vitest';
 import { UnwritableOutput } from '../../src/errors';
 import { prepareFolder, writeWhole } from '../../src/report/write-whole';
-
-const freshFolder = (): string => mkdtempSync(join(tmpdir(), 'stickband-test-'));
+import { scratchFolder } from '../scratch-folder';
 
 describe('writing files whole', () => {
   it('writes all files and leaves nothing else behind', () => {
-    const folder = freshFolder();
+    const folder = scratchFolder();
     writeWhole({ [join(folder, 'a.txt')]: 'A', [join(folder, 'b.txt')]: 'B' });
     expect(readdirSync(folder)).toEqual(['a.txt', 'b.txt']);
     expect(readFileSync(join(folder, 'b.txt'), 'utf8')).toBe('B');
   });
 
   it('writes none when one cannot be written, and says which and why', () => {
-    const folder = freshFolder();
+    const folder = scratchFolder();
     const good = join(folder, 'a.txt');
     const bad = join(folder, 'missing', 'b.txt');
     expect(() => writeWhole({ [good]: 'A', [bad]: 'B' })).toThrow(UnwritableOutput);
@@ -27,7 +25,7 @@ describe('writing files whole', () => {
   });
 
   it('refuses a folder whose path goes through a file', () => {
-    const file = join(freshFolder(), 'file');
+    const file = join(scratchFolder(), 'file');
     writeFileSync(file, '');
     expect(() => prepareFolder(join(file, 'out'))).toThrow(
       /cannot be written to \(a part of the path is a file\)/,
