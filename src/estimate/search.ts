@@ -108,7 +108,7 @@ interface CoarsePoint {
 
 function gridPair(s: number, j: number, largest: number): { S: number; J: number } {
   const S = ((s + 1) / gridSteps) * largest;
-  return { S, J: (S * j) / (gridSteps - 1) };
+  return { S, J: Math.min(S, (S * j) / (gridSteps - 1)) };
 }
 
 /** The thinned grid with a few of the lags. */
