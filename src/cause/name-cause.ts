@@ -21,21 +21,28 @@ export interface CauseInput {
   readonly controller: ControllerReading | null;
 }
 
-/** t over blocks above which the valve beats its rival, and the share of blocks it must win. Own choice, set on simulated loops. */
-const clearT = 3;
+/**
+ * t over blocks above which the valve beats the straight line, with a cycle and without one, and the share of blocks it
+ * must win. Between the lower pair and these the record does not decide. Own choice, set on simulated loops.
+ */
+const clearT = { cycling: 3, hunting: 4.5 };
 const clearWins = 0.75;
+const doubtfulT = 1.8;
+const doubtfulWins = 0.65;
+/** t of jump against dead band alone that a very regular cycle of a self-regulating loop asks for, and how regular. */
+const jumpT = 1.5;
+const veryRegular = 10;
 /** J/S below which an integrating loop's cycle is put down to dead band alone. Own choice. */
 const lostMotionRatio = 0.12;
-/** 2 pi Ti / period from which control is proportional-dominated at the cycle: integral action lags less than 45 degrees. */
-const proportionalRatio = 1;
+/** 2 pi Ti / period near 1: from here on control is proportional-dominated at the cycle. Own choice. */
+const proportionalRatio = 0.7;
 
 export function nameCause(input: CauseInput): Cause {
-  const { fitness, opCycle, pvCycle, stiction } = input;
+  const { fitness, stiction } = input;
   if (!fitness.allows.cycle) return cannotTell(failures(input, 'cycle'), []);
   if (!fitness.allows.cause) return cannotTell(failures(input, 'cause'), []);
   const { test } = stiction;
-  const cycles = opCycle.present || pvCycle.present;
-  if (!cycles && !(test && valveStands(test))) return notOscillating(input);
+  if (!cycling(input) && !(test && valveMayMatter(input, test))) return notOscillating(input);
   if (!test) {
     return cannotTell(
       ['OP and PV do not share a cycle to which a valve could be fitted.', ...stiction.refused],
@@ -48,7 +55,7 @@ export function nameCause(input: CauseInput): Cause {
 function notOscillating({ opCycle, pvCycle }: CauseInput): Cause {
   return {
     verdict: 'not-oscillating',
-    confidence: 0.9,
+    confidence: 0.75,
     reasons: [`OP: ${opCycle.why}`, `PV: ${pvCycle.why}`],
     ruledOut: [],
     also: [],
@@ -60,8 +67,33 @@ function decisiveT(test: ValveTest): number {
   return Math.min(test.tOverLine, test.tWithoutLine ?? test.tOverLine);
 }
 
-function valveStands(test: ValveTest): boolean {
-  return decisiveT(test) > clearT && test.blocksForValve / test.blocks >= clearWins;
+function cycling({ opCycle, pvCycle }: CauseInput): boolean {
+  return opCycle.present || pvCycle.present;
+}
+
+/** Dead band alone cannot hold a regular cycle in a self-regulating loop; there the jump must show. */
+function deadBandWouldNotCycle({ opCycle, stiction }: CauseInput, test: ValveTest): boolean {
+  return (
+    stiction.drawn?.process?.response === 'self-regulating' &&
+    (opCycle.regularity ?? 0) > veryRegular &&
+    test.tOverDeadBand < jumpT
+  );
+}
+
+function valveStands(input: CauseInput, test: ValveTest): boolean {
+  const least = cycling(input) ? clearT.cycling : clearT.hunting;
+  return (
+    decisiveT(test) > least &&
+    test.blocksForValve / test.blocks >= clearWins &&
+    !deadBandWouldNotCycle(input, test)
+  );
+}
+
+function valveMayMatter(input: CauseInput, test: ValveTest): boolean {
+  return (
+    valveStands(input, test) ||
+    (decisiveT(test) > doubtfulT && test.blocksForValve / test.blocks >= doubtfulWins)
+  );
 }
 
 function failures(input: CauseInput, what: 'cycle' | 'cause'): string[] {
@@ -84,7 +116,7 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
     'With the steady line in OP taken out, ' +
     `the comparison of valve and straight line gives t = ${(test.tWithoutLine ?? 0).toFixed(1)}.`;
 
-  if (valveStands(test)) {
+  if (valveStands(input, test)) {
     const drawn = stiction.drawn;
     const ratio = drawn ? drawn.jumpDrawn / drawn.S.value : 0;
     const jumpBeats = test.tOverDeadBand > 2 && ratio > lostMotionRatio;
@@ -119,8 +151,8 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
     };
   }
 
-  const noValve = t < 1.5 || share < 0.6;
-  if (!noValve) {
+  const deadBandOnly = deadBandWouldNotCycle(input, test);
+  if (valveMayMatter(input, test) && !deadBandOnly) {
     return cannotTell(
       [
         valveSentence,
@@ -134,7 +166,7 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
   if (coherent) {
     return {
       verdict: 'outside-disturbance',
-      confidence: 0.7,
+      confidence: 0.85,
       reasons: [
         `OP carries a steady line at a period of ${seconds(opCycle.period)}, sharper than a loop makes by itself.`,
         lineSentence,
@@ -146,22 +178,29 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
       also: [],
     };
   }
-  const ti = controller?.integralTime ?? null;
+  const ti = controller?.form === 'I' ? null : (controller?.integralTime ?? null);
   const ratio = ti !== null && opCycle.period ? (2 * Math.PI * ti) / opCycle.period : null;
-  const proportional = controller !== null && (ti === null || (ratio !== null && ratio >= proportionalRatio));
-  if (proportional) {
+  const proportional = controller?.form === 'P' || (ratio !== null && ratio >= proportionalRatio);
+  if (proportional || (opCycle.regularity ?? 0) > veryRegular) {
+    const reasons = [
+      deadBandOnly
+        ? `What speaks for the valve is dead band without a jump (t = ${test.tOverDeadBand.toFixed(1)} for the jump), and dead band alone does not hold a regular cycle in a self-regulating loop.`
+        : valveSentence,
+      'The cycle wanders in height and phase like a lightly damped loop driven by noise: OP carries no steady line from outside.',
+    ];
+    if (ratio !== null) {
+      reasons.push(
+        proportional
+          ? `At the period of the cycle control is proportional-dominated (2 pi Ti / period = ${ratio.toFixed(1)}), as in a loop near its stability limit.`
+          : `At the period of the cycle integral action leads (2 pi Ti / period = ${ratio.toFixed(1)}): too short an integral time is as likely as too high a gain.`,
+      );
+    }
     return {
       verdict: 'tight-tuning',
-      confidence: 0.7,
-      reasons: [
-        valveSentence,
-        ratio === null
-          ? 'The controller has no integral action, so the cycle is not an integral wind-up against a stuck valve.'
-          : `At the period of the cycle control is proportional-dominated (2 pi Ti / period = ${ratio.toFixed(1)}), as in a loop near its stability limit.`,
-        'The cycle wanders in height and phase like a lightly damped loop driven by noise.',
-      ],
+      confidence: proportional ? 0.8 : 0.7,
+      reasons,
       ruledOut: [cleared, 'a steady outside cycle: OP carries no steady line'],
-      also: [],
+      also: deadBandOnly ? ['lost-motion'] : [],
     };
   }
   return cannotTell(
@@ -169,14 +208,14 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
       valveSentence,
       record.sp === null
         ? 'Without the set point the controller cannot be read, so tuning and disturbance cannot be told apart.'
-        : 'The cycle is neither a steady line nor proportional-dominated, so tuning and disturbance cannot be told apart.',
+        : 'The cycle is neither a steady line nor very regular nor proportional-dominated, so tuning and disturbance cannot be told apart.',
     ],
     [cleared],
   );
 }
 
 function valveConfidence(t: number, share: number): number {
-  const strength = 1 / (1 + Math.exp(-(t - clearT) / 2));
+  const strength = 1 / (1 + Math.exp(-(t - clearT.cycling) / 2));
   return Math.min(0.97, 0.6 + 0.4 * strength * share);
 }
 
