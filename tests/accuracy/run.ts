@@ -8,6 +8,7 @@ import { availableParallelism } from 'node:os';
 import { dirname, join, resolve } from 'node:path';
 import { parseArgs } from 'node:util';
 import { startProgress } from '../../src/cli/progress';
+import { wholeOption } from '../command-options';
 import { type Outcome, outcomeOf } from './outcome';
 import { printScore } from './print';
 import { scoreOutcomes } from './score';
@@ -47,24 +48,16 @@ async function measure(): Promise<void> {
   }
   const set = values.set as SetName;
   const atMost =
-    values['at-most'] === undefined ? Number.POSITIVE_INFINITY : whole('at-most', values['at-most']);
+    values['at-most'] === undefined ? Number.POSITIVE_INFINITY : wholeOption('at-most', values['at-most']);
   const tasks = (['stiction', 'other'] as const).flatMap((group) =>
     Array.from({ length: Math.min(atMost, SETS[set][group]) }, (_, index): Task => ({ set, group, index })),
   );
-  const outcomes = await spreadOver(Math.min(whole('workers', values.workers), tasks.length), tasks);
+  const outcomes = await spreadOver(Math.min(wholeOption('workers', values.workers), tasks.length), tasks);
   const score = scoreOutcomes(outcomes);
   const file = resolve(values.json ?? join(__dirname, `../../.cache/accuracy/${set}.json`));
   mkdirSync(dirname(file), { recursive: true });
   writeFileSync(file, `${JSON.stringify({ set, targets: targetsOf(score), score, outcomes }, null, 1)}\n`);
   process.stdout.write(`${printScore(`Set ${set}`, score)}\nWritten to ${file}\n`);
-}
-
-function whole(name: string, text: string): number {
-  const value = Number(text);
-  if (!(Number.isInteger(value) && value > 0)) {
-    throw new Error(`--${name} is a whole number above 0. Received ${text}.`);
-  }
-  return value;
 }
 
 /** Outcomes in the order of the tasks; each worker process gets its next task when it has answered the last. */
