@@ -14,12 +14,20 @@ import type { LoopRecord, Note, Response } from '../record/loop-record';
 import { mean, noiseLevel } from '../signal/statistics';
 import { twoParameterValve } from '../valve/two-parameter';
 import { describeTravel } from './describe-travel';
-import { type Intervals, intervalsFromParts, type PartFit, recordParts } from './interval';
+import {
+  type Alternative,
+  type Intervals,
+  intervalsOf,
+  type PartFit,
+  recordParts,
+  roomBeyondS,
+} from './interval';
 import { misfitMap } from './misfit-map';
 import { type ProcessSettings, residualOf, swingOf } from './process-fit';
 import { followPart, type Reconstruction, reconstructTravel } from './reconstruct-travel';
 import type { Slip, StictionFit, StictionResult, ValveTest } from './stiction-fit';
 import { findLine, testValve } from './valve-test';
+import { busiestWindow } from './window';
 
 export interface FitOptions {
   /** How the PV answers the valve. Default: the record's. With `unknown` both are tried and the better one is told. */
@@ -40,6 +48,9 @@ export interface FitOptions {
 const statedGainTolerance = 0.15;
 /** Share of OP's moves that a controller reading must explain to be used. Own choice. */
 const trustedController = 0.6;
+/** Spread of J, as a share of S, and room of OP beyond S, from which J is not resolved. Own choice, set on simulated loops. */
+const widestSpread = 0.25;
+const leastRoom = 0.2;
 const fewestReversals = 10;
 const leastExplained = 0.5;
 /** Least t over blocks of valve against straight line for numbers to be given. Own choice. */
@@ -95,14 +106,12 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
       ? ['self-regulating', 'integrating']
       : [(options.response ?? record.response) as 'self-regulating' | 'integrating'];
   const notes: Note[] = [];
-  let found: { reconstruction: Reconstruction; settings: ProcessSettings } | null = null;
+  let found: Found | null = null;
   for (const response of responses) {
     const settings = settingsFor(record, response === 'integrating', period, controller, options);
-    const reconstruction = reconstructTravel(record.pv, record.op, settings)?.[0];
-    if (!reconstruction) continue;
-    if (!found || reconstruction.innovations < found.reconstruction.innovations) {
-      found = { reconstruction, settings };
-    }
+    const whole = reconstructWhole(record, settings);
+    if (whole && (!found || whole.reconstruction.innovations < found.reconstruction.innovations))
+      found = whole;
   }
   if (!found) return nothing;
   if (responses.length > 1) {
@@ -122,14 +131,15 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
   });
   const { S, J, model } = description;
   const parts = fitParts(record, found, travel, measured, { S, J }, largest);
-  const intervals = intervalsFromParts(S, J, parts);
+  const room = roomBeyondS(record.op, S);
+  const intervals = intervalsOf({ S, J }, parts, measured ? [] : found.alternatives, measured ? 1 : room);
   const line = findLine(record.op, period / record.samplePeriod);
   const test = testValve(record.pv, record.op, reconstruction, settings, line);
 
   const modelTravel = twoParameterValve(record.op, { S, J, model, start: travel[0] });
   const residual = residualOf(record.pv, travel, reconstruction, settings);
   const simulatedPv = simulated(record.pv, residual, period / record.samplePeriod);
-  const unresolved = whyJIsNotResolved(intervals, S);
+  const unresolved = measured ? null : whyJIsNotResolved(intervals, room, processGain !== null);
   if (unresolved) notes.push({ code: 'jump-not-resolved', text: unresolved });
   if (!measured && deadTime === null) {
     notes.push({
@@ -162,6 +172,25 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
   };
   refused.push(...whyNumbersAreRefused(record, fit, test, largest));
   return { fit: refused.length > 0 ? null : fit, drawn: fit, refused, test };
+}
+
+interface Found {
+  readonly reconstruction: Reconstruction;
+  readonly alternatives: readonly Alternative[];
+  readonly settings: ProcessSettings;
+}
+
+/** Searches the busiest window of the record and follows the travel from there through all of it. */
+function reconstructWhole({ pv, op }: LoopRecord, settings: ProcessSettings): Found | null {
+  const { from, to } = busiestWindow(op);
+  const all = reconstructTravel(pv.subarray(from, to), op.subarray(from, to), settings);
+  if (all === null) return null;
+  const [best] = all;
+  return {
+    reconstruction: to - from === op.length ? best : followPart(pv, op, best, settings),
+    alternatives: all.map(({ S, J, price }) => ({ S, J, excess: price - best.price })),
+    settings,
+  };
 }
 
 function settingsFor(
@@ -203,7 +232,7 @@ function signOfGain(record: LoopRecord, stated: number | null, controller: Contr
 
 function fitParts(
   record: LoopRecord,
-  found: { reconstruction: Reconstruction; settings: ProcessSettings },
+  found: Found,
   travel: Float64Array,
   measured: boolean,
   whole: PartFit,
@@ -248,10 +277,23 @@ function slipsOf(travel: Float64Array, samplePeriod: number, J: number): Slip[] 
   return slips;
 }
 
-function whyJIsNotResolved({ J, spreadJ }: Intervals, S: number): string | null {
-  const half = (J.high - J.low) / 2;
-  if (spreadJ <= 0.25 && half <= 0.45 * S) return null;
-  return `Parts of the record give slip jumps that differ by ${(100 * spreadJ).toFixed(0)} % of S, so J is not resolved. A stated process gain (--process-gain), set-point steps in the record, or logged travel would resolve it.`;
+function whyJIsNotResolved(
+  { partsJ, alternativesJ }: Intervals,
+  room: number,
+  gainStated: boolean,
+): string | null {
+  const remedy =
+    'A stated process gain (--process-gain), set-point steps in the record, or logged travel would resolve it.';
+  if (partsJ > widestSpread) {
+    return `Parts of the record give slip jumps that differ by ${(100 * partsJ).toFixed(0)} % of S, so J is not resolved. ${remedy}`;
+  }
+  if (alternativesJ > widestSpread) {
+    return `Travels with slip jumps that differ by ${(100 * alternativesJ).toFixed(0)} % of S explain PV nearly as well, so J is not resolved. ${remedy}`;
+  }
+  if (room < leastRoom && !gainStated) {
+    return `OP turns back right after each slip (it moves only ${(100 * room).toFixed(0)} % of S further), so PV shows the jump times the process gain and J is not resolved. ${remedy}`;
+  }
+  return null;
 }
 
 function whyNumbersAreRefused(
