@@ -59,7 +59,7 @@ export function assessLoop(record: LoopRecord, options: AssessOptions = {}): Fin
   onProgress('naming the cause', 0.95);
   const cause = nameCause({ record, fitness, opCycle, pvCycle, stiction, controller });
   const main = opCycle.present ? opCycle : pvCycle;
-  const noise = noiseLevel(record.op);
+  const noise = record.op.length < 3 ? 0 : noiseLevel(record.op);
   const days = (record.op.length * record.samplePeriod) / 86400;
   const S = stiction.fit?.S.value ?? null;
   const assessment: Assessment = {
