@@ -55,7 +55,7 @@ export function nameCause(input: CauseInput): Cause {
 function notOscillating({ opCycle, pvCycle }: CauseInput): Cause {
   return {
     verdict: 'not-oscillating',
-    confidence: 0.75,
+    confidence: 0.65,
     reasons: [`OP: ${opCycle.why}`, `PV: ${pvCycle.why}`],
     ruledOut: [],
     also: [],
@@ -166,7 +166,7 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
   if (coherent) {
     return {
       verdict: 'outside-disturbance',
-      confidence: 0.85,
+      confidence: 0.8,
       reasons: [
         `OP carries a steady line at a period of ${seconds(opCycle.period)}, sharper than a loop makes by itself.`,
         lineSentence,
@@ -197,7 +197,7 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
     }
     return {
       verdict: 'tight-tuning',
-      confidence: proportional ? 0.8 : 0.7,
+      confidence: proportional ? 0.75 : 0.65,
       reasons,
       ruledOut: [cleared, 'a steady outside cycle: OP carries no steady line'],
       also: deadBandOnly ? ['lost-motion'] : [],
@@ -216,7 +216,7 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
 
 function valveConfidence(t: number, share: number): number {
   const strength = 1 / (1 + Math.exp(-(t - clearT.cycling) / 2));
-  return Math.min(0.97, 0.6 + 0.4 * strength * share);
+  return Math.min(0.93, 0.5 + 0.45 * strength * share);
 }
 
 function percent(share: number): string {

@@ -24,13 +24,14 @@ export interface DescribeSettings {
   readonly near: { readonly S: number; readonly J: number } | null;
   /** Largest S to try, %. */
   readonly largest: number;
+  /** Best starting pairs from which the search goes on, for each variant. Default 5. */
+  readonly starts?: number;
 }
 
 /** Share of the record that is not counted, to forget the start. */
 const notCounted = 0.1;
 const coarseS = 26;
 const coarseJ = 9;
-const startsKept = 5;
 
 /**
  * Share of a travel's variance that an element leaves unexplained, offset free. Sums over OP and travel are made
@@ -129,7 +130,7 @@ export function describeTravel(
 function startingPairs(
   misfit: TravelMisfit,
   model: ValveModel,
-  { near, largest }: DescribeSettings,
+  { near, largest, starts = 5 }: DescribeSettings,
 ): { S: number; J: number }[] {
   const pairs: { S: number; J: number }[] = [];
   if (near) {
@@ -150,7 +151,7 @@ function startingPairs(
   return pairs
     .map((pair) => ({ ...pair, left: misfit.of(pair.S, pair.J, model) }))
     .sort((a, b) => a.left - b.left)
-    .slice(0, startsKept);
+    .slice(0, starts);
 }
 
 function descend(

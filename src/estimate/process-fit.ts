@@ -98,19 +98,20 @@ const directions: readonly (readonly [number, number, number])[] = [
   [0, -1, 1],
 ];
 
-/** Refines lags and dead time for a fixed travel by a shrinking pattern, from `start`. */
+/** Refines lags and dead time for a fixed travel by a pattern that shrinks `rounds` times, from `start`. */
 export function fitProcess(
   travel: Float64Array,
   target: Target,
   start: PlainProcess,
   settings: ProcessSettings,
+  rounds: number = 4,
 ): ProcessFit {
   const longestDelay = Math.max(2, settings.period / 6);
   const free = settings.deadTime === null;
   let best = fitGain(travel, target, start, settings);
   let lagStep = Math.max(0.3, 0.25 * start.lag);
   let delayStep = 0.5;
-  for (let round = 0; round < 4; round++) {
+  for (let round = 0; round < rounds; round++) {
     for (let moved = true, turns = 0; moved && turns < 6; turns++) {
       moved = false;
       for (const [byLag, bySecond, byDelay] of directions) {

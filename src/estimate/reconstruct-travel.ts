@@ -53,6 +53,9 @@ const rounds: readonly number[] = [6, 3, 2];
 /** Steps of the last search: changes of S, of J against the gain, and of dead time against S. */
 const polishRounds = 2;
 
+/** Error of the model itself, as a share of the power of the filtered PV; keeps clean records from being trusted too far. */
+const modelError = 0.05;
+
 /** Gain margin below which a fitted gain costs something, and how much. Own choice, set on simulated loops. */
 const usualMargin = 2.5;
 const marginPrice = 0.4;
@@ -119,20 +122,40 @@ function cheaper(one: Reconstruction, other: Reconstruction): Reconstruction {
   return other.price < one.price ? other : one;
 }
 
-/** Tries small changes of the best history's element and process, along the directions in which they trade off. */
+/**
+ * Tries changes of the best history's element and process along the directions in which they trade off: jump against
+ * gain; S against dead time, as a slip `later` samples later needs S larger by what OP moves meanwhile, at both turns;
+ * actuator lag against dead time.
+ */
 function polish(scene: Scene, start: Reconstruction): Reconstruction {
+  const { op, settings } = scene;
+  let here = scene;
   let best = start;
   let step = 1;
   for (let round = 0; round < polishRounds; round++) {
     const { S, J, gain, delay } = best;
+    const opRate = (2 * S) / settings.period;
+    const trades = settings.deadTime === null ? [delay - 1, (delay - 1) / 2, 1.5 * step, -1.5 * step] : [];
     for (const change of [
       { J: Math.min(S, J * (1 + 0.3 * step)), gain: gain / (1 + 0.2 * step) },
       { J: J / (1 + 0.3 * step), gain: gain * (1 + 0.2 * step) },
-      { S: S * (1 + 0.04 * step), delay: Math.max(1, delay - 0.5 * step) },
-      { S: S * (1 - 0.04 * step), delay: delay + 0.5 * step },
       { J: Math.min(S, J + 0.15 * step * S) },
+      ...trades
+        .map((later) => ({ S: S + 2 * opRate * later, delay: Math.max(1, delay - later) }))
+        .filter((change) => change.S > 0.3 * S && change.S < 2 * S)
+        .map((change) => ({ ...change, J: Math.min(J, change.S) })),
     ]) {
-      best = cheaper(best, follow(scene, { ...best, ...change }));
+      best = cheaper(best, follow(here, { ...best, ...change }));
+    }
+    for (const actuatorLag of actuatorLags) {
+      if (actuatorLag === here.actuatorLag) continue;
+      const other = { ...here, actuatorLag, u: lagged(op, actuatorLag) };
+      const delayThere = Math.max(1, best.delay + here.actuatorLag - actuatorLag);
+      const found = follow(other, { ...best, delay: delayThere });
+      if (found.price < best.price) {
+        best = found;
+        here = other;
+      }
     }
     step /= 2;
   }
@@ -220,12 +243,13 @@ function follow(
     delay,
     theta: target.theta,
     secondTheta: settings.integrating ? secondTheta(target.theta) : null,
-    variance: (Math.min(start.misfit, 1) * target.power) / samples,
+    variance: ((Math.min(start.misfit, 1) + modelError) * target.power) / samples,
   };
   const { travel, penalty } = trackTravel(target.values, u, track, width);
-  const process = fitProcess(travel, target, { lag, secondLag, delay }, settings);
+  const refinements = width === narrowBeam ? 2 : 4;
+  const process = fitProcess(travel, target, { lag, secondLag, delay }, settings, refinements);
   const kept = process.gain > 0 ? process : { lag, secondLag, delay, gain, misfit: 1 };
-  const element = describeTravel(op, travel, { near: { S, J }, largest: largest * 1.05 });
+  const element = describeTravel(op, travel, { near: { S, J }, largest: largest * 1.05, starts: 2 });
   const innovations = kept.misfit * target.power;
   const unstable = samples * priceOfGain(kept, settings);
   return {
@@ -234,7 +258,8 @@ function follow(
     J: element.J,
     actuatorLag,
     theta: target.theta,
-    price: (samples / 2) * Math.log(innovations / samples) + penalty + unstable,
+    price:
+      (samples / 2) * Math.log((kept.misfit + modelError) * (target.power / samples)) + penalty + unstable,
     penalty,
     innovations,
     travel,

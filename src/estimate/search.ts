@@ -137,6 +137,12 @@ const neighbours: readonly (readonly [number, number])[] = [
   [-1, -2],
   [0, 1],
   [0, -1],
+  [1, 1],
+  [-1, -1],
+  [0, 4],
+  [0, -4],
+  [2, 0],
+  [-2, 0],
 ];
 
 /**
