@@ -24,7 +24,7 @@ export interface AssessOptions {
   readonly processGain?: number | null;
   /** Seed of everything random (surrogates). Default 1. */
   readonly seed?: number;
-  /** Called before each step with its name and the share done, 0..1. */
+  /** Called before each step, and once when all is done, with its name and the share done, 0..1. */
   readonly onProgress?: (step: string, share: number) => void;
 }
 

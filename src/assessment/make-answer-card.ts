@@ -99,7 +99,7 @@ function figuresOf({ assessment, record, opCycle, pvCycle }: Findings): AnswerCa
     rows.push({
       label: 'Period',
       value: duration(period),
-      note: r === null ? '' : `regularity ${r.toFixed(1)}; above 1 is regular`,
+      note: r === null ? '' : `regularity ${r > 100 ? 'above 100' : r.toFixed(1)}; above 1 is regular`,
     });
   }
   const pvUnit = record.pvUnit === '' ? 'PV units' : record.pvUnit;
@@ -134,6 +134,12 @@ export function duration(seconds: number): string {
   return `${Number((seconds / 3600).toPrecision(3))} h`;
 }
 
+/** `2026-03-04T06:00:00.000Z` as `2026-03-04 06:00 UTC`; other forms as they are. */
+function readableTime(iso: string): string {
+  const parts = /^(\d{4}-\d\d-\d\d)T(\d\d:\d\d)(?::\d\d(?:\.\d+)?)?Z$/.exec(iso);
+  return parts ? `${parts[1]} ${parts[2]} UTC` : iso;
+}
+
 function workRequest({ loop, cause, stiction, severity, record, oscillation }: Assessment): string {
   if (cause.verdict !== 'stiction' && cause.verdict !== 'lost-motion') return '';
   const size = stiction
@@ -141,7 +147,7 @@ function workRequest({ loop, cause, stiction, severity, record, oscillation }: A
     : '';
   const period = oscillation.period === null ? '' : ` with a period of ${duration(oscillation.period)}`;
   return (
-    `${loop}: the loop cycles${period} (record from ${record.start}, OP swing ${short(severity.opSwing)} %), and the record points to the final control assembly.${size} ` +
+    `${loop}: the loop cycles${period} (record from ${readableTime(record.start)}, OP swing ${short(severity.opSwing)} %), and the record points to the final control assembly.${size} ` +
     'The record cannot tell which part: check air supply, positioner, linkage and packing in the order your site prescribes. ' +
     'Please record dead band and resolution as found and as left. Estimates from operating data, not a test of the valve; site permits and procedures apply.'
   );
@@ -152,5 +158,5 @@ function recordSentence({ record, opCycle }: Findings, failed: number): string {
   const cycles = opCycle.present ? `, ${opCycle.cycles} cycles` : '';
   const fit =
     failed === 0 ? 'all fitness checks passed' : `${failed} fitness check${failed > 1 ? 's' : ''} not passed`;
-  return `${span} from ${record.start}, ${record.op.length} samples of ${Number(record.samplePeriod.toPrecision(3))} s${cycles}; ${fit}.`;
+  return `${span} from ${readableTime(record.start)}, ${record.op.length} samples of ${Number(record.samplePeriod.toPrecision(3))} s${cycles}; ${fit}.`;
 }

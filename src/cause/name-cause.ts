@@ -111,10 +111,10 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
   const share = test.blocksForValve / test.blocks;
   const coherent = test.tWithoutLine !== null;
   const t = decisiveT(test);
-  const valveSentence = `A sticking valve predicts PV better than a straight line from OP to travel in ${test.blocksForValve} of ${test.blocks} blocks (t = ${test.tOverLine.toFixed(1)}).`;
+  const valveSentence = `A sticking valve predicts PV better than a straight line from OP to travel in ${test.blocksForValve} of ${test.blocks} parts of the record (t = ${test.tOverLine.toFixed(1)}; above ${clearT.cycling} is clear).`;
   const lineSentence =
     'With the steady line in OP taken out, ' +
-    `the comparison of valve and straight line gives t = ${(test.tWithoutLine ?? 0).toFixed(1)}.`;
+    `the comparison of valve and straight line gives t = ${(test.tWithoutLine ?? 0).toFixed(1)} (above ${clearT.cycling} is clear).`;
 
   if (valveStands(input, test)) {
     const drawn = stiction.drawn;
@@ -144,8 +144,10 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
       confidence: valveConfidence(t, share),
       reasons,
       ruledOut: [
-        'tight tuning alone: the loop between OP and PV is not linear',
-        'an outside disturbance alone: the valve model keeps its lead when a steady line is taken out',
+        'Tight tuning alone: the loop between OP and PV is not linear.',
+        coherent
+          ? 'An outside disturbance alone: the valve keeps its lead when the steady line in OP is taken out.'
+          : 'A steady outside disturbance alone: OP carries no steady line.',
       ],
       also: [],
     };
@@ -162,7 +164,7 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
       [],
     );
   }
-  const cleared = `stiction: ${lower(coherent ? lineSentence : valveSentence)}`;
+  const cleared = `Stiction: ${lower(coherent ? lineSentence : valveSentence)}`;
   if (coherent) {
     return {
       verdict: 'outside-disturbance',
@@ -173,7 +175,7 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
       ],
       ruledOut: [
         cleared,
-        'tight tuning: the cycle keeps its period and height too well for a lightly damped loop',
+        'Tight tuning: the cycle keeps its period and height too well for a lightly damped loop.',
       ],
       also: [],
     };
@@ -199,7 +201,7 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
       verdict: 'tight-tuning',
       confidence: proportional ? 0.75 : 0.65,
       reasons,
-      ruledOut: [cleared, 'a steady outside cycle: OP carries no steady line'],
+      ruledOut: [cleared, 'A steady outside cycle: OP carries no steady line.'],
       also: deadBandOnly ? ['lost-motion'] : [],
     };
   }
@@ -228,5 +230,5 @@ function seconds(value: number | null): string {
 }
 
 function lower(sentence: string): string {
-  return sentence.charAt(0).toLowerCase() + sentence.slice(1).replace(/\.$/, '');
+  return sentence.charAt(0).toLowerCase() + sentence.slice(1);
 }

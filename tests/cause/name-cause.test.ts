@@ -152,9 +152,9 @@ describe('nameCause', () => {
   it('accuses a valve that beats straight line and dead band alone in every block', () => {
     const { verdict, reasons, ruledOut } = named({});
     expect(verdict).toBe('stiction');
-    expect(reasons.join(' ')).toMatch(/16 of 16 blocks.*t = 20\.0/);
-    expect(ruledOut.join(' ')).toMatch(/tuning/);
-    expect(ruledOut.join(' ')).toMatch(/outside/);
+    expect(reasons.join(' ')).toMatch(/16 of 16 .*t = 20\.0/);
+    expect(ruledOut.join(' ')).toMatch(/tuning/i);
+    expect(ruledOut.join(' ')).toMatch(/outside/i);
   });
 
   it('accuses it of lost motion where the loop integrates and a jump adds nothing', () => {
@@ -183,7 +183,7 @@ describe('nameCause', () => {
     const { verdict, reasons, ruledOut } = named({ test: { tWithoutLine: -2 } });
     expect(verdict).toBe('outside-disturbance');
     expect(reasons.join(' ')).toMatch(/60\.0 s/);
-    expect(ruledOut.join(' ')).toMatch(/stiction/);
+    expect(ruledOut.join(' ')).toMatch(/stiction/i);
     expect(named({ test: { ...valveLoses, tWithoutLine: -4 } }).verdict).toBe('outside-disturbance');
   });
 
@@ -192,7 +192,7 @@ describe('nameCause', () => {
     for (const integralTime of [period, null]) {
       const { verdict, ruledOut } = named({ test: valveLoses, integralTime });
       expect(verdict, `integral time ${integralTime}`).toBe('tight-tuning');
-      expect(ruledOut.join(' ')).toMatch(/stiction/);
+      expect(ruledOut.join(' ')).toMatch(/stiction/i);
     }
     expect(named({ test: valveLoses, integralTime: period }).reasons.join(' ')).toMatch(/6\.3/);
   });
@@ -202,7 +202,7 @@ describe('nameCause', () => {
       const { verdict, ruledOut } = named({ test: valveLoses, ...known });
       expect(verdict).toBe('cannot-tell');
       // What was found out about the valve stands all the same.
-      expect(ruledOut.join(' ')).toMatch(/stiction/);
+      expect(ruledOut.join(' ')).toMatch(/stiction/i);
     }
   });
 
@@ -216,7 +216,7 @@ describe('nameCause', () => {
   it('cannot tell where the valve leads in some blocks only', () => {
     const { verdict, reasons } = named({ test: { tOverLine: 2.4, blocksForValve: 11 } });
     expect(verdict).toBe('cannot-tell');
-    expect(reasons.join(' ')).toMatch(/11 of 16 blocks/);
+    expect(reasons.join(' ')).toMatch(/11 of 16 /);
   });
 
   it('cannot tell where a cycle could not be fitted', () => {
