@@ -47,14 +47,14 @@ describe('describeTravel', () => {
 
   it('does not mind a travel that stands off by a calibration error', () => {
     const travel = twoParameterValve(op, { S: 3, J: 1 });
-    const true_ = describeTravel(op, travel, { near: null, largest: swing });
+    const exact = describeTravel(op, travel, { near: null, largest: swing });
     const off = describeTravel(
       op,
       travel.map((value) => value - 7.5),
       { near: null, largest: swing },
     );
-    expectClose(off.S, true_.S, { relative: 0.01 });
-    expectClose(off.J, true_.J, { absolute: 0.03 });
+    expectClose(off.S, exact.S, { relative: 0.01 });
+    expectClose(off.J, exact.J, { absolute: 0.03 });
   });
 
   it('finds the element where OP swings by S but not by S + J, whichever way and wherever the travel began', () => {

@@ -3,6 +3,7 @@ import type { ProcessSettings } from '../../src/estimate/process-fit';
 import { type LoopOptions, simulateLoop } from '../../src/process/closed-loop';
 import type { LoopRecord, Response, Service } from '../../src/record/loop-record';
 import type { SteppableValve } from '../../src/valve/steppable-valve';
+import { record } from '../evidence/loops';
 
 export interface LoopSettings {
   /** Default null: a linear loop, travel is OP. */
@@ -71,41 +72,12 @@ export function levelLoop(settings: LoopSettings = {}): LoopRecord {
 }
 
 /** Runs a loop and takes what is logged as a record. */
-export function recordOf(
-  loop: LoopOptions,
-  service: Service,
-  response: Response,
-  travelLogged = false,
-): LoopRecord {
+function recordOf(loop: LoopOptions, service: Service, response: Response, travelLogged = false): LoopRecord {
   const { sp, pv, op, travel } = simulateLoop(loop);
   const samplePeriod = (loop.scanPeriod ?? 1) * (loop.logEvery ?? 1);
   return {
-    loop: service === 'level' ? '31-LC-140' : '31-FC-104',
-    service,
-    response,
-    source: 'made.csv',
-    sha256: '0'.repeat(64),
-    start: '2026-03-04T06:00:00Z',
-    samplePeriod,
-    pv,
-    sp,
-    op,
+    ...record({ op, pv, sp, service, response, samplePeriod }),
     travel: travelLogged ? travel : null,
-    pvUnit: '',
-    pvRange: null,
-    logging: {
-      rows: op.length,
-      duplicates: 0,
-      gaps: 0,
-      longestGap: 0,
-      manualShare: 0,
-      badShare: 0,
-      filledShare: 0,
-      skew: 0,
-      modeLogged: true,
-      keptShare: 1,
-    },
-    notes: [],
   };
 }
 
