@@ -1,8 +1,8 @@
 /**
  * Dead band and slip jump of the valve in a loop, with intervals, or the reasons why there are no numbers.
  *
- * With measured travel the element is fitted to it directly. Without, stage 1 (`search.ts`) reconstructs the travel
- * from OP and PV and stage 2 (`describe-travel.ts`) fits the element to the reconstruction.
+ * With measured travel the element is fitted to it directly. Without, stage 1 (`reconstruct-travel.ts`) finds the
+ * travel behind OP and PV, and stage 2 (`describe-travel.ts`) fits the element to the reconstruction.
  */
 import { refuseUnknownOptions, WrongUse } from '../errors';
 import { findCycle } from '../oscillation/find-cycle';
@@ -99,7 +99,7 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
       refused: [...refused, 'OP does not turn, so there are no reversals to read S and J from.'],
     };
   }
-  if (!(swingOf(record.op) > 0) || !fitness.allows.cycle) return nothing;
+  if (!fitness.allows.cycle || !(swingOf(record.op) > 0)) return nothing;
 
   const responses: ('self-regulating' | 'integrating')[] =
     (options.response ?? record.response) === 'unknown'
@@ -113,7 +113,12 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
     if (whole && (!found || whole.reconstruction.innovations < found.reconstruction.innovations))
       found = whole;
   }
-  if (!found) return nothing;
+  if (!found) {
+    return {
+      ...nothing,
+      refused: [...refused, 'No move of a valve, early or late, large or small, explains any of PV.'],
+    };
+  }
   if (responses.length > 1) {
     const chosen = found.settings.integrating ? 'integrating' : 'self-regulating';
     notes.push({
