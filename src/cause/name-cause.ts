@@ -188,7 +188,7 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
       deadBandOnly
         ? `What speaks for the valve is dead band without a jump (t = ${test.tOverDeadBand.toFixed(1)} for the jump), and dead band alone does not hold a regular cycle in a self-regulating loop.`
         : valveSentence,
-      'The cycle wanders in height and phase like a lightly damped loop driven by noise: OP carries no steady line from outside.',
+      'OP carries no steady line as a cycle from outside makes it: the cycle keeps wandering a little, like a lightly damped loop driven by noise.',
     ];
     if (ratio !== null) {
       reasons.push(

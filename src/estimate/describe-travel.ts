@@ -30,8 +30,8 @@ export interface DescribeSettings {
 
 /** Share of the record that is not counted, to forget the start. */
 const notCounted = 0.1;
-const coarseS = 26;
-const coarseJ = 9;
+const coarseS = 32;
+const coarseJ = 25;
 
 /**
  * Share of a travel's variance that an element leaves unexplained, offset free. Sums over OP and travel are made
@@ -45,7 +45,7 @@ export class TravelMisfit {
   private readonly sums: Record<'t' | 'u' | 'tt' | 'uu' | 'ut', Float64Array>;
   private readonly start: number;
 
-  /** `start`: travel before the first sample, %; default: the travel's first value, shifted to OP's mean. */
+  /** `start`: travel before the first sample, %; default: the travel's first value. */
   constructor(
     private readonly op: Float64Array,
     travel: Float64Array,
@@ -56,7 +56,7 @@ export class TravelMisfit {
     this.first = Math.floor(notCounted * samples);
     this.opMean = meanFrom(op, this.first);
     this.travelMean = meanFrom(travel, this.first);
-    this.start = start ?? travel[0] - this.travelMean + this.opMean;
+    this.start = start ?? travel[0];
     const sum = (): Float64Array => new Float64Array(samples + 1);
     this.sums = { t: sum(), u: sum(), tt: sum(), uu: sum(), ut: sum() };
     const { t, u, tt, uu, ut } = this.sums;

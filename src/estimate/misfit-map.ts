@@ -1,5 +1,6 @@
 /** How well each pair of S and J explains PV, with the process found kept near: the map behind the estimate. */
 import { createObjective } from './objective';
+import { openingOf } from './opening';
 import { lagged, type ProcessSettings } from './process-fit';
 import type { Reconstruction } from './reconstruct-travel';
 import { PairTrial } from './search';
@@ -37,7 +38,7 @@ export function misfitMap(
     delays,
   });
   const trials = (['slides-on', 'sticks-again'] as const).map(
-    (model) => new PairTrial(objective, u, model, 1),
+    (model) => new PairTrial(objective, u, model, 1, openingOf(u, settings.period)),
   );
   const misfit = (s: number, j: number): number =>
     Math.max(0, Math.min(...trials.map((trial) => trial.of(s, j, onlyLag).misfit[0])));

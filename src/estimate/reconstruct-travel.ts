@@ -11,6 +11,7 @@ import { twoParameterValve } from '../valve/two-parameter';
 import { describeTravel } from './describe-travel';
 import { gainMargin } from './loop-stability';
 import { createObjective, secondTheta } from './objective';
+import { openingOf, restingTravel } from './opening';
 import {
   bestTheta,
   createTarget,
@@ -69,11 +70,12 @@ export function reconstructTravel(
   const largest = swingOf(op);
   if (!(largest > 0)) return null;
   const smallest = Math.min(noiseFloor * noiseLevel(op), largest / 4);
+  const opening = openingOf(op, settings.period);
   const theta = firstTheta(pv, op, smallest, largest, settings);
   const objective = createObjective(pv, op, { ...settings, ...processGrid(settings), theta });
   const points = [
-    ...searchGrid(objective, op, 'slides-on', smallest, largest),
-    ...searchGrid(objective, op, 'sticks-again', smallest, largest),
+    ...searchGrid(objective, op, 'slides-on', smallest, largest, opening),
+    ...searchGrid(objective, op, 'sticks-again', smallest, largest, opening),
   ].sort((a, b) => a.misfit - b.misfit);
   if (points[0].misfit >= 1) return null;
   const target = createTarget(pv, theta, settings);
@@ -150,7 +152,8 @@ function polish(scene: Scene, start: Reconstruction): Reconstruction {
     for (const actuatorLag of actuatorLags) {
       if (actuatorLag === here.actuatorLag) continue;
       const other = { ...here, actuatorLag, u: lagged(op, actuatorLag) };
-      const delayThere = Math.max(1, best.delay + here.actuatorLag - actuatorLag);
+      const shift = settings.deadTime === null ? here.actuatorLag - actuatorLag : 0;
+      const delayThere = Math.max(1, best.delay + shift);
       const found = follow(other, { ...best, delay: delayThere });
       if (found.price < best.price) {
         best = found;
@@ -184,7 +187,9 @@ function bestActuatorLag(
   let best = 0;
   let least = Number.POSITIVE_INFINITY;
   for (const lag of actuatorLags) {
-    const travel = twoParameterValve(lagged(op, lag), { S: point.S, J: point.J, model: point.model });
+    const { S, J, model } = point;
+    const start = restingTravel(openingOf(op, settings.period), S, J);
+    const travel = twoParameterValve(lagged(op, lag), { S, J, model, start });
     const { misfit } = fitProcess(travel, target, { ...point, secondLag: 0 }, settings);
     if (misfit < least) {
       least = misfit;
@@ -199,6 +204,7 @@ type Start = ProcessFit & { readonly S: number; readonly J: number };
 /** The best tried point of every band of dead times and of J/S; bands of J/S without one borrow S from the best. */
 function startsFrom(points: readonly GridPoint[], { u, target, settings, largest }: Scene): Start[] {
   const starts: Start[] = [];
+  const opening = openingOf(u, settings.period);
   for (let delayBand = 0; delayBand < delayBands; delayBand++) {
     const here = points.filter(({ band, misfit }) => band === delayBand && misfit < 1);
     if (here.length === 0) continue;
@@ -211,7 +217,7 @@ function startsFrom(points: readonly GridPoint[], { u, target, settings, largest
       ) ?? { ...best, J: (best.S * (low + Math.min(high, 1))) / 2 };
       const S = Math.min(point.S, largest);
       const J = Math.min(point.J, S);
-      const travel = twoParameterValve(u, { S, J, model: point.model });
+      const travel = twoParameterValve(u, { S, J, model: point.model, start: restingTravel(opening, S, J) });
       const process = fitGain(travel, target, { ...point, secondLag: 0 }, settings);
       starts.push({ ...(process.gain > 0 ? process : { ...best, secondLag: 0 }), S, J });
     }

@@ -19,6 +19,7 @@ import {
   type Objective,
   type Scratch,
 } from './objective';
+import { type Opening, openingOf, restingTravel } from './opening';
 import type { ProcessSettings } from './process-fit';
 
 /** How far OP may turn back, as a share of S, before it counts as a reversal. */
@@ -73,6 +74,7 @@ export class PairTrial {
     private readonly op: Float64Array,
     readonly model: ValveModel,
     readonly bands: number,
+    private readonly opening: Opening,
   ) {
     const delays = objective.options.delays.length;
     this.pieces = createTravelPieces(op.length);
@@ -91,7 +93,7 @@ export class PairTrial {
       this.model === 'slides-on',
       reversalTolerance * S,
       landingBlend,
-      op[0],
+      restingTravel(this.opening, S, J),
       pieces,
     );
     misfitOfPieces(objective, pieces, op, lags, bandOf, scratch, best);
@@ -155,9 +157,10 @@ export function searchGrid(
   model: ValveModel,
   smallest: number,
   largest: number,
+  opening: Opening,
 ): GridPoint[] {
   const { lags, delays } = objective.options;
-  const trial = new PairTrial(objective, op, model, Math.min(delayBands, delays.length));
+  const trial = new PairTrial(objective, op, model, Math.min(delayBands, delays.length), opening);
   const everyLag = objective.perLag.map((_, i) => i);
   const tried = new Map<number, GridPoint[]>();
   const pointsAt = (s: number, j: number): GridPoint[] | null => {
@@ -216,13 +219,14 @@ export function firstTheta(
   largest: number,
   settings: ProcessSettings,
 ): number {
+  const opening = openingOf(op, settings.period);
   const { lags, delays } = processGrid(settings);
   const few = { lags: lags.filter((_, i) => i % 4 === 1), delays };
   let best = 0;
   let least = Number.POSITIVE_INFINITY;
   for (const theta of [0.4, 0.75, 0.92, 0.98]) {
     const objective = createObjective(pv, op, { ...settings, ...few, theta });
-    const coarse = searchCoarse(new PairTrial(objective, op, 'slides-on', 1), smallest, largest);
+    const coarse = searchCoarse(new PairTrial(objective, op, 'slides-on', 1, opening), smallest, largest);
     const innovations = Math.min(...coarse.map(({ misfit }) => misfit[0])) * objective.power;
     if (innovations < least) {
       least = innovations;

@@ -49,6 +49,8 @@ const landings: readonly number[] = [0, -1.2, 1.2];
 /** A hypothesis this much dearer than the best is dropped. */
 const dropAt = 14;
 const tolerance = 0.02;
+/** Places at which the stem may rest at the beginning, from OP, in shares of what it takes to break loose. */
+const openingShares: readonly number[] = [-1, -0.75, -0.5, -0.25, 0, 0.25, 0.5, 0.75, 1];
 
 /** State of up to `room` hypotheses, one array an item. */
 class Hypotheses {
@@ -173,7 +175,7 @@ class Tracker {
     private readonly settings: TrackSettings,
     private readonly width: number,
   ) {
-    this.live = new Hypotheses(width);
+    this.live = new Hypotheses(Math.max(width, openingShares.length));
     this.next = new Hypotheses(width * 6);
     const { S, J, lag, secondLag, delay, variance, gain } = settings;
     this.breakAt = (S + J) / 2;
@@ -189,9 +191,9 @@ class Tracker {
   }
 
   run(): Track {
-    const { live, op, behind } = this;
-    for (const share of [-1, -0.5, 0, 0.5, 1]) {
-      const travel = op[0] + share * behind;
+    const { live, op, breakAt } = this;
+    for (const share of openingShares) {
+      const travel = op[0] + share * breakAt;
       live.travel[live.count] = travel;
       live.history[live.count] = this.history.add(0, 0, travel, -1);
       live.count++;

@@ -8,6 +8,7 @@
  */
 import { twoParameterValve, type ValveModel } from '../valve/two-parameter';
 import { filterTravel, type PlainProcess, whiten } from './objective';
+import { openingOf, restingTravel } from './opening';
 import {
   bestTheta,
   createTarget,
@@ -44,8 +45,9 @@ export function testValve(
   line: { readonly frequency: number; readonly coherent: boolean },
 ): ValveTest {
   const u = lagged(op, found.actuatorLag);
+  const opening = openingOf(u, settings.period);
   const element = (S: number, J: number, model: ValveModel): Float64Array =>
-    twoParameterValve(u, { S, J, model });
+    twoParameterValve(u, { S, J, model, start: restingTravel(opening, S, J) });
   const followed = { ...explanation(pv, found.travel, found, settings), price: found.penalty };
   const jumping = bestExplanation(
     pv,

@@ -17,7 +17,8 @@ export function busiestWindow(op: Float64Array): { from: number; to: number } {
   const step = longestSearch / 4;
   let best = { from: 0, to: longestSearch };
   let most = -1;
-  for (let from = 0; from + longestSearch <= samples; from += step) {
+  for (let start = 0; start < samples - longestSearch + step; start += step) {
+    const from = Math.min(start, samples - longestSearch);
     const to = from + longestSearch;
     const turns = at.filter((sample) => sample >= from && sample < to).length;
     if (turns > most) {
