@@ -19,19 +19,30 @@ export interface Description {
   readonly explains: number;
 }
 
+interface Pair {
+  readonly S: number;
+  readonly J: number;
+  /** Share of the travel's variance left unexplained. */
+  readonly left: number;
+}
+
 /** Where to look: a pair known to be near, or null to search everywhere up to `largest`. */
 export interface DescribeSettings {
   readonly near: { readonly S: number; readonly J: number } | null;
   /** Largest S to try, %. */
   readonly largest: number;
-  /** Best starting pairs from which the search goes on, for each variant. Default 5. */
-  readonly starts?: number;
+  /** Whether a few pairs around `near` do, as while histories are compared. Default false: a fine grid around it. */
+  readonly quick?: boolean;
 }
 
 /** Share of the record that is not counted, to forget the start. */
 const notCounted = 0.1;
-const coarseS = 32;
-const coarseJ = 25;
+/** Grids over S and J without a pair to start from: a wide one, then a fine one around its best S. */
+const coarse = { S: 32, J: 25 };
+const finer = { S: 21, J: 41, reach: 0.12 };
+/** Best pairs of a grid from which the search goes on, for each variant. */
+const usualStarts = 5;
+const quickStarts = 2;
 
 /**
  * Share of a travel's variance that an element leaves unexplained, offset free. Sums over OP and travel are made
@@ -130,28 +141,32 @@ export function describeTravel(
 function startingPairs(
   misfit: TravelMisfit,
   model: ValveModel,
-  { near, largest, starts = 5 }: DescribeSettings,
-): { S: number; J: number }[] {
-  const pairs: { S: number; J: number }[] = [];
-  if (near) {
-    for (const s of [0.85, 0.95, 1, 1.06, 1.15]) {
-      for (const j of [0.7, 1, 1.3]) {
-        const S = Math.min(near.S * s, largest);
-        pairs.push({ S, J: Math.min(near.J * j, S) });
-      }
-    }
-  } else {
-    for (let s = 1; s <= coarseS; s++) {
-      for (let j = 0; j < coarseJ; j++) {
-        const S = (s / coarseS) * largest;
-        pairs.push({ S, J: (S * j) / (coarseJ - 1) });
-      }
-    }
+  { near, largest, quick = false }: DescribeSettings,
+): Pair[] {
+  const tried = (pairs: readonly { S: number; J: number }[]): Pair[] =>
+    pairs
+      .map((pair) => ({ ...pair, left: misfit.of(pair.S, pair.J, model) }))
+      .sort((a, b) => a.left - b.left);
+  if (near && quick) {
+    const around = [0.85, 0.95, 1, 1.06, 1.15].flatMap((s) => {
+      const S = Math.min(near.S * s, largest);
+      return [0.7, 1, 1.3].map((j) => ({ S, J: Math.min(near.J * j, S) }));
+    });
+    return tried(around).slice(0, quickStarts);
   }
-  return pairs
-    .map((pair) => ({ ...pair, left: misfit.of(pair.S, pair.J, model) }))
-    .sort((a, b) => a.left - b.left)
-    .slice(0, starts);
+  const wide = near ? [] : tried(pairGrid(largest / coarse.S, largest, coarse.S, coarse.J));
+  const { S } = near ?? wide[0];
+  const low = S * (1 - finer.reach);
+  const fine = tried(pairGrid(low, Math.min(S * (1 + finer.reach), largest), finer.S, finer.J));
+  return [...wide.slice(0, usualStarts), ...fine.slice(0, usualStarts)];
+}
+
+/** Even steps of S from `low` to `high` times even steps of J from 0 to S. */
+function pairGrid(low: number, high: number, stepsS: number, stepsJ: number): { S: number; J: number }[] {
+  return Array.from({ length: stepsS * stepsJ }, (_, i) => {
+    const S = low + ((high - low) * Math.floor(i / stepsJ)) / (stepsS - 1);
+    return { S, J: Math.min(S, (S * (i % stepsJ)) / (stepsJ - 1)) };
+  });
 }
 
 function descend(
@@ -159,7 +174,7 @@ function descend(
   model: ValveModel,
   start: { S: number; J: number },
   largest: number,
-): { S: number; J: number; left: number } {
+): Pair {
   let { S, J } = start;
   let left = misfit.of(S, J, model);
   let step = 0.05 * S;

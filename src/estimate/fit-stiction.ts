@@ -144,12 +144,14 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
   const modelTravel = twoParameterValve(record.op, { S, J, model, start: travel[0] });
   const residual = residualOf(record.pv, travel, reconstruction, settings);
   const simulatedPv = simulated(record.pv, residual, period / record.samplePeriod);
+  // OP of a sample acts until the next one, so PV answers a sample later even without dead time.
+  const secondsOfDelay = Math.max(0, reconstruction.delay - 1) * record.samplePeriod;
   const unresolved = measured ? null : whyJIsNotResolved(intervals, room, processGain !== null);
   if (unresolved) notes.push({ code: 'jump-not-resolved', text: unresolved });
   if (!measured && deadTime === null) {
     notes.push({
       code: 'dead-time-fitted',
-      text: `The dead time was fitted (${(reconstruction.delay * record.samplePeriod).toFixed(1)} s). A longer dead time with a smaller S fits nearly as well; state a known one with --dead-time.`,
+      text: `The dead time was fitted (${secondsOfDelay.toFixed(1)} s). A longer dead time with a smaller S fits nearly as well; state a known one with --dead-time.`,
     });
   }
   const fit: StictionFit = {
@@ -172,7 +174,7 @@ export function fitStiction(record: LoopRecord, options: FitOptions = {}): Stict
       lag: settings.integrating
         ? null
         : (reconstruction.lag + reconstruction.secondLag) * record.samplePeriod,
-      deadTime: reconstruction.delay * record.samplePeriod,
+      deadTime: secondsOfDelay,
     },
   };
   refused.push(...whyNumbersAreRefused(record, fit, test, largest));
@@ -212,7 +214,7 @@ function settingsFor(
     integrating,
     sign: signOfGain(record, processGain, trusted ? controller : null),
     period: period / samplePeriod,
-    deadTime: deadTime === null ? null : deadTime / samplePeriod,
+    deadTime: deadTime === null ? null : deadTime / samplePeriod + 1,
     gainLow: stated === null ? 0 : stated * (1 - statedGainTolerance),
     gainHigh: stated === null ? Number.POSITIVE_INFINITY : stated * (1 + statedGainTolerance),
     controller: trusted ? controller : null,

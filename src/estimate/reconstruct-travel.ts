@@ -255,7 +255,7 @@ function follow(
   const refinements = width === narrowBeam ? 2 : 4;
   const process = fitProcess(travel, target, { lag, secondLag, delay }, settings, refinements);
   const kept = process.gain > 0 ? process : { lag, secondLag, delay, gain, misfit: 1 };
-  const element = describeTravel(op, travel, { near: { S, J }, largest: largest * 1.05, starts: 2 });
+  const element = describeTravel(op, travel, { near: { S, J }, largest: largest * 1.05, quick: true });
   const innovations = kept.misfit * target.power;
   const unstable = samples * priceOfGain(kept, settings);
   return {

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { createObjective, simulateProcess } from '../../src/estimate/objective';
+import { openingOf } from '../../src/estimate/opening';
 import { swingOf } from '../../src/estimate/process-fit';
 import { firstTheta, gridSteps, PairTrial, processGrid, searchGrid } from '../../src/estimate/search';
 import { seededRandom } from '../../src/signal/random';
@@ -13,6 +14,7 @@ const op = Float64Array.from(
   (_, k) => 50 + 2.5 * Math.sin(k / 8) + 1.5 * Math.sin(k / 37 + 1),
 );
 const largest = swingOf(op);
+const opening = openingOf(op, 50);
 const smallest = 0.1;
 const anyGain = { sign: 1, gainLow: 0, gainHigh: Number.POSITIVE_INFINITY } as const;
 
@@ -52,9 +54,9 @@ describe('searchGrid', () => {
         const [S, J] = [3.2, 1.3];
         const pv = pvBehind(twoParameterValve(op, { S, J, model }), integrating, 0.02);
         const objective = createObjective(pv, op, { ...anyGain, ...grid, theta: 0.8, integrating });
-        const points = searchGrid(objective, op, model, smallest, largest);
+        const points = searchGrid(objective, op, model, smallest, largest, opening);
 
-        const trial = new PairTrial(objective, op, model, 1);
+        const trial = new PairTrial(objective, op, model, 1, opening);
         const everyLag = grid.lags.map((_, i) => i);
         let least = Number.POSITIVE_INFINITY;
         let at = { S: 0, J: 0 };
@@ -91,7 +93,7 @@ describe('searchGrid', () => {
       const travel = twoParameterValve(cycle, { S, J, start: 48 });
       const pv = pvBehind(travel, false, 0.02);
       const objective = createObjective(pv, cycle, { ...anyGain, ...grid, theta: 0.8, integrating: false });
-      const [best] = searchGrid(objective, cycle, 'slides-on', smallest, 3.5);
+      const [best] = searchGrid(objective, cycle, 'slides-on', smallest, 3.5, openingOf(cycle, 57));
       expect(best.misfit).toBeLessThan(0.15);
       expectClose(best.S, S, { absolute: 0.15 }, `S for J = ${J}`);
       expectClose(best.J, J, { absolute: 0.25 * S }, `J for J = ${J}`);
@@ -102,7 +104,7 @@ describe('searchGrid', () => {
   it('gives its points best first, within the bounds, each with the misfit of its own pair', () => {
     const pv = pvBehind(twoParameterValve(op, { S: 3.2, J: 1.3 }), false, 0.05);
     const objective = createObjective(pv, op, { ...anyGain, ...grid, theta: 0.8, integrating: false });
-    const points = searchGrid(objective, op, 'slides-on', 1, 4);
+    const points = searchGrid(objective, op, 'slides-on', 1, 4, opening);
     for (let i = 0; i < points.length; i++) {
       const { S, J, misfit, lag, delay, gain } = points[i];
       if (i > 0) expect(misfit).toBeGreaterThanOrEqual(points[i - 1].misfit);
@@ -115,9 +117,9 @@ describe('searchGrid', () => {
     }
     const [{ S, J, misfit }] = points;
     const everyLag = grid.lags.map((_, i) => i);
-    const again = new PairTrial(objective, op, 'slides-on', 1).of(S, J, everyLag);
+    const again = new PairTrial(objective, op, 'slides-on', 1, opening).of(S, J, everyLag);
     expectClose(again.misfit[0], misfit, { absolute: 1e-12 });
-    expect(searchGrid(objective, op, 'slides-on', 1, 4)).toEqual(points);
+    expect(searchGrid(objective, op, 'slides-on', 1, 4, opening)).toEqual(points);
   });
 });
 

@@ -9,11 +9,11 @@
 #include <stdlib.h>
 #include <time.h>
 
-static void walk(const double *op, int samples, double S, double J, int slides_on, double tolerance, double blend,
-                 double *travel)
+static void walk(const double *op, int samples, double S, double J, double rest, int slides_on, double tolerance,
+                 double blend, double *travel)
 {
     const double break_at = (S + J) / 2, behind = (S - J) / 2;
-    double at = op[0], extreme = 0;
+    double at = rest, extreme = 0;
     int direction = 0;
     for (int k = 0; k < samples; k++) {
         if (direction != 0) {
@@ -76,6 +76,7 @@ int main(void)
     const int samples = head[0], order = head[1], lags = head[2], delays = head[3], pairs = head[4];
     const double tolerance = head[5], blend = head[6], gain_low = head[7], gain_high = head[8];
     const double *poles = take(lags * order), *delay = take(delays), *S = take(pairs), *J = take(pairs);
+    const double *rest = take(pairs);
     const double *target = take(samples), *op = take(samples);
     double *travel = malloc(samples * sizeof *travel), *x = malloc(samples * sizeof *x);
     double *found = malloc(2 * pairs * 4 * sizeof *found);
@@ -89,7 +90,7 @@ int main(void)
             double *best = found + 4 * (variant * pairs + pair);
             best[0] = 1;
             best[1] = best[2] = best[3] = 0;
-            walk(op, samples, S[pair], J[pair], variant == 0, tolerance * S[pair], blend, travel);
+            walk(op, samples, S[pair], J[pair], rest[pair], variant == 0, tolerance * S[pair], blend, travel);
             for (int lag = 0; lag < lags; lag++) {
                 filter(travel, samples, poles + lag * order, order, x);
                 double whole = 0;

@@ -9,10 +9,10 @@ import time
 import numpy as np
 
 
-def walk(op, S, J, slides_on, tolerance, blend):
+def walk(op, S, J, rest, slides_on, tolerance, blend):
     """Travel of every pair, one row a sample."""
     break_at, behind = (S + J) / 2, (S - J) / 2
-    at = np.full(S.size, op[0])
+    at = rest.copy()
     extreme = np.zeros(S.size)
     direction = np.zeros(S.size)
     travel = np.empty((op.size, S.size))
@@ -53,8 +53,8 @@ def main():
     data = np.frombuffer(sys.stdin.buffer.read())
     samples, order, lags, delays, pairs = data[:5].astype(int)
     tolerance, blend, gain_low, gain_high = data[5:9]
-    ends = np.cumsum([9, lags * order, delays, pairs, pairs, samples, samples])
-    poles, delay, S, J, target, op = np.split(data, ends[:-1])[1:7]
+    ends = np.cumsum([9, lags * order, delays, pairs, pairs, pairs, samples, samples])
+    poles, delay, S, J, rest, target, op = np.split(data, ends[:-1])[1:8]
     poles, delay = poles.reshape(lags, order), delay.astype(int)
 
     start = time.perf_counter()
@@ -64,7 +64,7 @@ def main():
         shifted[: samples - by, d] = target[by:]
     found = []
     for variant in range(2):
-        travel = walk(op, S, J, variant == 0, tolerance * S, blend)
+        travel = walk(op, S, J, rest, variant == 0, tolerance * S, blend)
         moves = np.diff(travel, axis=0, prepend=travel[:1])
         best = np.ones(pairs)
         where = np.zeros((pairs, 2), dtype=int)

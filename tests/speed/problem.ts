@@ -1,5 +1,6 @@
 /** One record as the grid search of stage 1 meets it, for the fast search and for its rivals. */
 import { createObjective, type Objective, type ObjectiveOptions } from '../../src/estimate/objective';
+import { type Opening, openingOf, restingTravel } from '../../src/estimate/opening';
 import { swingOf } from '../../src/estimate/process-fit';
 import {
   firstTheta,
@@ -45,6 +46,8 @@ export interface Problem {
   /** Bounds of S, %. */
   readonly smallest: number;
   readonly largest: number;
+  /** Where the stem begins. */
+  readonly opening: Opening;
   readonly pairs: readonly (GridPair & { readonly S: number; readonly J: number })[];
 }
 
@@ -74,13 +77,21 @@ export function makeProblem({ pv, op, samplePeriod, integrating, sign }: Signals
     if (S < smallest) continue;
     for (let j = 0; j < gridSteps; j++) pairs.push({ s, j, S, J: (S * j) / (gridSteps - 1) });
   }
-  return { pv, op, options: { ...settings, ...processGrid(settings), theta }, smallest, largest, pairs };
+  return {
+    pv,
+    op,
+    options: { ...settings, ...processGrid(settings), theta },
+    smallest,
+    largest,
+    opening: openingOf(op, settings.period),
+    pairs,
+  };
 }
 
 /** What the fast search tried in each variant: tables of the objective first, then the search. */
-export function searchFast({ pv, op, options, smallest, largest }: Problem): GridPoint[][] {
+export function searchFast({ pv, op, options, smallest, largest, opening }: Problem): GridPoint[][] {
   const objective = createObjective(pv, op, options);
-  return VARIANTS.map((model) => searchGrid(objective, op, model, smallest, largest));
+  return VARIANTS.map((model) => searchGrid(objective, op, model, smallest, largest, opening));
 }
 
 /** The pairs that the fast search tried, best first; it gives a pair once for each band of dead times. */
@@ -97,7 +108,7 @@ export function pairsTried(points: readonly GridPoint[], { largest }: Problem): 
 
 /** The problem as the rivals read it: nine numbers, then poles of each lag, dead times, S, J, filtered PV, OP. */
 export function layOut(problem: Problem): Float64Array {
-  const { pv, op, options, pairs } = problem;
+  const { pv, op, options, pairs, opening } = problem;
   const objective: Objective = createObjective(pv, op, options);
   const { gainLow, gainHigh, delays } = options;
   const poles = objective.perLag.map((tables) => tables.poles);
@@ -108,6 +119,7 @@ export function layOut(problem: Problem): Float64Array {
     ...delays,
     ...pairs.map(({ S }) => S),
     ...pairs.map(({ J }) => J),
+    ...pairs.map(({ S, J }) => restingTravel(opening, S, J)),
     ...objective.target,
     ...op,
   ]);

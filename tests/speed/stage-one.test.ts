@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { openingOf } from '../../src/estimate/opening';
 import { gridSteps } from '../../src/estimate/search';
 import { seededRandom } from '../../src/signal/random';
 import { expectClose } from '../closeness';
@@ -42,7 +43,7 @@ function problemThatRests(integrating: boolean): Problem {
     gainLow: 0,
     gainHigh: Number.POSITIVE_INFINITY,
   };
-  return { pv, op, options, smallest: 0, largest, pairs };
+  return { pv, op, options, smallest: 0, largest, opening: openingOf(op, 60), pairs };
 }
 
 describe.each([
