@@ -32,6 +32,8 @@ const doubtfulWins = 0.65;
 /** t of jump against dead band alone that a very regular cycle of a self-regulating loop asks for, and how regular. */
 const jumpT = 1.5;
 const veryRegular = 10;
+/** Share of odd harmonics below which a cycle is a clean sine; a triangle has 0.014. Own choice. */
+const sineShare = 0.002;
 /** J/S below which an integrating loop's cycle is put down to dead band alone. Own choice. */
 const lostMotionRatio = 0.12;
 /** 2 pi Ti / period near 1: from here on control is proportional-dominated at the cycle. Own choice. */
@@ -80,12 +82,19 @@ function deadBandWouldNotCycle({ opCycle, stiction }: CauseInput, test: ValveTes
   );
 }
 
+/** A clean sine in OP and PV alike, steady over the record: no valve that sticks and slips makes that. */
+function cleanSine({ opCycle, pvCycle }: CauseInput, test: ValveTest): boolean {
+  const odd = Math.max(opCycle.oddHarmonicShare ?? 1, pvCycle.oddHarmonicShare ?? 1);
+  return test.tWithoutLine !== null && odd < sineShare;
+}
+
 function valveStands(input: CauseInput, test: ValveTest): boolean {
   const least = cycling(input) ? clearT.cycling : clearT.hunting;
   return (
     decisiveT(test) > least &&
     test.blocksForValve / test.blocks >= clearWins &&
-    !deadBandWouldNotCycle(input, test)
+    !deadBandWouldNotCycle(input, test) &&
+    !cleanSine(input, test)
   );
 }
 
@@ -154,7 +163,7 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
   }
 
   const deadBandOnly = deadBandWouldNotCycle(input, test);
-  if (valveMayMatter(input, test) && !deadBandOnly) {
+  if (valveMayMatter(input, test) && !deadBandOnly && !cleanSine(input, test)) {
     return cannotTell(
       [
         valveSentence,
@@ -164,14 +173,16 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
       [],
     );
   }
-  const cleared = `Stiction: ${lower(coherent ? lineSentence : valveSentence)}`;
+  const cleared = cleanSine(input, test)
+    ? 'Stiction: OP and PV are clean sines, which a valve that sticks and slips does not make.'
+    : `Stiction: ${lower(coherent ? lineSentence : valveSentence)}`;
   if (coherent) {
     return {
       verdict: 'outside-disturbance',
       confidence: 0.8,
       reasons: [
         `OP carries a steady line at a period of ${seconds(opCycle.period)}, sharper than a loop makes by itself.`,
-        lineSentence,
+        ...(cleanSine(input, test) ? [] : [lineSentence]),
       ],
       ruledOut: [
         cleared,

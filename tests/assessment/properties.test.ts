@@ -93,7 +93,7 @@ describe('an assessment', () => {
 
   it('scales S and J with OP', () => {
     for (const times of [0.5, 1.7]) {
-      const other = assessLoop({ ...sticky, op: sticky.op.map((value) => 50 + times * (value - 50)) });
+      const other = assessLoop({ ...sticky, op: sticky.op.map((value) => times * value) });
       expectSame(other, times, 0.02);
     }
   });
