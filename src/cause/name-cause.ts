@@ -173,16 +173,18 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
       [],
     );
   }
+  const lineDecides = coherent && (test.tWithoutLine as number) < test.tOverLine;
+  const decidingSentence = lineDecides ? lineSentence : valveSentence;
   const cleared = cleanSine(input, test)
     ? 'Stiction: OP and PV are clean sines, which a valve that sticks and slips does not make.'
-    : `Stiction: ${lower(coherent ? lineSentence : valveSentence)}`;
+    : `Stiction: ${lower(decidingSentence)}`;
   if (coherent) {
     return {
       verdict: 'outside-disturbance',
       confidence: 0.8,
       reasons: [
         `OP carries a steady line at a period of ${seconds(opCycle.period)}, sharper than a loop makes by itself.`,
-        ...(cleanSine(input, test) ? [] : [lineSentence]),
+        ...(cleanSine(input, test) ? [] : [decidingSentence]),
       ],
       ruledOut: [
         cleared,
