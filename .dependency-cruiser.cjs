@@ -9,6 +9,9 @@ const rooms = {
   evidence: ['signal', 'oscillation', 'record', 'valve'],
   cause: ['signal', 'oscillation', 'record', 'process', 'evidence', 'estimate', 'assessment'],
   assessment: ['signal', 'valve', 'process', 'oscillation', 'record', 'evidence', 'estimate', 'cause'],
+  audit: ['signal', 'process', 'oscillation', 'record', 'estimate', 'assessment'],
+  'field-test': ['signal', 'valve', 'process', 'oscillation', 'record', 'estimate', 'assessment'],
+  forecast: ['signal', 'valve', 'process', 'oscillation', 'record', 'estimate', 'assessment', 'field-test'],
   figures: [
     'signal',
     'valve',
@@ -19,10 +22,24 @@ const rooms = {
     'estimate',
     'cause',
     'assessment',
+    'audit',
+    'field-test',
+    'forecast',
   ],
-  notebook: ['figures', 'assessment', 'report', 'record', 'estimate', 'evidence', 'oscillation'],
-  report: ['figures', 'assessment', 'record'],
-  cli: ['record', 'assessment', 'report', 'process', 'estimate'],
+  notebook: [
+    'figures',
+    'assessment',
+    'audit',
+    'field-test',
+    'forecast',
+    'report',
+    'record',
+    'estimate',
+    'evidence',
+    'oscillation',
+  ],
+  report: ['figures', 'assessment', 'audit', 'field-test', 'forecast', 'record'],
+  cli: ['record', 'assessment', 'audit', 'field-test', 'report', 'process', 'estimate'],
 };
 
 const oneWay = Object.entries(rooms).map(([room, allowed]) => ({
