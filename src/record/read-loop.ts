@@ -92,7 +92,7 @@ export function readLoop(source: string | DataFrameLike, options: ReadLoopOption
   refuseUnknownOptions('readLoop', options, OPTIONS);
   refuseUnknownValue('service', options.service, services);
   refuseUnknownValue('response', options.response, responses);
-  const { table, name, what, sha256 } = open(source);
+  const { table, name, what, sha256 } = openSource(source);
   const { series, notes: layoutNotes } = seriesOf(table, options.time, what);
   const chosen = chooseColumns(series, options, what);
   const signals = readSignals(chosen, options, what);
@@ -141,7 +141,7 @@ function refuseUnknownValue(option: string, value: string | undefined, known: re
   }
 }
 
-interface Opened {
+export interface OpenedSource {
   readonly table: Table;
   /** File name without folders, or `data frame`. */
   readonly name: string;
@@ -150,7 +150,8 @@ interface Opened {
   readonly sha256: string;
 }
 
-function open(source: string | DataFrameLike): Opened {
+/** @throws UnreadableInput for what is not there, is a folder, is empty, or holds no table */
+export function openSource(source: string | DataFrameLike): OpenedSource {
   const hash = createHash('sha256');
   if (typeof source !== 'string') {
     const table = readDataFrame(source);

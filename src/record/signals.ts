@@ -33,12 +33,21 @@ export interface Signals {
 /** More empty cells than this in a column are the way it was logged, not missing samples (own choice). */
 const emptyByDesign = 0.3;
 
+/** Reads series one by one; what they have in common (stamps, notes) is read and told once. */
+export interface SignalReader {
+  /** A set point is often stored only when it moves, and its quality is not asked for. */
+  read(series: Series, isSetPoint?: boolean): Signal;
+  /** null, with a note, where the modes are not understood. */
+  readMode(series: Series): Signal | null;
+  /** What reading so far came to. */
+  done(): Pick<Signals, 'duplicates' | 'unplaced' | 'notes'>;
+}
+
 /**
  * @param what how the source is called in messages
- * @throws UnreadableInput for stamps and cells that cannot be read, for time that goes backwards, and for a column
- *   without any number
+ * @throws UnreadableInput from its methods, as {@link readSignals}
  */
-export function readSignals(chosen: ChosenColumns, options: TimeOptions, what: string): Signals {
+export function createSignalReader(options: TimeOptions, what: string): SignalReader {
   const notes: Note[] = [];
   const seen = new Map<Cells, ReadStamps>();
   const stampsOf = ({ stamps }: Series): ReadStamps => {
@@ -55,7 +64,7 @@ export function readSignals(chosen: ChosenColumns, options: TimeOptions, what: s
     return known;
   };
 
-  const read = (series: Series, role: 'pv' | 'op' | 'sp' | 'travel'): Signal => {
+  const read = (series: Series, isSetPoint = false): Signal => {
     const stamps = stampsOf(series);
     const column = readNumbers(series.cells(), series.name, series.rowNumber);
     const values = stamps.pick(column.values);
@@ -72,7 +81,7 @@ export function readSignals(chosen: ChosenColumns, options: TimeOptions, what: s
         text: `"${series.name}" has ${column.bad} of ${count} samples without a value (${column.words.slice(0, 5).join(', ') || 'not finite'}).`,
       });
     }
-    if (series.quality !== null && role !== 'sp') {
+    if (series.quality !== null && !isSetPoint) {
       const cells = series.quality.cells();
       const good = isGoodQuality(cells);
       if (good === null) {
@@ -100,7 +109,7 @@ export function readSignals(chosen: ChosenColumns, options: TimeOptions, what: s
       throw new UnreadableInput(`The column "${series.name}" of ${what} has no number in it.`);
     }
     // A set point is often stored only when it moves; other columns may each have their own rows.
-    const ownRows = column.empty > 0 && (role === 'sp' || column.empty > emptyByDesign * count);
+    const ownRows = column.empty > 0 && (isSetPoint || column.empty > emptyByDesign * count);
     if (!ownRows) {
       if (column.empty > 0) {
         notes.push({
@@ -125,20 +134,36 @@ export function readSignals(chosen: ChosenColumns, options: TimeOptions, what: s
     };
   };
 
-  const pv = read(chosen.pv, 'pv');
-  const op = read(chosen.op, 'op');
-  const sp = chosen.sp === null ? null : read(chosen.sp, 'sp');
-  const travel = chosen.travel === null ? null : read(chosen.travel, 'travel');
-  const mode = chosen.mode === null ? null : readMode(chosen.mode, stampsOf(chosen.mode), notes);
-  const stamps = [...seen.values()];
-  const duplicates = stamps.reduce((sum, one) => sum + one.duplicates, 0);
-  if (duplicates > 0) {
-    notes.push({
-      code: 'duplicates',
-      text: `${duplicates} row${duplicates > 1 ? 's' : ''} whose time stamp was there before ${duplicates > 1 ? 'were' : 'was'} left out.`,
-    });
-  }
-  return { pv, op, sp, travel, mode, duplicates, unplaced: stamps.some(({ unplaced }) => unplaced), notes };
+  const done = (): Pick<Signals, 'duplicates' | 'unplaced' | 'notes'> => {
+    const stamps = [...seen.values()];
+    const duplicates = stamps.reduce((sum, one) => sum + one.duplicates, 0);
+    const told: Note[] =
+      duplicates === 0
+        ? []
+        : [
+            {
+              code: 'duplicates',
+              text: `${duplicates} row${duplicates > 1 ? 's' : ''} whose time stamp was there before ${duplicates > 1 ? 'were' : 'was'} left out.`,
+            },
+          ];
+    return { duplicates, unplaced: stamps.some(({ unplaced }) => unplaced), notes: [...notes, ...told] };
+  };
+  return { read, readMode: (series) => readMode(series, stampsOf(series), notes), done };
+}
+
+/**
+ * @param what how the source is called in messages
+ * @throws UnreadableInput for stamps and cells that cannot be read, for time that goes backwards, and for a column
+ *   without any number
+ */
+export function readSignals(chosen: ChosenColumns, options: TimeOptions, what: string): Signals {
+  const { read, readMode, done } = createSignalReader(options, what);
+  const pv = read(chosen.pv);
+  const op = read(chosen.op);
+  const sp = chosen.sp && read(chosen.sp, true);
+  const travel = chosen.travel && read(chosen.travel);
+  const mode = chosen.mode && readMode(chosen.mode);
+  return { pv, op, sp, travel, mode, ...done() };
 }
 
 function readMode(series: Series, stamps: ReadStamps, notes: Note[]): Signal | null {
