@@ -43,6 +43,9 @@ const finer = { S: 21, J: 41, reach: 0.12 };
 /** Best pairs of a grid from which the search goes on, for each variant. */
 const usualStarts = 5;
 const quickStarts = 2;
+/** Smallest step of the search as a share of S, and the gain in the share left unexplained that is worth a step. */
+const usualSteps = { smallest: 0.002, gain: 1e-9 };
+const quickSteps = { smallest: 0.008, gain: 1e-5 };
 
 /**
  * Share of a travel's variance that an element leaves unexplained, offset free. Sums over OP and travel are made
@@ -130,7 +133,7 @@ export function describeTravel(
   let best: { S: number; J: number; model: ValveModel; left: number } | null = null;
   for (const model of ['slides-on', 'sticks-again'] as const) {
     for (const start of startingPairs(misfit, model, settings)) {
-      const found = descend(misfit, model, start, settings.largest);
+      const found = descend(misfit, model, start, settings);
       if (!best || found.left < best.left) best = { ...found, model };
     }
   }
@@ -173,13 +176,14 @@ function descend(
   misfit: TravelMisfit,
   model: ValveModel,
   start: { S: number; J: number },
-  largest: number,
+  { largest, quick = false }: DescribeSettings,
 ): Pair {
   let { S, J } = start;
   let left = misfit.of(S, J, model);
   let step = 0.05 * S;
   let turns = 0;
-  while (step > 0.002 * S && turns++ < 40) {
+  const { smallest, gain } = quick ? quickSteps : usualSteps;
+  while (step > smallest * S && turns++ < 40) {
     let moved = false;
     for (const [ds, dj] of [
       [1, 0],
@@ -195,7 +199,7 @@ function descend(
       const nextJ = J + dj * step;
       if (nextS <= 0 || nextS > largest || nextJ < 0 || nextJ > nextS) continue;
       const there = misfit.of(nextS, nextJ, model);
-      if (there < left - 1e-9) {
+      if (there < left - gain) {
         S = nextS;
         J = nextJ;
         left = there;

@@ -98,6 +98,9 @@ const directions: readonly (readonly [number, number, number])[] = [
   [0, -1, 1],
 ];
 
+/** A change of the process that makes the misfit smaller by no more than this is not followed up. */
+const leastGain = 1e-5;
+
 /** Refines lags and dead time for a fixed travel by a pattern that shrinks `rounds` times, from `start`. */
 export function fitProcess(
   travel: Float64Array,
@@ -124,7 +127,7 @@ export function fitProcess(
         if (next.secondLag > next.lag) continue;
         if (next.lag === best.lag && next.secondLag === best.secondLag && next.delay === best.delay) continue;
         const there = fitGain(travel, target, next, settings);
-        if (there.misfit < best.misfit - 1e-9) {
+        if (there.misfit < best.misfit - leastGain) {
           best = there;
           moved = true;
         }

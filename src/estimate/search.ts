@@ -28,8 +28,9 @@ export const reversalTolerance = 0.02;
 const landingBlend = 0.5;
 /** Steps of the grid in S (shares of the largest S) and in J/S. */
 export const gridSteps = 50;
-const coarseStepS = 2;
-const coarseStepJ = 7;
+/** Steps of the thinned grid, and of the still thinner one that does to choose the disturbance filter. */
+const thinned = { S: 2, J: 7 };
+const thinnest = { S: 4, J: 12 };
 /** Bands of dead times: a long one with a small S fits nearly as well as a short one with a large S. */
 export const delayBands = 3;
 const climbersKept = 5;
@@ -113,13 +114,18 @@ function gridPair(s: number, j: number, largest: number): { S: number; J: number
   return { S, J: Math.min(S, (S * j) / (gridSteps - 1)) };
 }
 
-/** The thinned grid with a few of the lags. */
-function searchCoarse(trial: PairTrial, smallest: number, largest: number): CoarsePoint[] {
+/** A thinned grid with a few of the lags. */
+function searchCoarse(
+  trial: PairTrial,
+  smallest: number,
+  largest: number,
+  steps: { readonly S: number; readonly J: number },
+): CoarsePoint[] {
   const lagCount = trial.objective.perLag.length;
   const fewLags = trial.objective.perLag.map((_, i) => i).filter((i) => i % 4 === 1 || lagCount < 5);
   const coarse: CoarsePoint[] = [];
-  for (let s = 0; s < gridSteps; s += coarseStepS) {
-    for (let j = 0; j < gridSteps; j += coarseStepJ) {
+  for (let s = 0; s < gridSteps; s += steps.S) {
+    for (let j = 0; j < gridSteps; j += steps.J) {
       const { S, J } = gridPair(s, j, largest);
       if (S < smallest) continue;
       coarse.push({ s, j, misfit: [...trial.of(S, J, fewLags).misfit] });
@@ -184,7 +190,7 @@ export function searchGrid(
     }
     return points;
   };
-  const coarse = searchCoarse(trial, smallest, largest);
+  const coarse = searchCoarse(trial, smallest, largest, thinned);
   for (let band = 0; band < trial.bands; band++) {
     coarse.sort((a, b) => a.misfit[band] - b.misfit[band]);
     for (const { s, j } of coarse.slice(0, climbersKept))
@@ -226,7 +232,8 @@ export function firstTheta(
   let least = Number.POSITIVE_INFINITY;
   for (const theta of [0.4, 0.75, 0.92, 0.98]) {
     const objective = createObjective(pv, op, { ...settings, ...few, theta });
-    const coarse = searchCoarse(new PairTrial(objective, op, 'slides-on', 1, opening), smallest, largest);
+    const trial = new PairTrial(objective, op, 'slides-on', 1, opening);
+    const coarse = searchCoarse(trial, smallest, largest, thinnest);
     const innovations = Math.min(...coarse.map(({ misfit }) => misfit[0])) * objective.power;
     if (innovations < least) {
       least = innovations;

@@ -154,6 +154,8 @@ export function trackTravel(
 class Tracker {
   private readonly live: Hypotheses;
   private readonly next: Hypotheses;
+  /** Places in `next`, cheapest first. */
+  private readonly order: Int32Array;
   private readonly history = new History();
   private readonly breakAt: number;
   private readonly behind: number;
@@ -177,6 +179,7 @@ class Tracker {
   ) {
     this.live = new Hypotheses(Math.max(width, openingShares.length));
     this.next = new Hypotheses(width * 6);
+    this.order = new Int32Array(width * 6);
     const { S, J, lag, secondLag, delay, variance, gain } = settings;
     this.breakAt = (S + J) / 2;
     this.behind = (S - J) / 2;
@@ -368,12 +371,20 @@ class Tracker {
   /** Keeps the cheapest hypotheses of `next`, without those that a cheaper one stands for. */
   private keepBest(k: number): void {
     const { live, next, mergeError } = this;
-    const order: number[] = [];
-    for (let i = 0; i < next.count; i++) if (next.cost[i] <= this.best + dropAt) order.push(i);
-    order.sort((a, b) => next.cost[a] - next.cost[b]);
+    const { order } = this;
+    let count = 0;
+    // Sorted by cost as they come in: there are few, and equal ones keep their order.
+    for (let i = 0; i < next.count; i++) {
+      const cost = next.cost[i];
+      if (cost > this.best + dropAt) continue;
+      let at = count++;
+      for (; at > 0 && next.cost[order[at - 1]] > cost; at--) order[at] = order[at - 1];
+      order[at] = i;
+    }
     const sameTravel = 0.02 * this.settings.S;
     live.count = 0;
-    for (const i of order) {
+    for (let o = 0; o < count; o++) {
+      const i = order[o];
       let standsFor = false;
       for (let l = 0; l < live.count && !standsFor; l++) {
         standsFor =
