@@ -7,26 +7,37 @@ import type { Table } from './table';
 /** In the order of trust: a tab or semicolon is hardly anything else, a comma may be a decimal comma. */
 const separators = ['\t', ';', ','] as const;
 /** Lines on which the separator is judged. */
-const judged = 60;
+export const judged: number = 60;
 
 /**
- * Text of a file: UTF-8, or UTF-16 with a byte order mark; other bytes are taken for Latin-1.
+ * Encodings to try on text, in this order: UTF-16 with a byte order mark, or UTF-8, and Latin-1 where that fails.
  *
+ * @param start the first 64 kB or more of the file
  * @throws UnreadableInput for bytes that are no text
  */
-export function decodeText(bytes: Uint8Array, what: string): string {
-  const mark = `${bytes[0]?.toString(16)} ${bytes[1]?.toString(16)}`;
-  if (mark === 'ff fe') return new TextDecoder('utf-16le').decode(bytes);
-  if (mark === 'fe ff') return new TextDecoder('utf-16be').decode(bytes);
-  if (bytes.subarray(0, 65536).includes(0)) {
+export function encodingsOf(start: Uint8Array, what: string): readonly [string, string?] {
+  const mark = `${start[0]?.toString(16)} ${start[1]?.toString(16)}`;
+  if (mark === 'ff fe') return ['utf-16le'];
+  if (mark === 'fe ff') return ['utf-16be'];
+  if (start.subarray(0, 65536).includes(0)) {
     throw new UnreadableInput(
       `${what} is not a text file. Export the loop as .csv, .txt or .tsv, or as .xlsx.`,
     );
   }
+  return ['utf-8', 'latin1'];
+}
+
+/**
+ * Text of a whole file.
+ *
+ * @throws UnreadableInput for bytes that are no text
+ */
+export function decodeText(bytes: Uint8Array, what: string): string {
+  const [first, other] = encodingsOf(bytes, what);
   try {
-    return new TextDecoder('utf-8', { fatal: true }).decode(bytes);
+    return new TextDecoder(first, { fatal: other !== undefined }).decode(bytes);
   } catch {
-    return new TextDecoder('latin1').decode(bytes);
+    return new TextDecoder(other).decode(bytes);
   }
 }
 
@@ -42,7 +53,7 @@ export function readDelimited(text: string, what: string): Table {
 }
 
 /** The separator that cuts most of the first lines into the same number of cells, more than one. */
-function separatorOf(text: string): string {
+export function separatorOf(text: string): string {
   let best = { separator: ',', share: 0 };
   for (const separator of separators) {
     const { data } = parse<string[]>(text, { delimiter: separator, preview: judged });

@@ -15,14 +15,22 @@ const isEmpty = (cell: Cell | undefined): boolean => cell === undefined || Strin
 const isValue = (cell: Cell): boolean => typeof cell === 'number' || valueLike.test(cell.trim());
 const filled = (row: readonly Cell[]): Cell[] => row.filter((cell) => !isEmpty(cell));
 
+/** What stands above the data. */
+export interface Header {
+  readonly names: readonly string[];
+  /** Units from a line of their own; '' where there is none. */
+  readonly units: readonly string[];
+  /** Row of the first data, counted from 0. */
+  readonly dataFrom: number;
+  readonly notes: readonly Note[];
+}
+
 /**
- * Makes a table of rows of cells: names from the header, then the rows of data below it.
- *
- * @param rows all rows, blank ones too
+ * @param rows all rows or the first ones, blank ones too; no more than the first 60 are looked at
  * @param what how the source is called in messages
- * @throws UnreadableInput when there is no header, no row below it, or a row that is wider than the header
+ * @throws UnreadableInput when there is no header
  */
-export function tableOf(rows: readonly (readonly Cell[])[], what: string): Table {
+export function headerOf(rows: readonly (readonly Cell[])[], what: string): Header {
   const first = rows.findIndex((row, i) => i < lookedAt && filled(row).length > 1 && row.some(isValueCell));
   const textRows = (first < 0 ? rows.slice(0, lookedAt) : rows.slice(0, first))
     .map((row, at) => ({ row, at }))
@@ -40,7 +48,6 @@ export function tableOf(rows: readonly (readonly Cell[])[], what: string): Table
   const hasUnits =
     before !== undefined && before.at === last.at - 1 && knownNames(before.row) > knownNames(last.row);
   const header = hasUnits ? before : last;
-  const dataFrom = first < 0 ? rows.length : first;
   let width = header.row.length;
   while (width > 0 && isEmpty(header.row[width - 1])) width--;
   const names = Array.from({ length: width }, (_, c) => String(header.row[c]).trim());
@@ -55,38 +62,91 @@ export function tableOf(rows: readonly (readonly Cell[])[], what: string): Table
   if (hasUnits) {
     notes.push({ code: 'line-of-units', text: `Line ${last.at + 1} was read as units of the columns.` });
   }
-  const kept: number[] = [];
-  for (let i = dataFrom; i < rows.length; i++) {
-    const row = rows[i]!;
-    if (row.every(isEmpty)) continue;
-    if (row.length > width && !row.slice(width).every(isEmpty)) {
-      throw new UnreadableInput(
-        `${what} has ${row.length} cells on line ${i + 1} but ${width} column names. If numbers are written with a decimal comma, separate the columns by semicolons or put the numbers in quotes.`,
-      );
-    }
-    kept.push(i);
-  }
-  // A last line without a value in it, or cut off in the middle, is no row of data.
-  const end = kept[kept.length - 1];
-  if (end !== undefined && kept.length > 1) {
-    const usual = filled(rows[kept[kept.length - 2]!]!).length;
-    const cut = rows[end]!.length < rows[kept[kept.length - 2]!]!.length && filled(rows[end]!).length < usual;
-    if (cut || !rows[end]!.some(isValueCell)) {
-      kept.pop();
-      notes.push({
-        code: 'last-line',
-        text: `The last line (${end + 1}) is not a whole row and was left out.`,
-      });
-    }
-  }
-  if (kept.length === 0) {
-    throw new UnreadableInput(
-      `${what} has column names but no rows below them. Columns found: ${names.join(', ')}.`,
-    );
-  }
   return {
     names,
     units: names.map((_, c) => (hasUnits ? String(last.row[c] ?? '').trim() : '')),
+    dataFrom: first < 0 ? rows.length : first,
+    notes,
+  };
+}
+
+/**
+ * Tells which rows below the header are rows of data. Rows come one by one, so that a file of any length can go by; a row
+ * is handed on when the next one has come, as the last may be cut off.
+ */
+export class DataRows {
+  private held: { readonly row: readonly Cell[]; readonly at: number } | null = null;
+  private before: readonly Cell[] | null = null;
+
+  /** @param take receives each row of data and its position among all rows */
+  constructor(
+    private readonly header: Header,
+    private readonly what: string,
+    private readonly take: (row: readonly Cell[], at: number) => void,
+  ) {}
+
+  /**
+   * @param at position among all rows, from 0
+   * @throws UnreadableInput for a row that is wider than the header
+   */
+  add(row: readonly Cell[], at: number): void {
+    if (at < this.header.dataFrom || row.every(isEmpty)) return;
+    const width = this.header.names.length;
+    if (row.length > width && !row.slice(width).every(isEmpty)) {
+      throw new UnreadableInput(
+        `${this.what} has ${row.length} cells on line ${at + 1} but ${width} column names. If numbers are written with a decimal comma, separate the columns by semicolons or put the numbers in quotes.`,
+      );
+    }
+    this.letGo();
+    this.held = { row, at };
+  }
+
+  /**
+   * Ends the table: a last line without a value in it, or cut off in the middle, is no row of data.
+   *
+   * @throws UnreadableInput when there was no row of data
+   */
+  end(): Note[] {
+    const { held, before } = this;
+    if (held === null) {
+      throw new UnreadableInput(
+        `${this.what} has column names but no rows below them. Columns found: ${this.header.names.join(', ')}.`,
+      );
+    }
+    const cut =
+      before !== null && held.row.length < before.length && filled(held.row).length < filled(before).length;
+    if (before !== null && (cut || !held.row.some(isValueCell))) {
+      return [
+        { code: 'last-line', text: `The last line (${held.at + 1}) is not a whole row and was left out.` },
+      ];
+    }
+    this.letGo();
+    return [];
+  }
+
+  private letGo(): void {
+    if (this.held === null) return;
+    this.take(this.held.row, this.held.at);
+    this.before = this.held.row;
+  }
+}
+
+/**
+ * Makes a table of rows of cells: names from the header, then the rows of data below it.
+ *
+ * @param rows all rows, blank ones too
+ * @param what how the source is called in messages
+ * @throws UnreadableInput when there is no header, no row below it, or a row that is wider than the header
+ */
+export function tableOf(rows: readonly (readonly Cell[])[], what: string): Table {
+  const header = headerOf(rows, what);
+  const kept: number[] = [];
+  const data = new DataRows(header, what, (_, at) => kept.push(at));
+  for (let i = header.dataFrom; i < rows.length; i++) data.add(rows[i]!, i);
+  const notes = [...header.notes, ...data.end()];
+  return {
+    names: header.names,
+    units: header.units,
     rows: kept.length,
     cells: (column) => kept.map((i) => rows[i]![column] ?? ''),
     rowNumber: (row) => kept[row]! + 1,

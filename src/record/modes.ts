@@ -1,5 +1,5 @@
 /** Tells automatic from manual by a column of the controller's mode. */
-import type { Cell } from './table';
+import type { CellColumn } from './table';
 
 export interface Modes {
   /** 1 where the controller is in automatic, one a row; null when the values are not understood. */
@@ -12,27 +12,37 @@ export interface Modes {
 const automatic = /^(a|aut|auto.*|cas.*|rcas.*|rsp|rem|remote|normal)$/;
 const manual = /^(m|man.*|iman.*|lo|local.*|rout.*|oos.*|out of service|track.*|trk|init.*|hand.*)$/;
 
+/** More words than any controller has modes (own choice). */
+const mostKinds = 200;
+
 /** An empty cell repeats the mode above it. Plain numbers are understood only as 1 = automatic, 0 = manual. */
-export function readModes(cells: readonly Cell[]): Modes {
-  const words = cells.map((cell) =>
-    String(cell)
+export function readModes(cells: CellColumn): Modes {
+  // Number of the kind of mode in each row, counted from 1; 0 for an empty cell.
+  const kindOf = new Uint16Array(cells.length);
+  const kinds: string[] = [];
+  for (let i = 0; i < cells.length; i++) {
+    const word = String(cells.at(i))
       .trim()
       .toLowerCase()
-      .replace(/\s*[(].*$/, ''),
-  );
-  const kinds = [...new Set(words)].filter((word) => word !== '');
+      .replace(/\s*[(].*$/, '');
+    if (word === '') continue;
+    if (!kinds.includes(word)) kinds.push(word);
+    // So many kinds are no modes.
+    if (kinds.length > mostKinds) break;
+    kindOf[i] = kinds.indexOf(word) + 1;
+  }
   const shown = kinds.slice(0, 8).join(', ');
   const numbers = kinds.length > 0 && kinds.every((kind) => kind === '0' || kind === '1');
   const auto = kinds.filter((kind) => (numbers ? kind === '1' : automatic.test(kind)));
   const man = kinds.filter((kind) => (numbers ? kind === '0' : manual.test(kind)));
-  if (kinds.length === 0 || auto.length + man.length < kinds.length) {
+  if (kinds.length === 0 || kinds.length > mostKinds || auto.length + man.length < kinds.length) {
     return { automatic: null, text: `modes are not understood (${shown || 'empty'}); none was used.` };
   }
-  const isAutomatic = new Set(auto);
+  const isAutomatic = kinds.map((kind) => auto.includes(kind));
   const flags = new Float64Array(cells.length);
-  let now = isAutomatic.has(words.find((word) => word !== '')!);
-  for (let i = 0; i < words.length; i++) {
-    if (words[i] !== '') now = isAutomatic.has(words[i]!);
+  let now = isAutomatic[kindOf.find((kind) => kind > 0)! - 1];
+  for (let i = 0; i < flags.length; i++) {
+    if (kindOf[i]! > 0) now = isAutomatic[kindOf[i]! - 1];
     flags[i] = now ? 1 : 0;
   }
   const said = [

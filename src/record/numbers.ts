@@ -1,6 +1,6 @@
 /** Reads the numbers of a column, with decimal point or comma, and tells values that are missing or bad. */
 import { UnreadableInput } from '../errors';
-import type { Cell } from './table';
+import type { CellColumn } from './table';
 
 export interface NumberColumn {
   /** NaN where there is no value. */
@@ -35,7 +35,7 @@ const groupedByComma = /^[+-]?\d{1,3}(,\d{3})+(\.\d+)?$/;
  *   comma or group thousands
  */
 export function readNumbers(
-  cells: readonly Cell[],
+  cells: CellColumn,
   column: string,
   rowNumber: (row: number) => number,
 ): NumberColumn {
@@ -45,7 +45,7 @@ export function readNumbers(
   let empty = 0;
   let bad = 0;
   for (let i = 0; i < cells.length; i++) {
-    const cell = cells[i]!;
+    const cell = cells.at(i)!;
     if (typeof cell === 'number') {
       if (Number.isFinite(cell)) values[i] = cell;
       else bad++;
@@ -89,15 +89,11 @@ function numberOf(text: string, style: 'point' | 'comma'): number | null {
  * Decimal sign of a column: the comma, when a cell has one that cannot group thousands. Where every comma stands before
  * three digits it is taken as decimal comma too, unless other cells are whole numbers without one.
  */
-function styleOf(
-  cells: readonly Cell[],
-  column: string,
-  rowNumber: (row: number) => number,
-): 'point' | 'comma' {
+function styleOf(cells: CellColumn, column: string, rowNumber: (row: number) => number): 'point' | 'comma' {
   let doubtful = -1;
   let whole = false;
   for (let i = 0; i < cells.length; i++) {
-    const cell = cells[i]!;
+    const cell = cells.at(i)!;
     if (typeof cell === 'number') continue;
     if (!cell.includes(',')) {
       whole ||= /^\s*[+-]?\d+\s*$/.test(cell);
@@ -114,6 +110,6 @@ function styleOf(
   if (doubtful < 0) return 'point';
   if (!whole) return 'comma';
   throw new UnreadableInput(
-    `The column "${column}" has numbers such as "${String(cells[doubtful]).trim()}" (row ${rowNumber(doubtful)}), in which the comma may be a decimal comma or group thousands. Export it without grouping.`,
+    `The column "${column}" has numbers such as "${String(cells.at(doubtful)).trim()}" (row ${rowNumber(doubtful)}), in which the comma may be a decimal comma or group thousands. Export it without grouping.`,
   );
 }

@@ -1,5 +1,5 @@
 /** Tells good samples by a column of quality: words, or the codes of OPC. */
-import type { Cell } from './table';
+import type { CellColumn } from './table';
 
 const goodWords = new Set(['good', 'g', 'ok', 'valid', 'normal', 'true', '']);
 const badWords = new Set([
@@ -21,14 +21,18 @@ const badWords = new Set([
  *
  * @returns 1 for good, 0 for bad, one a row; null when the values are not understood
  */
-export function isGoodQuality(cells: readonly Cell[]): Float64Array | null {
-  const kinds = new Set(cells.map((cell) => String(cell).trim().toLowerCase()));
+export function isGoodQuality(cells: CellColumn): Float64Array | null {
+  const kindAt = (row: number): string => String(cells.at(row)).trim().toLowerCase();
+  const flags = (isGood: (kind: string) => boolean): Float64Array =>
+    new Float64Array(cells.length).map((_, row) => (isGood(kindAt(row)) ? 1 : 0));
+  const kinds = new Set<string>();
+  for (let row = 0; row < cells.length; row++) kinds.add(kindAt(row));
   if ([...kinds].every((kind) => goodWords.has(kind) || badWords.has(kind))) {
-    return Float64Array.from(cells, (cell) => (goodWords.has(String(cell).trim().toLowerCase()) ? 1 : 0));
+    return flags((kind) => goodWords.has(kind));
   }
   const codes = [...kinds].map((kind) => (kind === '' ? 192 : Number(kind)));
   const isOpc =
     codes.every((code) => Number.isInteger(code) && code >= 0 && code <= 65535) && Math.max(...codes) >= 64;
   if (!isOpc) return null;
-  return Float64Array.from(cells, (cell) => ((Number(cell === '' ? 192 : cell) & 0xc0) === 0xc0 ? 1 : 0));
+  return flags((kind) => (Number(kind === '' ? 192 : kind) & 0xc0) === 0xc0);
 }

@@ -2,12 +2,12 @@
 import { UnreadableInput } from '../errors';
 import type { Note } from './loop-record';
 import { type ParsedName, roleOf } from './names';
-import { type Cell, listed, type Table } from './table';
+import { type CellColumn, listed, type Table } from './table';
 
 /** Cells of some rows, with the numbers of these rows as their reader sees them. */
 export interface Cells {
   readonly name: string;
-  readonly cells: () => readonly Cell[];
+  readonly cells: () => CellColumn;
   readonly rowNumber: (row: number) => number;
 }
 
@@ -46,12 +46,30 @@ export function seriesOf(table: Table, time: string | undefined, what: string): 
       `${what} has no column for the time. Columns found: ${listed(table.names)}. Name it with --time (option "time").`,
     );
   }
+  const columns = longColumns(table.names);
+  return columns === null ? wide(table, parsed, timeColumns) : long(table, columns, timeColumns[0]!);
+}
+
+/** Columns of a long export; quality is -1 where none is logged. */
+export interface LongColumns {
+  readonly tag: number;
+  readonly value: number;
+  readonly quality: number;
+}
+
+/** Where the names say that the export has one value a row: tag, time, value. null for a wide export. */
+export function longColumns(names: readonly string[]): LongColumns | null {
+  const parsed = names.map(roleOf);
   const bare = (role: ParsedName['role']): number =>
     parsed.findIndex((name) => name.role === role && name.loop === '' && name.of === null);
-  const tag = bare('tag');
-  const value = bare('value');
-  if (tag >= 0 && value >= 0) return long(table, tag, value, timeColumns[0]!, bare('quality'));
-  return wide(table, parsed, timeColumns);
+  const [tag, value] = [bare('tag'), bare('value')];
+  return tag >= 0 && value >= 0 ? { tag, value, quality: bare('quality') } : null;
+}
+
+/** The note that goes with a long export. */
+export function longNote(names: readonly string[], { tag, value }: LongColumns): Note {
+  const text = `Read as a long export: tags in "${names[tag]}", values in "${names[value]}".`;
+  return { code: 'long-export', text };
 }
 
 /** Position of the name that a user states: as written, else in any case. -1 when there is none. */
@@ -65,28 +83,38 @@ function columnsWith(parsed: readonly ParsedName[], role: ParsedName['role']): n
   return parsed.flatMap((name, column) => (name.role === role ? [column] : []));
 }
 
+/** Some rows of a table; null for all. */
+type Rows = () => readonly number[] | null;
+
 /** A column of the table, or what stands in some of its rows. */
-function cellsOf(table: Table, column: number, rows: readonly number[] | null): Cells {
+function cellsOf(table: Table, column: number, rowsOf: Rows): Cells {
   return {
     name: table.names[column]!,
     cells: () => {
       const all = table.cells(column);
-      return rows === null ? all : rows.map((row) => all[row]!);
+      const rows = rowsOf();
+      return rows === null ? all : { length: rows.length, at: (row) => all.at(rows[row]!) };
     },
-    rowNumber: (row) => table.rowNumber(rows === null ? row : rows[row]!),
+    rowNumber: (row) => {
+      const rows = rowsOf();
+      return table.rowNumber(rows === null ? row : rows[row]!);
+    },
   };
 }
 
-function long(table: Table, tag: number, value: number, time: number, quality: number): SeriesSet {
+function long(table: Table, columns: LongColumns, time: number): SeriesSet {
+  const { tag, value, quality } = columns;
   const rowsOf = new Map<string, number[]>();
-  for (const [row, cell] of table.cells(tag).entries()) {
-    const name = String(cell).trim();
+  const tags = table.cells(tag);
+  for (let row = 0; row < tags.length; row++) {
+    const name = String(tags.at(row)).trim();
     const rows = rowsOf.get(name);
     if (rows === undefined) rowsOf.set(name, [row]);
     else rows.push(row);
   }
-  const series = [...rowsOf].map(([name, rows]): Series => {
+  const series = [...rowsOf].map(([name, own]): Series => {
     const parsed = roleOf(name);
+    const rows: Rows = () => own;
     return {
       ...cellsOf(table, value, rows),
       name,
@@ -96,13 +124,12 @@ function long(table: Table, tag: number, value: number, time: number, quality: n
       quality: quality < 0 ? null : cellsOf(table, quality, rows),
     };
   });
-  const text = `Read as a long export: tags in "${table.names[tag]}", values in "${table.names[value]}".`;
-  return { series, notes: [{ code: 'long-export', text }] };
+  return { series, notes: [longNote(table.names, columns)] };
 }
 
 interface Stamps extends Cells {
-  /** Rows of the table that have a stamp; null for all. */
-  readonly rows: readonly number[] | null;
+  /** Rows of the table that have a stamp. */
+  readonly rows: Rows;
 }
 
 function wide(table: Table, parsed: readonly ParsedName[], timeColumns: readonly number[]): SeriesSet {
@@ -144,9 +171,18 @@ function wide(table: Table, parsed: readonly ParsedName[], timeColumns: readonly
 
 /** Stamps of one time column. Of several, each may be shorter than the table. */
 function stampsIn(table: Table, column: number, several: boolean): Stamps {
-  const all = table.cells(column);
-  const rows = several ? all.flatMap((cell, row) => (String(cell).trim() === '' ? [] : [row])) : null;
+  let found: readonly number[] | null = null;
+  const rows: Rows = () => {
+    if (several) found ??= stampedRows(table.cells(column));
+    return found;
+  };
   return { ...cellsOf(table, column, rows), rows };
+}
+
+function stampedRows(cells: CellColumn): number[] {
+  const rows: number[] = [];
+  for (let row = 0; row < cells.length; row++) if (String(cells.at(row)).trim() !== '') rows.push(row);
+  return rows;
 }
 
 /** A column of dates with a column of clock times beside it, as one; null when it is not so. */
@@ -155,12 +191,16 @@ function joinedStamps(table: Table, timeColumns: readonly number[]): Stamps | nu
   if (timeColumns.length !== 2 || date === undefined || time !== date + 1) return null;
   const dates = table.cells(date);
   const times = table.cells(time);
-  const isDate = !String(dates[0]).includes(':') && /\D/.test(String(dates[0]).trim());
-  if (!isDate || !/^\s*\d{1,2}:\d\d/.test(String(times[0]))) return null;
+  const [firstDate, firstTime] = [String(dates.at(0)), String(times.at(0))];
+  const isDate = !firstDate.includes(':') && /\D/.test(firstDate.trim());
+  if (!isDate || !/^\s*\d{1,2}:\d\d/.test(firstTime)) return null;
   return {
     name: `${table.names[date]}" and "${table.names[time]}`,
-    cells: () => dates.map((cell, row) => `${String(cell).trim()} ${String(times[row]).trim()}`),
+    cells: () => ({
+      length: dates.length,
+      at: (row) => `${String(dates.at(row)).trim()} ${String(times.at(row)).trim()}`,
+    }),
     rowNumber: (row) => table.rowNumber(row),
-    rows: null,
+    rows: () => null,
   };
 }

@@ -6,6 +6,7 @@ import { readModes } from './modes';
 import { readNumbers } from './numbers';
 import { isGoodQuality } from './quality';
 import type { Cells, Series } from './series';
+import type { CellColumn } from './table';
 import { readTimes, type TimeOptions } from './time';
 
 /** Values at their own stamps. Signals logged together share one `ms`. */
@@ -124,8 +125,9 @@ export function createSignalReader(options: TimeOptions, what: string): SignalRe
       text: `"${series.name}" has values in ${count - column.empty} of ${count} rows, read as its own stamps.`,
     });
     const rows: number[] = [];
+    const cells = series.cells();
     const isEmpty = stamps.pick(
-      Float64Array.from(series.cells(), (cell) => (String(cell).trim() === '' ? 1 : 0)),
+      new Float64Array(count).map((_, row) => (String(cells.at(row)).trim() === '' ? 1 : 0)),
     );
     for (let i = 0; i < isEmpty.length; i++) if (isEmpty[i] === 0) rows.push(i);
     return {
@@ -190,7 +192,7 @@ interface ReadStamps {
  */
 function forward(
   ms: Float64Array,
-  cells: readonly unknown[],
+  cells: CellColumn,
   stamps: Cells,
   unplaced: boolean,
 ): Omit<ReadStamps, 'unplaced'> {
@@ -219,13 +221,13 @@ function forward(
 
 function backwards(
   ms: Float64Array,
-  cells: readonly unknown[],
+  cells: CellColumn,
   stamps: Cells,
   i: number,
   last: number,
   unplaced: boolean,
 ): string {
-  const start = `Time goes backwards in the column "${stamps.name}": row ${stamps.rowNumber(i)} is stamped ${cells[i]}, after ${cells[last]} in row ${stamps.rowNumber(last)}.`;
+  const start = `Time goes backwards in the column "${stamps.name}": row ${stamps.rowNumber(i)} is stamped ${cells.at(i)}, after ${cells.at(last)} in row ${stamps.rowNumber(last)}.`;
   const back = ms[last]! - ms[i]!;
   const step = ms[1]! - ms[0]!;
   if (unplaced && Math.abs(back + Math.abs(step) - 3_600_000) <= 2 * Math.abs(step)) {

@@ -4,6 +4,12 @@ import type { Note } from './loop-record';
 /** What stands in one place of a table; '' where nothing does. */
 export type Cell = string | number;
 
+/** Cells of a column, one a row. A list is one; a long column may fetch its cells as they are asked for, in order at best. */
+export interface CellColumn {
+  readonly length: number;
+  at(row: number): Cell | undefined;
+}
+
 export interface Table {
   /** Names of the columns as written, blanks at the ends left out. */
   readonly names: readonly string[];
@@ -11,7 +17,7 @@ export interface Table {
   readonly units: readonly string[];
   readonly rows: number;
   /** All cells of a column, one a row. */
-  readonly cells: (column: number) => readonly Cell[];
+  readonly cells: (column: number) => CellColumn;
   /** Number of a row as its reader sees it: the line of a file, the row of a sheet, the index in a data frame. */
   readonly rowNumber: (row: number) => number;
   readonly notes: readonly Note[];

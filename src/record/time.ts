@@ -1,7 +1,7 @@
 /** Reads a column of time stamps: ISO 8601, numbers of seconds or milliseconds, or a stated format. */
 import { UnreadableInput } from '../errors';
 import type { Note } from './loop-record';
-import type { Cell } from './table';
+import type { Cell, CellColumn } from './table';
 import { clockOf, type Stamp, type StampReader, stampReader } from './time-format';
 import { type WallClock, wallClock } from './wall-clock';
 
@@ -36,13 +36,13 @@ const dayNumbers = { from: 32_874, to: 73_051 };
  * @throws WrongUse for a zone or format that is not known
  */
 export function readTimes(
-  cells: readonly Cell[],
+  cells: CellColumn,
   column: string,
   rowNumber: (row: number) => number,
   options: TimeOptions,
 ): TimeColumn {
   const clock = wallClock(options.zone ?? 'UTC');
-  const first = cells[0]!;
+  const first = cells.at(0)!;
   if (options.timeFormat === undefined && isNumber(first)) return readCounts(cells, column, rowNumber);
   const format = options.timeFormat;
   const read = format === undefined ? isoStamp : stampReader(format);
@@ -54,7 +54,7 @@ function isNumber(cell: Cell): boolean {
 }
 
 function readStamps(
-  cells: readonly Cell[],
+  cells: CellColumn,
   column: string,
   rowNumber: (row: number) => number,
   read: StampReader,
@@ -64,7 +64,7 @@ function readStamps(
   const ms = new Float64Array(cells.length);
   let unplaced = false;
   for (let i = 0; i < cells.length; i++) {
-    const text = String(cells[i]).trim();
+    const text = String(cells.at(i)).trim();
     const stamp = read(text);
     if (stamp === null) {
       throw new UnreadableInput(
@@ -122,13 +122,17 @@ function isoStamp(text: string): Stamp | null {
   return { ms: ms - (distance[1] === '-' ? -1 : 1) * minutes * 60_000, placed: true };
 }
 
-function readCounts(cells: readonly Cell[], column: string, rowNumber: (row: number) => number): TimeColumn {
-  const counts = Float64Array.from(cells, (cell, i) => {
-    if (isNumber(cell)) return Number(String(cell).trim().replace(',', '.'));
-    throw new UnreadableInput(
-      `Row ${rowNumber(i)} has "${String(cell).slice(0, 40)}" in the time column "${column}", where the rows above have numbers.`,
-    );
-  });
+function readCounts(cells: CellColumn, column: string, rowNumber: (row: number) => number): TimeColumn {
+  const counts = new Float64Array(cells.length);
+  for (let i = 0; i < counts.length; i++) {
+    const cell = cells.at(i)!;
+    if (!isNumber(cell)) {
+      throw new UnreadableInput(
+        `Row ${rowNumber(i)} has "${String(cell).slice(0, 40)}" in the time column "${column}", where the rows above have numbers.`,
+      );
+    }
+    counts[i] = Number(String(cell).trim().replace(',', '.'));
+  }
   const start = counts[0]!;
   const among = ({ from, to }: { from: number; to: number }, value: number): boolean =>
     value >= from && value <= to;
