@@ -26,8 +26,8 @@ export interface ChosenColumns {
   readonly notes: readonly Note[];
 }
 
-type Wanted = 'sp' | 'pv' | 'op' | 'travel' | 'mode';
-const wanted: readonly Wanted[] = ['sp', 'pv', 'op', 'travel', 'mode'];
+export type Wanted = 'sp' | 'pv' | 'op' | 'travel' | 'mode';
+export const wanted: readonly Wanted[] = ['sp', 'pv', 'op', 'travel', 'mode'];
 
 /**
  * @param what how the source is called in messages
@@ -35,17 +35,8 @@ const wanted: readonly Wanted[] = ['sp', 'pv', 'op', 'travel', 'mode'];
  *   is not there
  */
 export function chooseColumns(series: readonly Series[], stated: StatedColumns, what: string): ChosenColumns {
-  const names = series.map(({ name }) => name);
-  const found = `Columns found: ${listed(names)}.`;
-  const chosen = new Map<Wanted, Series>();
-  for (const role of wanted) {
-    const name = stated[role];
-    if (name === undefined) continue;
-    const at = findName(names, name);
-    if (at < 0) throw new UnreadableInput(`${what} has no column "${name}" for ${label(role)}. ${found}`);
-    chosen.set(role, series[at]!);
-  }
-
+  const found = foundIn(series);
+  const chosen = byStatedNames(series, stated, what);
   const group = groupOf(series, stated, chosen, what);
   for (const role of wanted) {
     if (chosen.has(role)) continue;
@@ -53,18 +44,14 @@ export function chooseColumns(series: readonly Series[], stated: StatedColumns, 
     if (one !== undefined) chosen.set(role, one);
   }
   const mv = group.find(({ parsed }) => parsed.role === 'mv');
-  const pv = chosen.get('pv');
   const op = chosen.get('op');
   if (op === undefined && mv !== undefined && mv !== chosen.get('travel')) {
     throw new UnreadableInput(
       `${what} has no column for OP but one called "${mv.name}". MV may mean the manipulated variable (that is OP) or the measured valve travel. Say which with --op "${mv.name}" or --travel "${mv.name}" (option "op" or "travel"). ${found}`,
     );
   }
-  for (const [role, one] of [
-    ['pv', pv],
-    ['op', op],
-  ] as const) {
-    if (one === undefined) {
+  for (const role of ['pv', 'op'] as const) {
+    if (!chosen.has(role)) {
       throw new UnreadableInput(
         `${what} has no column for ${label(role)}${stated.tag === undefined ? '' : ` of ${stated.tag}`}. ${found} Name it with --${role} (option "${role}").`,
       );
@@ -82,10 +69,49 @@ export function chooseColumns(series: readonly Series[], stated: StatedColumns, 
       text: `The column "${mv.name}" was left alone: MV may mean the manipulated variable or the measured valve travel.`,
     });
   }
+  return columnsOf(chosen, notes);
+}
+
+/**
+ * The columns that are stated, and no others.
+ *
+ * @throws UnreadableInput when PV or OP is not stated, or a stated name is not there
+ */
+export function statedColumns(series: readonly Series[], stated: StatedColumns, what: string): ChosenColumns {
+  for (const role of ['pv', 'op'] as const) {
+    if (stated[role] === undefined) {
+      throw new UnreadableInput(`No column is stated for ${label(role)} of ${stated.tag}.`);
+    }
+  }
+  return columnsOf(byStatedNames(series, stated, what), []);
+}
+
+function byStatedNames(series: readonly Series[], stated: StatedColumns, what: string): Map<Wanted, Series> {
+  const names = series.map(({ name }) => name);
+  const chosen = new Map<Wanted, Series>();
+  for (const role of wanted) {
+    const name = stated[role];
+    if (name === undefined) continue;
+    const at = findName(names, name);
+    if (at < 0) {
+      throw new UnreadableInput(`${what} has no column "${name}" for ${label(role)}. ${foundIn(series)}`);
+    }
+    chosen.set(role, series[at]!);
+  }
+  return chosen;
+}
+
+function foundIn(series: readonly Series[]): string {
+  return `Columns found: ${listed(series.map(({ name }) => name))}.`;
+}
+
+/** @param chosen with PV and OP */
+function columnsOf(chosen: ReadonlyMap<Wanted, Series>, notes: readonly Note[]): ChosenColumns {
+  const pv = chosen.get('pv')!;
   return {
-    loop: loopOf(pv!),
-    pv: pv!,
-    op: op!,
+    loop: loopOf(pv),
+    pv,
+    op: chosen.get('op')!,
     sp: chosen.get('sp') ?? null,
     travel: chosen.get('travel') ?? null,
     mode: chosen.get('mode') ?? null,
@@ -93,13 +119,33 @@ export function chooseColumns(series: readonly Series[], stated: StatedColumns, 
   };
 }
 
-function label(role: Wanted): string {
+export function label(role: Wanted): string {
   return role === 'travel' || role === 'mode' ? role : role.toUpperCase();
 }
 
 /** Tag of the loop to which a series belongs: the ISA-5.1 tag in its name, else what stands before the role. */
-function loopOf({ parsed }: Series): string {
+export function loopOf({ parsed }: Series): string {
   return isaTag(parsed.loop)?.text ?? parsed.loop;
+}
+
+/** Series by the bare tag of their loop; '' for those without one. */
+export function byLoop(series: readonly Series[]): ReadonlyMap<string, readonly Series[]> {
+  const groups = new Map<string, Series[]>();
+  for (const one of series) {
+    const key = bareTag(loopOf(one));
+    const group = groups.get(key);
+    if (group === undefined) groups.set(key, [one]);
+    else group.push(one);
+  }
+  return groups;
+}
+
+const hasRole = (group: readonly Series[], role: Role): boolean =>
+  group.some(({ parsed }) => parsed.role === role);
+
+/** A loop is what has a column for OP or, beside a PV or SP, one that may be it. */
+export function isLoop(group: readonly Series[]): boolean {
+  return hasRole(group, 'op') || hasRole(group, 'mv') || (hasRole(group, 'sp') && hasRole(group, 'pv'));
 }
 
 /** The series of the one loop that is meant. */
@@ -109,20 +155,9 @@ function groupOf(
   chosen: ReadonlyMap<Wanted, Series>,
   what: string,
 ): readonly Series[] {
-  const groups = new Map<string, Series[]>();
-  for (const one of series) {
-    const key = bareTag(loopOf(one));
-    groups.set(key, [...(groups.get(key) ?? []), one]);
-  }
+  const groups = byLoop(series);
   const withoutTag = groups.get('') ?? [];
-  const hasRole = (group: readonly Series[], role: Role): boolean =>
-    group.some(({ parsed }) => parsed.role === role);
-  // A loop is what has a column for OP or, beside a PV or SP, one that may be it.
-  const loops = [...groups.values()].filter(
-    (group) =>
-      group[0]!.parsed.loop !== '' &&
-      (hasRole(group, 'op') || hasRole(group, 'mv') || (hasRole(group, 'sp') && hasRole(group, 'pv'))),
-  );
+  const loops = [...groups.values()].filter((group) => group[0]!.parsed.loop !== '' && isLoop(group));
   const choice = (): string => listed(loops.map((group) => loopOf(group[0]!)));
   if (stated.tag !== undefined) {
     const tag = stated.tag;
@@ -144,30 +179,48 @@ function groupOf(
   return loops[0] ?? withoutTag;
 }
 
-/** The series of a group with a role, the plainest name first. */
+/** The series of a group with a role that has the plainest name. */
 function best(group: readonly Series[], role: Wanted, what: string): Series | undefined {
-  const all = group.filter(({ parsed }) => parsed.role === role);
-  const rank = Math.min(...all.map(({ parsed }) => parsed.rank));
-  const [first, second] = all.filter(({ parsed }) => parsed.rank === rank);
+  const [first, second] = plainest(group, role);
   if (first !== undefined && second !== undefined) {
-    const option = role;
     throw new UnreadableInput(
-      `${what} has two columns that may be ${label(role)}: "${first.name}" and "${second.name}". Name one with --${option} (option "${option}").`,
+      `${what} has two columns that may be ${label(role)}: "${first.name}" and "${second.name}". Name one with --${role} (option "${role}").`,
     );
   }
   return first;
 }
 
-/** PV under the bare tag of the loop or its transmitter's, and travel under a position tag (first letter Z). */
+/** The series of a group that have a role under its plainest name; several where the names do not decide. */
+export function plainest(group: readonly Series[], role: Wanted): readonly Series[] {
+  const all = group.filter(({ parsed }) => parsed.role === role);
+  const rank = Math.min(...all.map(({ parsed }) => parsed.rank));
+  return all.filter(({ parsed }) => parsed.rank === rank);
+}
+
 function byIsaTag(
   series: readonly Series[],
   group: readonly Series[],
   role: Wanted,
   what: string,
 ): Series | undefined {
-  if (role !== 'pv' && role !== 'travel') return undefined;
+  const [first, second] = underIsaTag(series, group, role);
+  if (role === 'travel' && first !== undefined && second !== undefined) {
+    throw new UnreadableInput(
+      `${what} has the position of two valves on one OP: "${first.name}" and "${second.name}". Two valves on one OP cannot be told apart from its record. Log one valve in its own range, and state that with --valve-range.`,
+    );
+  }
+  return first;
+}
+
+/** PV under the bare tag of the loop, else its transmitter's, and travel under a position tag (first letter Z). */
+export function underIsaTag(
+  series: readonly Series[],
+  group: readonly Series[],
+  role: Wanted,
+): readonly Series[] {
+  if (role !== 'pv' && role !== 'travel') return [];
   const loop = group.map(({ parsed }) => isaTag(parsed.loop)).find((tag) => tag !== null);
-  if (loop === undefined || loop === null) return undefined;
+  if (loop === undefined || loop === null) return [];
   const all = series.filter(({ parsed }) => {
     const tag =
       parsed.role === null || parsed.role === 'pv' || parsed.role === 'value' ? isaTag(parsed.loop) : null;
@@ -181,10 +234,6 @@ function byIsaTag(
       (isLoop || /[TI]$/.test(tag.letters))
     );
   });
-  if (role === 'travel' && all.length > 1) {
-    throw new UnreadableInput(
-      `${what} has the position of two valves on one OP: "${all[0]!.name}" and "${all[1]!.name}". Two valves on one OP cannot be told apart from its record. Log one valve in its own range, and state that with --valve-range.`,
-    );
-  }
-  return all.find(({ parsed }) => isaTag(parsed.loop)!.letters === loop.letters) ?? all[0];
+  const own = ({ parsed }: Series): number => (isaTag(parsed.loop)!.letters === loop.letters ? 0 : 1);
+  return all.sort((a, b) => own(a) - own(b));
 }
