@@ -51,6 +51,15 @@ export function numberOption(name: string, text: string): number {
   return value;
 }
 
+/** A whole number from 0 on. Throws {@link WrongUse}. */
+export function wholeOption(name: string, text: string): number {
+  const value = numberOption(name, text);
+  if (!(Number.isInteger(value) && value >= 0)) {
+    throw new WrongUse(`--${name} takes a whole number from 0 on; "${text}" was received.`);
+  }
+  return value;
+}
+
 /** `LOW:HIGH` as a range. Throws {@link WrongUse}. */
 export function rangeOption(name: string, text: string): { low: number; high: number } {
   const [low, high, ...more] = text
@@ -70,4 +79,9 @@ export function wordOption<Word extends string>(name: string, text: string, allo
     throw new WrongUse(`--${name} takes one of ${allowed.join(', ')}; "${text}" was received.`);
   }
   return text as Word;
+}
+
+/** Without the keys that have no value. */
+export function stated<Options extends object>(options: Options): Options {
+  return Object.fromEntries(Object.entries(options).filter(([, value]) => value !== undefined)) as Options;
 }

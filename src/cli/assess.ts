@@ -10,7 +10,8 @@ import { ensureJupyter, type Jupyter } from '../report/jupyter';
 import { bundledNotebook, defaultOutFolder } from '../report/places';
 import { type Rendered, renderNotebook } from '../report/render-notebook';
 import { prepareFolder, writeWhole } from '../report/write-whole';
-import { numberOption, rangeOption, readArguments, wordOption } from './arguments';
+import { numberOption, rangeOption, readArguments, stated, wordOption } from './arguments';
+import { fileName } from './file-name';
 import { assessHelp } from './help';
 import type { Output } from './output';
 import { startProgress } from './progress';
@@ -145,14 +146,9 @@ function assessingOptions(values: Given): AssessOptions {
   return stated({ deadTime: number('dead-time'), processGain: number('process-gain'), seed: number('seed') });
 }
 
-/** Without the keys that have no value. */
-function stated<Options extends object>(options: Options): Options {
-  return Object.fromEntries(Object.entries(options).filter(([, value]) => value !== undefined)) as Options;
-}
-
 /** Name of the results: that of the file, with the tag when the file is not called after it. */
 function resultName(file: string, tag: string): string {
   const name = basename(file, extname(file));
   const whole = name.includes(tag) ? name : `${name}-${tag}`;
-  return whole.replace(/[^\p{L}\p{N}._-]+/gu, '-').replace(/^[.-]+/, '') || 'loop';
+  return fileName(whole) || 'loop';
 }

@@ -3,11 +3,13 @@
 export const generalHelp: string = `stickband: is the final control assembly making this loop cycle?
 
   stickband assess FILE    assess one loop from a record of SP, PV and OP
+  stickband audit SOURCE   assess all loops of a folder, a list or an export; group and rank them
+  stickband merge PART...  put the shards of an audit together
   stickband notebook       open Jupyter with the guided notebook and its kernel ready
 
   stickband COMMAND --help says more about one command; stickband --version prints the version.
 
-Exit codes: 0 an answer was made ("cannot tell" is one), 2 wrong use, unreadable input, unwritable output
+Exit codes: 0 an answer was made ("cannot tell" is one, and so is an audit with failed loops), 2 wrong use, unreadable input, unwritable output
 or Jupyter missing, 1 a fault of stickband itself.`;
 
 export const assessHelp: string = `stickband assess FILE [options]
@@ -39,6 +41,39 @@ What to make of it.
   --no-notebook        neither notebook nor page
   --seed N             seed of the random numbers (default 1); equal seeds give equal results
   --install            set up Jupyter when it is missing: with pip in .venv, or Debian's packages for root
+  --help               this text`;
+
+export const auditHelp: string = `stickband audit FOLDER|LIST.csv|EXPORT --map FILE [options]
+
+Assesses many loops: which of them cycle, why, which share one oscillation, and where to look first. A loop that
+cannot be read is reported and stops nothing.
+
+Where the loops are.
+  FOLDER               one file a loop (.csv, .txt, .tsv, .xlsx)
+  LIST.csv             a list of loops with the columns file,tag,service,response,pv_low,pv_high, all but file
+                       optional; paths are relative to the list
+  EXPORT --map FILE    one export that holds many loops, and the map of its columns
+
+What holds for every file of a folder or list, as for "stickband assess".
+  --time COL --sp COL --pv COL --op COL --travel COL --mode COL
+  --time-format F --zone Z
+
+How it runs.
+  --out DIR            folder for journal and audit (default: audit-NAME in notebooks/rendered in the repository,
+                       else in stickband-out; the journal there goes when the audit is complete)
+  --json FILE|-        also write the audit as JSON; with "-" stdout holds JSON alone and the rest goes to stderr
+  --resume             continue an audit that was stopped; failed loops and changed files are done again
+  --workers N          loops at a time (default: one for each core; 0: without threads)
+  --shard I/N          only the loops of shard I of N, by a hash of their tags; "stickband merge" joins the shards
+  --seed N             seed of the random numbers (default 1); equal seeds give equal results
+  --help               this text`;
+
+export const mergeHelp: string = `stickband merge PART... --json FILE|-
+
+Joins all shards of one audit (audit-part-I-of-N.json) into the audit that one run would have given, byte for
+byte. Groups and ranking are made anew from all loops.
+
+  --json FILE|-        where the audit goes; with "-" stdout holds JSON alone and the rest goes to stderr
   --help               this text`;
 
 export const notebookHelp: string = `stickband notebook [--install]

@@ -1,4 +1,4 @@
-/** Progress on stderr: a moving bar on a terminal, else one plain line a step. */
+/** Progress on stderr: a moving bar on a terminal, else one plain line a step, or nothing. */
 import { Presets, SingleBar } from 'cli-progress';
 import type { Output } from './output';
 
@@ -9,8 +9,10 @@ export interface Progress {
   stop(): void;
 }
 
-export function startProgress(stderr: Output['stderr']): Progress {
-  return stderr.isTTY ? movingBar(stderr as NodeJS.WriteStream) : plainLines(stderr);
+/** @param elsewhere what is written where no terminal is: a line for each step, or nothing when steps are many */
+export function startProgress(stderr: Output['stderr'], elsewhere: 'lines' | 'quiet' = 'lines'): Progress {
+  if (stderr.isTTY) return movingBar(stderr as NodeJS.WriteStream);
+  return elsewhere === 'lines' ? plainLines(stderr) : Object.assign(() => {}, { stop: () => {} });
 }
 
 function movingBar(stream: NodeJS.WriteStream): Progress {

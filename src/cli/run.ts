@@ -2,12 +2,16 @@
 import { StickbandError, WrongUse } from '../errors';
 import { version } from '../version';
 import { assess } from './assess';
+import { audit } from './audit';
 import { generalHelp } from './help';
+import { merge } from './merge';
 import { openNotebook } from './notebook';
 import type { Output } from './output';
 
 const commands: Readonly<Record<string, (words: string[], output: Output) => Promise<void>>> = {
   assess,
+  audit,
+  merge,
   notebook: openNotebook,
 };
 

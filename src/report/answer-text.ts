@@ -42,13 +42,13 @@ function testLines(test: NextStep, width: number): string[] {
   return ['The test that decides', ...wrapped(`${test.do} ${test.why}`, width, '  '), ...caution];
 }
 
-function bullets(title: string, sentences: readonly string[], width: number): string[] {
+export function bullets(title: string, sentences: readonly string[], width: number): string[] {
   if (sentences.length === 0) return [];
   return [title, ...sentences.flatMap((sentence) => wrapped(sentence, width, '  - ', '    '))];
 }
 
 /** Breaks `text` at spaces; `first` stands before the first line, `rest` before the others. */
-function wrapped(text: string, width: number, first: string = '', rest: string = first): string[] {
+export function wrapped(text: string, width: number, first: string = '', rest: string = first): string[] {
   const lines: string[] = [];
   let line = first;
   let empty = true;

@@ -1,0 +1,4 @@
+/** What a worker thread runs: one job in, one finished loop out. */
+import { assessJob } from './assess-job';
+
+export default assessJob;
