@@ -6,3 +6,10 @@ export const cautions: readonly string[] = [
   'Nothing here replaces site safety procedures, permits to work, management of change, or the rules for bypasses and interlocks.',
   'Local codes, site procedures and licensed or authorised people decide what is done.',
 ];
+
+/** The cautions that go with every reading and every plan of a valve test: the test itself, then what holds for all work. */
+export const valveTestCautions: readonly string[] = [
+  'A reading holds for the load, supply pressure and temperature of the test. It is no acceptance test and no certificate.',
+  ...cautions.slice(1),
+  'Keep clear of the moving stem: springs and air in the actuator hold energy even when the command is still.',
+];

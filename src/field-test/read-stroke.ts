@@ -1,0 +1,335 @@
+/**
+ * Reads strokes (ramps of the command up and down): dead band, resolution, hysteresis, and S and J of both variants of
+ * the two-parameter valve. Travel is needed; where the actuator pressure was logged too, its lag behind the command is
+ * taken out, so that the stroke reads as if it had been slow.
+ */
+import { reversalTolerance } from '../estimate/search';
+import type { Estimate } from '../estimate/stiction-fit';
+import type { Note } from '../record/loop-record';
+import { threeDigits } from '../signal/three-digits';
+import {
+  createTravelPieces,
+  travelFromPieces,
+  type ValveModel,
+  walkTwoParameter,
+} from '../valve/two-parameter';
+import { lagged, pressureLag } from './actuator-lag';
+import { type CommandLeg, commandLegs } from './command';
+import { meanOf } from './means';
+import { type StemMotion, stemMotion } from './stem-motion';
+import { type SpringLine, type StrokeLevels, springLine, strokeLevels } from './stroke-levels';
+import type { TestRecord } from './test-record';
+
+/** S and J of one variant of the two-parameter valve, fitted to the strokes. */
+export interface FittedVariant {
+  readonly model: ValveModel;
+  readonly S: number;
+  readonly J: number;
+  /** Share of the travel's variance around the reversals that it explains, 0..1. */
+  readonly explains: number;
+}
+
+export interface StrokeFindings {
+  readonly deadBand: Estimate | null;
+  readonly resolution: Estimate | null;
+  readonly hysteresis: Estimate | null;
+  readonly S: Estimate | null;
+  readonly J: Estimate | null;
+  /** The better one first. */
+  readonly variants: readonly FittedVariant[];
+  readonly legs: readonly CommandLeg[];
+  /** Lag between command and actuator that was taken out, s; null when it is not known. */
+  readonly lag: number | null;
+  /** The command behind that lag, %. */
+  readonly drive: Float64Array;
+  readonly motion: StemMotion;
+  readonly line: SpringLine | null;
+  readonly levels: StrokeLevels | null;
+  /** One reading a reversal: where the command stood at the last movement and at the next one, % of drive. */
+  readonly reversals: readonly { readonly from: number; readonly to: number; readonly travel: number }[];
+  /** Where the ways up and down are furthest apart: drive, and travel on either way, %. */
+  readonly separation: { readonly drive: number; readonly up: number; readonly down: number } | null;
+  readonly notes: readonly Note[];
+}
+
+const band = '% of span';
+/** Bins along the stroke in which the ways up and down are compared. */
+const bins = 15;
+const fewestInBin = 4;
+/** Slips after the first movement that the fit of S and J counts (own choice). */
+const slipsCounted = 2.5;
+
+export function readStroke(record: TestRecord): StrokeFindings {
+  const { op, samplePeriod } = record;
+  const travel = record.travel!;
+  const notes: Note[] = [];
+  const legs = commandLegs(op);
+  const lag = record.pressure ? pressureLag(op, record.pressure, samplePeriod) : null;
+  const drive = lag === null ? op : lagged(op, lag, samplePeriod);
+  let motion = stemMotion(op, drive, 1, travel, legs);
+  let line = springLine(drive, travel, motion);
+  if (line && line.slope > 0) {
+    motion = stemMotion(op, drive, 1 / line.slope, travel, legs);
+    line = springLine(drive, travel, motion);
+  }
+  const empty = {
+    deadBand: null,
+    resolution: null,
+    hysteresis: null,
+    S: null,
+    J: null,
+    variants: [],
+    legs,
+    lag,
+    drive,
+    motion,
+    line: null,
+    levels: null,
+    reversals: [],
+    separation: null,
+  };
+  if (line === null || !(line.slope > 0)) {
+    notes.push({
+      code: 'no-dead-band',
+      text: 'Nothing is resolved: the stem has to move both ways, with the command, at least once.',
+    });
+    return { ...empty, notes };
+  }
+  const noise = line.slope * motion.noise;
+  const levels = strokeLevels(drive, travel, motion, line, noise);
+  const paces = levels.legs.filter(({ pace }) => pace > 0).map(({ pace }) => pace);
+  const pace = Math.max(0, ...paces);
+  if (lag === null) {
+    notes.push({
+      code: 'lag-not-known',
+      text: `No actuator pressure was logged: each second that the actuator lags behind the command adds ${threeDigits((2 * pace) / samplePeriod)} % to the dead band at this pace.`,
+    });
+  } else if (lag > 0.05 * samplePeriod) {
+    notes.push({
+      code: 'lag-taken-out',
+      text: `The actuator pressure lags ${threeDigits(lag)} s behind the command; this was taken out, as it would look like dead band.`,
+    });
+  }
+
+  const readings: number[] = [];
+  const reversals: { from: number; to: number; travel: number }[] = [];
+  levels.legs.forEach((now, i) => {
+    const before = levels.legs[i - 1];
+    if (!before || before.lastMovement === null || now.firstBreak === null) return;
+    readings.push(before.lastMovement + now.firstBreak);
+    const centre = line.offset + line.slope * now.leg.rest;
+    const { direction } = now.leg.leg;
+    reversals.push({
+      from: centre - direction * before.lastMovement,
+      to: centre + direction * now.firstBreak,
+      travel: now.leg.rest,
+    });
+  });
+  // A moment within a sample is not known; noise is averaged over some samples.
+  const each = Math.hypot(pace / Math.sqrt(12), noise / 2);
+  const deadBand = readings.length > 0 ? meanOf(readings, each, band, 0) : null;
+  if (!deadBand)
+    notes.push({ code: 'no-dead-band', text: 'The dead band is not resolved: no reversal moved the stem.' });
+
+  const jumps = levels.breaks.length;
+  const J =
+    levels.jump === null
+      ? null
+      : meanOf([levels.jump], Math.max(each / Math.sqrt(Math.max(1, jumps)), 0.03 * levels.jump), band, 0);
+  const bound = Math.max(2 * pace, 4.5 * noise);
+  const firstJumps = motion.legs.filter(({ jump }) => jump > 0).map(({ jump }) => jump * line.slope);
+  const jumpsFirst = firstJumps.length > motion.legs.length / 2 ? meanOf(firstJumps, each, band, 0) : null;
+  const resolution = J ?? { value: bound / 2, low: 0, high: bound, unit: band };
+  if (!J) {
+    notes.push({
+      code: 'resolution-below-stroke',
+      text: `The stem slides without stops that this stroke could show: the resolution is known only to be at most ${threeDigits(bound)} %. A step test with small steps tells more.`,
+    });
+  } else if (jumps === 0) {
+    notes.push({
+      code: 'slips-not-single',
+      text: 'Slips follow each other too fast for this sampling to show them one by one; their size is from the scatter that they leave.',
+    });
+  }
+  const { hysteresis, separation } = separationOf(drive, travel, motion, line, deadBand);
+  if (!hysteresis) {
+    notes.push({
+      code: 'no-hysteresis',
+      text: 'Hysteresis is not resolved: the ways up and down do not pass enough common positions.',
+    });
+  }
+
+  // The two-parameter valve sees the drive, and the travel brought to its scale.
+  const scaled = travel.map((x) => line.offset + line.slope * x);
+  const startJump = J?.value ?? jumpsFirst?.value ?? 0;
+  const variants = deadBand
+    ? fitVariants(drive, scaled, motion, line, deadBand.value, Math.min(startJump, deadBand.value))
+    : [];
+  const [best, other] = variants;
+  const S = best && deadBand ? around(best.S, deadBand) : null;
+  const fromSlips = J ?? jumpsFirst;
+  const fittedJump = best
+    ? around(best.J, fromSlips ?? { value: bound / 2, low: 0, high: bound, unit: band })
+    : null;
+  const agrees = fittedJump && S && fittedJump.high - fittedJump.low < Math.max(S.value, 2 * bound);
+  if (best && other) {
+    const said = ({ model, S: s, J: j, explains }: FittedVariant): string =>
+      `${model}: S ${threeDigits(s)} %, J ${threeDigits(j)} %, ${(100 * explains).toFixed(2)} % of the travel around the reversals explained`;
+    notes.push({ code: 'both-variants', text: `Fitted to the strokes: ${said(best)}; ${said(other)}.` });
+  }
+  if (!agrees)
+    notes.push({
+      code: 'no-J',
+      text: 'J is not resolved: the slips and the fitted valve do not agree on it.',
+    });
+  return {
+    ...empty,
+    deadBand,
+    resolution,
+    hysteresis,
+    S,
+    J: agrees ? fittedJump : null,
+    variants,
+    line,
+    levels,
+    reversals,
+    separation,
+    notes,
+  };
+}
+
+/** The fitted value with an interval that also reaches as far as that of the direct reading does from its value. */
+function around(value: number, direct: Estimate): Estimate {
+  const half = Math.max((direct.high - direct.low) / 2, Math.abs(value - direct.value));
+  return { value, low: Math.max(0, value - half), high: value + half, unit: direct.unit };
+}
+
+function separationOf(
+  drive: Float64Array,
+  travel: Float64Array,
+  motion: StemMotion,
+  line: SpringLine,
+  deadBand: Estimate | null,
+): Pick<StrokeFindings, 'hysteresis' | 'separation'> {
+  const none = { hysteresis: null, separation: null };
+  if (!deadBand) return none;
+  const ways = [1, -1].map((direction) =>
+    motion.legs.filter(({ leg, moves }) => leg.direction === direction && moves !== null),
+  );
+  const samples = ways.map((legs) =>
+    legs.flatMap(({ leg, moves }) => Array.from({ length: leg.to - moves! + 1 }, (_, i) => moves! + i)),
+  );
+  const range = samples.map((at) => {
+    const values = at.map((k) => drive[k]!);
+    return [Math.min(...values), Math.max(...values)] as const;
+  });
+  const low = Math.max(range[0]![0], range[1]![0]);
+  const high = Math.min(range[0]![1], range[1]![1]);
+  if (!(high > low)) return none;
+  const found: { drive: number; up: number; down: number; error: number }[] = [];
+  for (let bin = 0; bin < bins; bin++) {
+    const from = low + ((high - low) * bin) / bins;
+    const to = low + ((high - low) * (bin + 1)) / bins;
+    const centre = (from + to) / 2;
+    const [up, down] = samples.map((at) =>
+      at
+        .filter((k) => drive[k]! >= from && drive[k]! < to)
+        .map((k) => travel[k]! - (drive[k]! - centre) / line.slope),
+    );
+    if (up!.length < fewestInBin || down!.length < fewestInBin) continue;
+    const [a, b] = [spread(up!), spread(down!)];
+    found.push({ drive: centre, up: a.mean, down: b.mean, error: Math.hypot(a.error, b.error) });
+  }
+  if (found.length === 0) return none;
+  const widest = found.reduce((best, one) => (one.down - one.up > best.down - best.up ? one : best));
+  const apart = widest.down - widest.up;
+  const error = 1.645 * widest.error;
+  const taken = (value: number): number => value / line.slope;
+  return {
+    hysteresis: {
+      value: Math.max(0, apart - taken(deadBand.value)),
+      low: Math.max(0, apart - error - taken(deadBand.high)),
+      high: Math.max(0, apart + error - taken(deadBand.low)),
+      unit: '% of travel',
+    },
+    separation: { drive: widest.drive, up: widest.up, down: widest.down },
+  };
+}
+
+function spread(values: readonly number[]): { mean: number; error: number } {
+  const n = values.length;
+  const mean = values.reduce((sum, value) => sum + value, 0) / n;
+  const squares = values.reduce((sum, value) => sum + (value - mean) ** 2, 0);
+  return { mean, error: Math.sqrt(squares / (n - 1) / n) };
+}
+
+/**
+ * Both variants, fitted to travel around the reversals, the better one first. Each leg starts anew from where the stem
+ * rests and counts up to half an S after it breaks loose and some slips more: over a whole stroke the moments of slips
+ * drift apart, and the fit would find any S and J but the right ones.
+ */
+function fitVariants(
+  drive: Float64Array,
+  travel: Float64Array,
+  motion: StemMotion,
+  line: SpringLine,
+  S: number,
+  J: number,
+): FittedVariant[] {
+  const windows = motion.legs.slice(1).flatMap(({ leg, moves, restFrom, rest }) => {
+    if (moves === null) return [];
+    const reach = Math.max(0.5 * S, slipsCounted * J);
+    let to = moves;
+    while (to < leg.to && leg.direction * (drive[to]! - drive[moves]!) < reach) to++;
+    return [
+      {
+        drive: drive.subarray(restFrom, to + 1),
+        travel: travel.subarray(restFrom, to + 1),
+        rest: line.offset + line.slope * rest,
+      },
+    ];
+  });
+  const samples = Math.max(...windows.map((one) => one.drive.length));
+  const pieces = createTravelPieces(samples);
+  const model = new Float64Array(samples);
+  const whole = windows.reduce((sum, one) => sum + squaresAround(one.travel), 0);
+  const left = (s: number, j: number, slidesOn: boolean): number => {
+    let sum = 0;
+    for (const one of windows) {
+      walkTwoParameter(one.drive, s, j, slidesOn, reversalTolerance * s, 0, one.rest, pieces);
+      travelFromPieces(pieces, one.drive, model);
+      for (let k = 0; k < one.drive.length; k++) sum += (model[k]! - one.travel[k]!) ** 2;
+    }
+    return whole > 0 ? sum / whole : 1;
+  };
+  return (['slides-on', 'sticks-again'] as const)
+    .map((variant): FittedVariant => {
+      const slidesOn = variant === 'slides-on';
+      let best = { S, J, left: left(S, J, slidesOn) };
+      for (let step = 0.06 * S; step > 0.002 * S; ) {
+        let next = best;
+        for (const a of [-1, 0, 1]) {
+          for (const b of [-1, 0, 1]) {
+            const s = best.S + a * step;
+            const j = best.J + b * step;
+            if (!(s > 0 && j >= 0 && j <= s)) continue;
+            const there = left(s, j, slidesOn);
+            if (there < next.left - 1e-12) next = { S: s, J: j, left: there };
+          }
+        }
+        if (next === best) step /= 2;
+        else best = next;
+      }
+      return { model: variant, S: best.S, J: best.J, explains: Math.max(0, 1 - best.left) };
+    })
+    .sort((a, b) => b.explains - a.explains);
+}
+
+function mean(values: Float64Array): number {
+  return values.reduce((sum, value) => sum + value, 0) / values.length;
+}
+
+function squaresAround(values: Float64Array): number {
+  const centre = mean(values);
+  return values.reduce((sum, value) => sum + (value - centre) ** 2, 0);
+}

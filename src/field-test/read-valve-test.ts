@@ -1,0 +1,110 @@
+/** Reads a valve test from its record: a manual hold, a step test, or strokes. */
+import { valveTestCautions } from '../assessment/cautions';
+import { refuseUnknownOptions, UnreadableInput, WrongUse } from '../errors';
+import type { DataFrameLike } from '../record/data-frame';
+import type { Note } from '../record/loop-record';
+import { kindOf } from './command';
+import { type HoldFindings, readHold } from './read-hold';
+import { readSteps, type StepsFindings } from './read-steps';
+import { readStroke, type StrokeFindings } from './read-stroke';
+import { type ReadTestOptions, readTestOptions, readTestRecord, type TestRecord } from './test-record';
+import type { ValveTestKind, ValveTestReading } from './valve-test-reading';
+
+export interface ReadValveTestOptions extends ReadTestOptions {
+  /** Default: from what the command did. */
+  readonly kind?: ValveTestKind;
+  /** For a hold without cycles before it: period, s, and peak-to-peak swing of PV as the assessment found them. */
+  readonly period?: number;
+  readonly swing?: number;
+}
+
+/** The reading and what it was made from, for figures and tables. */
+export interface ValveTestFindings {
+  readonly reading: ValveTestReading;
+  readonly record: TestRecord;
+  readonly hold: HoldFindings | null;
+  readonly step: StepsFindings | null;
+  readonly stroke: StrokeFindings | null;
+}
+
+/**
+ * Reads one valve test.
+ *
+ * Dead band, resolution and hysteresis are used as ISA-51.1, ANSI/ISA-75.25.01 and IEC 61298-2 define them (definitions
+ * from memory). Dead band is counted from the command at the last movement before a reversal to the one at the first
+ * movement after it. What the record does not resolve is null, with a note.
+ *
+ * @param source path of a file (CSV text or .xlsx), a data frame, or a record already read
+ * @throws UnreadableInput for what cannot be read, a stroke without travel, and a hold without PV
+ * @throws WrongUse for unknown options, and options that make no sense
+ */
+export function readValveTest(
+  source: string | DataFrameLike | TestRecord,
+  options: ReadValveTestOptions = {},
+): ValveTestFindings {
+  refuseUnknownOptions('readValveTest', options, [...readTestOptions, 'kind', 'period', 'swing']);
+  const { kind: statedKind, period, swing, ...reading } = options;
+  const isRecord = typeof source !== 'string' && 'samplePeriod' in source;
+  if (isRecord && Object.keys(reading).length > 0) {
+    throw new WrongUse(
+      `Options that say how to read a file (${Object.keys(reading).join(', ')}) do not go with a record that is read already.`,
+    );
+  }
+  for (const [name, value] of Object.entries({ period, swing })) {
+    if (value !== undefined && !(value > 0 && Number.isFinite(value))) {
+      throw new WrongUse(`The option "${name}" must be a number above 0. Received ${value}.`);
+    }
+  }
+  const kinds: readonly ValveTestKind[] = ['hold', 'step', 'stroke'];
+  if (statedKind !== undefined && !kinds.includes(statedKind)) {
+    throw new WrongUse(`The option "kind" is one of ${kinds.join(', ')}. Received "${statedKind}".`);
+  }
+  const record = isRecord
+    ? (source as TestRecord)
+    : readTestRecord(source as string | DataFrameLike, reading);
+  const kind = statedKind ?? kindOf(record.op);
+  const what = record.source;
+  if (kind === 'hold' && record.pv === null) {
+    throw new UnreadableInput(`${what} is a hold without PV. Whether the cycle died is seen in PV: log it.`);
+  }
+  if (kind === 'stroke' && record.travel === null) {
+    throw new UnreadableInput(
+      `${what} is a stroke without measured travel. Strokes are read from travel; without it make a step test.`,
+    );
+  }
+  const hold = kind === 'hold' ? readHold(record, period ?? null, swing ?? null) : null;
+  const step = kind === 'step' ? readSteps(record) : null;
+  const stroke = kind === 'stroke' ? readStroke(record) : null;
+  const found = step ?? stroke;
+  const notes: Note[] = [
+    ...(statedKind === undefined
+      ? [
+          {
+            code: 'kind',
+            text: `Read as a ${kind} test, by what the command did. State another kind if it was none.`,
+          },
+        ]
+      : []),
+    ...record.notes,
+    ...(hold?.notes ?? []),
+    ...(found?.notes ?? []),
+  ];
+  return {
+    reading: {
+      schema: 'stickband/valve-test/1',
+      kind,
+      deadBand: found?.deadBand ?? null,
+      resolution: found?.resolution ?? null,
+      hysteresis: found?.hysteresis ?? null,
+      steps: step?.steps ?? [],
+      S: stroke?.S ?? null,
+      J: stroke?.J ?? null,
+      notes,
+      cautions: valveTestCautions,
+    },
+    record,
+    hold,
+    step,
+    stroke,
+  };
+}
