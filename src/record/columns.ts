@@ -75,14 +75,13 @@ export function chooseColumns(series: readonly Series[], stated: StatedColumns, 
 /**
  * The columns that are stated, and no others.
  *
- * @throws UnreadableInput when PV or OP is not stated, or a stated name is not there
+ * @throws UnreadableInput when a stated name is not there
  */
-export function statedColumns(series: readonly Series[], stated: StatedColumns, what: string): ChosenColumns {
-  for (const role of ['pv', 'op'] as const) {
-    if (stated[role] === undefined) {
-      throw new UnreadableInput(`No column is stated for ${label(role)} of ${stated.tag}.`);
-    }
-  }
+export function statedColumns(
+  series: readonly Series[],
+  stated: StatedColumns & { readonly pv: string; readonly op: string },
+  what: string,
+): ChosenColumns {
   return columnsOf(byStatedNames(series, stated, what), []);
 }
 

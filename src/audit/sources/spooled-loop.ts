@@ -1,5 +1,5 @@
 /** One loop of a spooled export: what a worker needs to read it. Plain data, fit to be sent to a thread. */
-import type { ReadLoopOptions } from '../../record/read-loop';
+import type { ReadLoopOptions } from '../../record/read-options';
 
 export interface SpooledLoop {
   /** Position in the whole map, from 0. */
