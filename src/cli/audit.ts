@@ -17,6 +17,7 @@ import { auditText } from '../report/audit-text';
 import { defaultOutFolder } from '../report/places';
 import { prepareFolder, writeWhole } from '../report/write-whole';
 import { numberOption, readArguments, stated, wholeOption } from './arguments';
+import { draftMapTo, draftMapTo } from './draft-map';
 import { fileName } from './file-name';
 import { auditHelp } from './help';
 import type { Output } from './output';
@@ -24,6 +25,8 @@ import { startProgress } from './progress';
 
 const optionTypes = {
   map: 'string',
+  'draft-map': 'string',
+  'draft-map': 'string',
   time: 'string',
   sp: 'string',
   pv: 'string',
@@ -53,6 +56,19 @@ export async function audit(words: readonly string[], output: Output): Promise<v
     return;
   }
   const source = oneSource(sources);
+  if (values['draft-map'] !== undefined) {
+    const others = Object.keys(values).filter((name) => name !== 'draft-map');
+    if (others.length > 0) {
+      throw new WrongUse(`--draft-map only drafts a map; leave out --${others.join(', --')}.`);
+    }
+    await draftMapTo(source, values['draft-map'], output);
+    return;
+  }
+  if (values['draft-map'] !== undefined) {
+    refuseOthers(values, 'draft-map');
+    await draftMapTo(source, values['draft-map'], output);
+    return;
+  }
   const shard = values.shard === undefined ? null : shardOption(values.shard);
   const options = auditOptions(values);
   const jsonAlone = values.json === '-';
@@ -104,6 +120,12 @@ function oneSource(sources: readonly string[]): string {
   throw new WrongUse(
     `stickband audit takes one FOLDER, LIST or EXPORT; ${received}. "stickband audit --help" says more.`,
   );
+}
+
+/** An option that does something else than an audit stands alone. */
+function refuseOthers(values: Given, name: keyof Given): void {
+  const others = Object.keys(values).filter((other) => other !== name);
+  if (others.length > 0) throw new WrongUse(`--${name} stands alone; leave out --${others.join(', --')}.`);
 }
 
 function auditOptions(values: Given): AuditOptions {

@@ -52,7 +52,11 @@ Where the loops are.
   FOLDER               one file a loop (.csv, .txt, .tsv, .xlsx)
   LIST.csv             a list of loops with the columns file,tag,service,response,pv_low,pv_high, all but file
                        optional; paths are relative to the list
-  EXPORT --map FILE    one export that holds many loops, and the map of its columns
+  EXPORT --map FILE    one export that holds many loops (text or Parquet of any size, .xlsx up to 64 MB; a column
+                       a signal, or a row a value), and the map that says which column or tag is what
+  EXPORT --draft-map FILE|-
+                       writes such a map from the names in the export, for you to check; what the names do not
+                       decide is left open, with the reason in its column "comment"
 
 What holds for every file of a folder or list, as for "stickband assess".
   --time COL --sp COL --pv COL --op COL --travel COL --mode COL

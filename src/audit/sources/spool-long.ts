@@ -5,6 +5,7 @@ import { roleOf } from '../../record/names';
 import { findName, type LongColumns, longNote } from '../../record/series';
 import { listed } from '../../record/table';
 import type { CellColumnWriter } from './cell-file';
+import { ownText } from './own-text';
 import type { TagPlaces } from './spool';
 import type { Pass, Passed } from './spool-wide';
 
@@ -109,9 +110,4 @@ function timeColumn({ reader, loops, what }: Pass): number {
     );
   }
   return time;
-}
-
-/** A copy of a text: a piece of a long text would keep the whole of it in memory. */
-export function ownText(text: string): string {
-  return Buffer.from(text).toString();
 }

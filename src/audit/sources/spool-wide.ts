@@ -85,7 +85,7 @@ function neededColumns({ reader, loops, what }: Pass): Map<number, boolean> {
     sets.set(time, seriesOf(watched, time, what));
     usedBy(null, true);
   }
-  refuseUnknownNames(loops, sets, what);
+  refuseWrongNames(loops, sets, what);
   const stamps = new Set<Cells>();
   for (const loop of loops) {
     const { pv, op, sp, travel, mode } = statedColumns(sets.get(loop.time)!.series, loop, what);
@@ -105,7 +105,7 @@ function neededColumns({ reader, loops, what }: Pass): Map<number, boolean> {
   return needed;
 }
 
-function refuseUnknownNames(
+function refuseWrongNames(
   loops: readonly WholeLoop[],
   sets: ReadonlyMap<string | undefined, SeriesSet>,
   what: string,
@@ -117,14 +117,17 @@ function refuseUnknownNames(
     const names = series.map(({ name }) => name);
     for (const role of roles) {
       const name = loop[role];
-      if (name !== undefined && findName(names, name) < 0) {
-        mistakes.push(`"${name}" for ${label(role)} of ${loop.tag}`);
-      }
+      if (name === undefined) continue;
+      const at = findName(names, name);
+      const again = names.indexOf(names[at]!, at + 1);
+      if (at < 0) mistakes.push(`there is no column "${name}" for ${label(role)} of ${loop.tag}`);
+      else if (again >= 0)
+        mistakes.push(`"${name}", ${label(role)} of ${loop.tag}, stands in the header twice`);
     }
   }
   if (mistakes.length === 0) return;
-  const more = mistakes.length > shownMistakes ? ` and ${mistakes.length - shownMistakes} more` : '';
+  const more = mistakes.length > shownMistakes ? `; and ${mistakes.length - shownMistakes} more` : '';
   throw new UnreadableInput(
-    `${what} has no column ${mistakes.slice(0, shownMistakes).join(', none ')}${more}, which the map names. Columns found: ${listed(series.map(({ name }) => name))}.`,
+    `${what} does not fit its map: ${mistakes.slice(0, shownMistakes).join('; ')}${more}. Columns found: ${listed(series.map(({ name }) => name))}.`,
   );
 }
