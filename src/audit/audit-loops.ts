@@ -132,7 +132,8 @@ export async function finishLoops(
     const journal = Journal.open(join(workFolder, journalName(shard)), identity, resume);
     try {
       const loops = found.loops.filter(({ tag }) => shard === null || isInShard(tag, shard));
-      await finish(loops, found, journal, { workers, seed, workFolder, onProgress });
+      const spoolFolder = join(workFolder, journalName(shard).replace(/\.jsonl$/, '-export'));
+      await finish(loops, found, journal, { workers, seed, spoolFolder, onProgress });
       return { ...identity, loops: allOf(loops, journal), leftOut: found.leftOut };
     } finally {
       journal.close();
@@ -145,7 +146,8 @@ export async function finishLoops(
 interface Run {
   readonly workers: number;
   readonly seed: number;
-  readonly workFolder: string;
+  /** Where the columns of an export lie while its loops are assessed. */
+  readonly spoolFolder: string;
   readonly onProgress: (progress: AuditProgress) => void;
 }
 
@@ -154,7 +156,7 @@ async function finish(
   loops: readonly ListedLoop[],
   { map }: FoundLoops,
   journal: Journal,
-  { workers, seed, workFolder, onProgress }: Run,
+  { workers, seed, spoolFolder, onProgress }: Run,
 ): Promise<void> {
   // Taken before anything is read: a file that changes meanwhile is read again when the audit is resumed.
   const stamps = new Map(loops.map(({ order, path }) => [order, stampOf(path)]));
@@ -163,15 +165,14 @@ async function finish(
     return entry === undefined || entry.failed || entry.stamp !== stamps.get(order);
   });
   if (left.length === 0) return;
-  const spoolFolder = join(workFolder, 'spool');
   const counts = { finished: loops.length - left.length, loops: loops.length, failed: 0 };
   const spools = new Map<number, SpooledLoop>();
   if (map) {
-    const wanted = { loops: map.loops.filter(({ order }) => stamps.has(order)) };
+    const mine = { loops: map.loops.filter(({ order }) => stamps.has(order)) };
     const tell = timed((share, timeLeft) =>
       onProgress({ step: 'reading the export', ...counts, share, timeLeft }),
     );
-    for (const loop of await spoolExport(left[0]!.path, wanted, spoolFolder, tell))
+    for (const loop of await spoolExport(left[0]!.path, mine, spoolFolder, tell))
       spools.set(loop.order, loop);
   }
   const jobs = left.map(({ order, tag, file, path, reading }): LoopJob => {

@@ -1,6 +1,8 @@
 /** Runs jobs on worker threads, or in this thread. Only a few jobs and results are alive at any time. */
+import { totalmem } from 'node:os';
 import { join } from 'node:path';
 import { setImmediate } from 'node:timers/promises';
+import { getHeapStatistics } from 'node:v8';
 import { assessJob, failedLoop } from './assess-job';
 import type { FinishedLoop } from './audit';
 import type { LoopJob } from './loop-job';
@@ -31,6 +33,7 @@ export async function runJobs(
     filename: join(__dirname, 'run-worker.js'),
     minThreads: threads,
     maxThreads: threads,
+    resourceLimits: { maxOldGenerationSizeMb: memoryOfOne(threads) },
   });
   pool.on('error', () => {}); // a thread that dies while idle is replaced; one at work answers below
   const waiting = jobs.values();
@@ -45,6 +48,16 @@ export async function runJobs(
   } finally {
     await pool.destroy();
   }
+}
+
+/**
+ * MB that one worker may fill: its share of four fifths (own choice) of the machine or container, and no more than this
+ * process may. Without it a loop that is too large ends the whole audit instead of its own worker.
+ */
+function memoryOfOne(threads: number): number {
+  const constrained = process.constrainedMemory();
+  const whole = constrained > 0 ? Math.min(constrained, totalmem()) : totalmem();
+  return Math.floor(Math.min((0.8 * whole) / threads, getHeapStatistics().heap_size_limit) / 2 ** 20);
 }
 
 function crashReason(error: Error): string {

@@ -17,7 +17,7 @@ import { auditText } from '../report/audit-text';
 import { defaultOutFolder } from '../report/places';
 import { prepareFolder, writeWhole } from '../report/write-whole';
 import { numberOption, readArguments, stated, wholeOption } from './arguments';
-import { draftMapTo, draftMapTo } from './draft-map';
+import { draftMapTo } from './draft-map';
 import { fileName } from './file-name';
 import { auditHelp } from './help';
 import type { Output } from './output';
@@ -25,7 +25,6 @@ import { startProgress } from './progress';
 
 const optionTypes = {
   map: 'string',
-  'draft-map': 'string',
   'draft-map': 'string',
   time: 'string',
   sp: 'string',
@@ -56,14 +55,6 @@ export async function audit(words: readonly string[], output: Output): Promise<v
     return;
   }
   const source = oneSource(sources);
-  if (values['draft-map'] !== undefined) {
-    const others = Object.keys(values).filter((name) => name !== 'draft-map');
-    if (others.length > 0) {
-      throw new WrongUse(`--draft-map only drafts a map; leave out --${others.join(', --')}.`);
-    }
-    await draftMapTo(source, values['draft-map'], output);
-    return;
-  }
   if (values['draft-map'] !== undefined) {
     refuseOthers(values, 'draft-map');
     await draftMapTo(source, values['draft-map'], output);

@@ -83,10 +83,7 @@ describe('readLoopList', () => {
   });
 
   it.each([
-    [
-      'file,pv_hihg\na.csv,3\n',
-      /has the column "pv_hihg".*Its columns are file, tag, service/,
-    ],
+    ['file,pv_hihg\na.csv,3\n', /has the column "pv_hihg".*Its columns are file, tag, service/],
     ['file,tag,tag\na.csv,T1,T2\n', /the column "tag" twice/],
     ['file,service\na.csv,flow\nb.csv,flux\n', /line 3: "service" is one of flow, .*, not "flux"/],
     ['file,response\na.csv,slow\n', /line 2: "response" is one of self-regulating, integrating/],
