@@ -11,20 +11,25 @@ describe('the command line', () => {
   it('prints help on stdout, general and for each command', async () => {
     expect((await captured('--help')).stdout).toContain('stickband assess FILE');
     expect((await captured('assess', '--help')).stdout).toContain('--pv-range=LOW:HIGH');
+    expect((await captured('audit', '--help')).stdout).toContain('--shard I/N');
+    expect((await captured('merge', '--help')).stdout).toContain('audit-part-I-of-N.json');
     expect((await captured('notebook', '--help')).stdout).toContain('Opens Jupyter');
   });
 
   it('has every option that the README shows', async () => {
-    const { stdout } = await captured('assess', '--help');
+    const { stdout: general } = await captured('--help');
+    const commands = [...general.matchAll(/^ {2}stickband ([a-z-]+)/gm)].map((match) => match[1]!);
+    let help = '';
+    for (const command of commands) help += (await captured(command, '--help')).stdout;
     const shown = readFileSync('README.md', 'utf8').matchAll(/ (--[a-z-]+)(?=[ =])/g);
     const options = [...new Set([...shown].map((match) => match[1]!))].filter((option) => option !== '--no');
     expect(options.length).toBeGreaterThan(5);
-    for (const option of options) expect(stdout).toContain(option);
+    for (const option of options) expect(help).toContain(option);
   });
 
   it.each([
     [[], /stickband assess FILE/],
-    [['asess'], /no command "asess"\. Commands are: assess, notebook/],
+    [['asess'], /no command "asess"\. Commands are: assess, audit, merge, .*notebook/],
     [['toString'], /no command "toString"/],
     [['assess'], /takes one FILE; none was received/],
     [['assess', 'a.csv', 'b.csv'], /takes one FILE; received were a\.csv, b\.csv/],
