@@ -14,6 +14,7 @@ import { type AuditIdentity, Journal } from './journal';
 import type { ListedLoop, LoopJob, LoopSource } from './loop-job';
 import { runJobs } from './run-jobs';
 import { checkShard, isInShard, type Shard } from './shard';
+import { type ExportMap, isReadable } from './sources/export-map';
 import { spoolExport } from './sources/spool-export';
 import type { SpooledLoop } from './sources/spooled-loop';
 
@@ -166,17 +167,13 @@ async function finish(
   });
   if (left.length === 0) return;
   const counts = { finished: loops.length - left.length, loops: loops.length, failed: 0 };
-  const spools = new Map<number, SpooledLoop>();
-  if (map) {
-    const mine = { loops: map.loops.filter(({ order }) => stamps.has(order)) };
-    const tell = timed((share, timeLeft) =>
+  const spools =
+    map &&
+    (await spoolsOf(loops, map, spoolFolder, (share, timeLeft) =>
       onProgress({ step: 'reading the export', ...counts, share, timeLeft }),
-    );
-    for (const loop of await spoolExport(left[0]!.path, mine, spoolFolder, tell))
-      spools.set(loop.order, loop);
-  }
+    ));
   const jobs = left.map(({ order, tag, file, path, reading }): LoopJob => {
-    const loop = spools.get(order);
+    const loop = spools?.get(order);
     const source: LoopSource = loop ? { kind: 'spooled', loop } : { kind: 'file', path, reading };
     return { order, tag, file, source, seed };
   });
@@ -191,6 +188,25 @@ async function finish(
     tell(done / jobs.length);
   });
   rmSync(spoolFolder, { recursive: true, force: true });
+}
+
+/** The loops of an export by their order, each ready to be read by itself. */
+async function spoolsOf(
+  loops: readonly ListedLoop[],
+  map: ExportMap,
+  folder: string,
+  onProgress: (share: number, timeLeft: number | null) => void,
+): Promise<Map<number, SpooledLoop>> {
+  const orders = new Set(loops.map(({ order }) => order));
+  const mine = map.loops.filter(({ order }) => orders.has(order));
+  if (mine.some(isReadable)) {
+    const spooled = await spoolExport(loops[0]!.path, { loops: mine }, folder, timed(onProgress));
+    return new Map(spooled.map((loop) => [loop.order, loop]));
+  }
+  // A shard in which the map leaves PV or OP of every loop open: reading each of them says so, without the export.
+  return new Map(
+    loops.map(({ order, tag, file, reading }) => [order, { order, tag, file, sha256: '', folder, reading }]),
+  );
 }
 
 /** Adds the time left, s, to a share done: from the pace since this was called; null before there is one. */

@@ -7,7 +7,7 @@ import { decodeText } from '../record/delimited';
 import type { ReadLoopOptions } from '../record/read-loop';
 import type { ListedLoop } from './loop-job';
 import { isLoopList, readLoopList, tagOfFile } from './loop-list';
-import type { ExportMap } from './sources/export-map';
+import { type ExportMap, isReadable } from './sources/export-map';
 import { readMap } from './sources/read-map';
 
 export interface FoundLoops {
@@ -61,6 +61,11 @@ function fromMap(source: string, mapFile: string, forAll: ReadLoopOptions): Foun
     );
   }
   const map = readMap(mapFile);
+  if (!map.loops.some(isReadable)) {
+    throw new UnreadableInput(
+      `The map ${basename(mapFile)} states PV and OP of no loop. Fill in its columns "pv" and "op".`,
+    );
+  }
   const loops = map.loops.map(({ order, comment: _, ...reading }) => ({
     order,
     tag: reading.tag,

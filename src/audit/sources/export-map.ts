@@ -29,3 +29,8 @@ export interface MappedLoop {
 export interface ExportMap {
   readonly loops: readonly MappedLoop[];
 }
+
+/** Whether the map states enough of a loop to read it. */
+export function isReadable({ pv, op }: MappedLoop): boolean {
+  return pv !== undefined && op !== undefined;
+}
