@@ -22,6 +22,8 @@ const rounding = 1e-6;
 const spread = 3;
 /** Samples that a command has to stand still after a step so that it is one (own choice). */
 const dwell = 5;
+/** Samples that the command has to stand still within a ramp so that it counts as a stop (own choice). */
+const shortestStop = 10;
 /** Turns of the command by less than this share of its whole range are none (own choice). */
 const smallestTurn = 0.02;
 
@@ -63,7 +65,7 @@ export function kindOf(op: Float64Array): ValveTestKind {
   return median >= dwell && !isFine ? 'step' : 'stroke';
 }
 
-/** Legs between the turns of the command, in order. */
+/** Legs between the turns and stops of the command, in order. */
 export function commandLegs(op: Float64Array): CommandLeg[] {
   const least = Math.max(smallestTurn * rangeOf(op), rounding);
   const turns: number[] = [];
@@ -89,11 +91,25 @@ export function commandLegs(op: Float64Array): CommandLeg[] {
     }
   }
   if (direction !== 0) turns.push(extreme);
-  return turns.slice(1).map((to, i) => ({
-    from: turns[i]!,
-    to,
-    direction: op[to]! > op[turns[i]!]! ? 1 : -1,
-  }));
+  return turns
+    .slice(1)
+    .flatMap((to, i) => splitAtStops(op, turns[i]!, to, op[to]! > op[turns[i]!]! ? 1 : -1));
+}
+
+/** One leg for each ramp between stops: what is in between says nothing on how the stem moves. */
+function splitAtStops(op: Float64Array, from: number, to: number, direction: 1 | -1): CommandLeg[] {
+  const changes: number[] = [];
+  for (let k = from + 1; k <= to; k++) if (Math.abs(op[k]! - op[k - 1]!) > rounding) changes.push(k);
+  const gaps = changes.slice(1).map((k, i) => k - changes[i]!);
+  const usual = [...gaps].sort((a, b) => a - b)[Math.floor(gaps.length / 2)] ?? 1;
+  const legs: CommandLeg[] = [];
+  let start = from;
+  gaps.forEach((gap, i) => {
+    if (gap < Math.max(shortestStop, 3 * usual)) return;
+    legs.push({ from: start, to: changes[i]!, direction });
+    start = changes[i]!;
+  });
+  return [...legs, { from: start, to, direction }];
 }
 
 export function rangeOf(values: Float64Array): number {

@@ -56,6 +56,8 @@ const band = '% of span';
 /** Bins along the stroke in which the ways up and down are compared. */
 const bins = 15;
 const fewestInBin = 4;
+/** Legs up to this many times as fast as the slowest one are read for the dead band (own choice). */
+export const slowPace = 1.5;
 /** Slips after the first movement that the fit of S and J counts (own choice). */
 const slipsCounted = 2.5;
 
@@ -96,9 +98,9 @@ export function readStroke(record: TestRecord): StrokeFindings {
     return { ...empty, notes };
   }
   const noise = line.slope * motion.noise;
-  const levels = strokeLevels(drive, travel, motion, line, noise);
-  const paces = levels.legs.filter(({ pace }) => pace > 0).map(({ pace }) => pace);
-  const pace = Math.max(0, ...paces);
+  const levels = strokeLevels(drive, travel, motion, line, noise, settlingSamples(lag, samplePeriod));
+  // The standards ask for a slow stroke: of several the slowest are read.
+  const pace = slowPace * Math.min(...levels.legs.filter(({ pace }) => pace > 0).map(({ pace }) => pace));
   if (lag === null) {
     notes.push({
       code: 'lag-not-known',
@@ -116,6 +118,7 @@ export function readStroke(record: TestRecord): StrokeFindings {
   levels.legs.forEach((now, i) => {
     const before = levels.legs[i - 1];
     if (!before || before.lastMovement === null || now.firstBreak === null) return;
+    if (before.leg.leg.direction === now.leg.leg.direction || Math.max(before.pace, now.pace) > pace) return;
     readings.push(before.lastMovement + now.firstBreak);
     const centre = line.offset + line.slope * now.leg.rest;
     const { direction } = now.leg.leg;
@@ -198,6 +201,11 @@ export function readStroke(record: TestRecord): StrokeFindings {
   };
 }
 
+/** Samples until a first-order lag has settled to within one per cent. */
+export function settlingSamples(lag: number | null, samplePeriod: number): number {
+  return lag === null ? 0 : Math.ceil((5 * lag) / samplePeriod);
+}
+
 /** The fitted value with an interval that also reaches as far as that of the direct reading does from its value. */
 function around(value: number, direct: Estimate): Estimate {
   const half = Math.max((direct.high - direct.low) / 2, Math.abs(value - direct.value));
@@ -276,8 +284,8 @@ function fitVariants(
   S: number,
   J: number,
 ): FittedVariant[] {
-  const windows = motion.legs.slice(1).flatMap(({ leg, moves, restFrom, rest }) => {
-    if (moves === null) return [];
+  const windows = motion.legs.slice(1).flatMap(({ leg, moves, restFrom, rest }, i) => {
+    if (moves === null || motion.legs[i]!.leg.direction === leg.direction) return [];
     const reach = Math.max(0.5 * S, slipsCounted * J);
     let to = moves;
     while (to < leg.to && leg.direction * (drive[to]! - drive[moves]!) < reach) to++;

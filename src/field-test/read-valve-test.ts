@@ -3,11 +3,18 @@ import { valveTestCautions } from '../assessment/cautions';
 import { refuseUnknownOptions, UnreadableInput, WrongUse } from '../errors';
 import type { DataFrameLike } from '../record/data-frame';
 import type { Note } from '../record/loop-record';
+import { type ActuatorFriction, type ActuatorSize, actuatorFriction } from './actuator-friction';
 import { kindOf } from './command';
 import { type HoldFindings, readHold } from './read-hold';
 import { readSteps, type StepsFindings } from './read-steps';
 import { readStroke, type StrokeFindings } from './read-stroke';
-import { type ReadTestOptions, readTestOptions, readTestRecord, type TestRecord } from './test-record';
+import {
+  quantityIn,
+  type ReadTestOptions,
+  readTestOptions,
+  readTestRecord,
+  type TestRecord,
+} from './test-record';
 import type { ValveTestKind, ValveTestReading } from './valve-test-reading';
 
 export interface ReadValveTestOptions extends ReadTestOptions {
@@ -16,6 +23,8 @@ export interface ReadValveTestOptions extends ReadTestOptions {
   /** For a hold without cycles before it: period, s, and peak-to-peak swing of PV as the assessment found them. */
   readonly period?: number;
   readonly swing?: number;
+  /** Effective area of diaphragm or piston with its unit, e.g. `645 cm2`: gives friction as a force. */
+  readonly area?: string;
 }
 
 /** The reading and what it was made from, for figures and tables. */
@@ -25,6 +34,8 @@ export interface ValveTestFindings {
   readonly hold: HoldFindings | null;
   readonly step: StepsFindings | null;
   readonly stroke: StrokeFindings | null;
+  /** Spring and friction; null without strokes on which the actuator pressure was logged. */
+  readonly friction: ActuatorFriction | null;
 }
 
 /**
@@ -42,12 +53,12 @@ export function readValveTest(
   source: string | DataFrameLike | TestRecord,
   options: ReadValveTestOptions = {},
 ): ValveTestFindings {
-  refuseUnknownOptions('readValveTest', options, [...readTestOptions, 'kind', 'period', 'swing']);
-  const { kind: statedKind, period, swing, ...reading } = options;
+  refuseUnknownOptions('readValveTest', options, [...readTestOptions, 'kind', 'period', 'swing', 'area']);
+  const { kind: statedKind, period, swing, area, stroke: length, ...forFile } = options;
   const isRecord = typeof source !== 'string' && 'samplePeriod' in source;
-  if (isRecord && Object.keys(reading).length > 0) {
+  if (isRecord && Object.keys(forFile).length > 0) {
     throw new WrongUse(
-      `Options that say how to read a file (${Object.keys(reading).join(', ')}) do not go with a record that is read already.`,
+      `Options that say how to read a file (${Object.keys(forFile).join(', ')}) do not go with a record that is read already.`,
     );
   }
   for (const [name, value] of Object.entries({ period, swing })) {
@@ -61,7 +72,7 @@ export function readValveTest(
   }
   const record = isRecord
     ? (source as TestRecord)
-    : readTestRecord(source as string | DataFrameLike, reading);
+    : readTestRecord(source as string | DataFrameLike, withStroke(forFile, length));
   const kind = statedKind ?? kindOf(record.op);
   const what = record.source;
   if (kind === 'hold' && record.pv === null) {
@@ -76,6 +87,12 @@ export function readValveTest(
   const step = kind === 'step' ? readSteps(record) : null;
   const stroke = kind === 'stroke' ? readStroke(record) : null;
   const found = step ?? stroke;
+  const frictionNotes: Note[] = [];
+  const size: ActuatorSize = {
+    area: area === undefined ? null : quantityIn(area, 'm^2', 'area'),
+    stroke: length === undefined ? null : quantityIn(length, 'm', 'stroke'),
+  };
+  const friction = stroke && record.pressure ? actuatorFriction(record, stroke, size, frictionNotes) : null;
   const notes: Note[] = [
     ...(statedKind === undefined
       ? [
@@ -88,6 +105,7 @@ export function readValveTest(
     ...record.notes,
     ...(hold?.notes ?? []),
     ...(found?.notes ?? []),
+    ...frictionNotes,
   ];
   return {
     reading: {
@@ -106,5 +124,10 @@ export function readValveTest(
     hold,
     step,
     stroke,
+    friction,
   };
+}
+
+function withStroke(options: ReadTestOptions, stroke: string | undefined): ReadTestOptions {
+  return stroke === undefined ? options : { ...options, stroke };
 }

@@ -30,7 +30,7 @@ export interface ResponseWindow {
   readonly samplePeriod: number;
 }
 
-export const responseShares = { T63: 1 - Math.exp(-1), T86: 1 - Math.exp(-2) } as const;
+const responseShares = { T63: 1 - Math.exp(-1), T86: 1 - Math.exp(-2) };
 
 /** A response that is smaller than this many times the noise gives no times (own choice). */
 const leastOverNoise = 8;

@@ -24,6 +24,8 @@ export interface LegLevels {
   readonly slidingSamples: number;
   /** Change of the drive in one sample. */
   readonly pace: number;
+  /** Jump of slips that are not told apart, by the saw-tooth that they leave; null without. */
+  readonly hiddenJump: number | null;
 }
 
 export interface StrokeLevels {
@@ -36,10 +38,16 @@ export interface StrokeLevels {
   readonly jump: number | null;
 }
 
+/** Samples on either side of a moment from which a noisy drive is taken. */
+const linedReach = 4;
 /** Fewest samples of sliding from which a level is taken. */
 const fewest = 5;
 /** Scatter while it seems to slide, over that of noise, from which slips too fast to tell apart are behind it. */
 const hiddenSlips = 1.8;
+const fewestForScatter = 20;
+/** Fewest slips whose rests give a level; share of a leg that has to slide so that it slides as a whole. */
+const fewestSlips = 3;
+const slidesMostly = 0.6;
 
 /**
  * The spring's line from all samples after the first movement of each leg, with one constant more for the direction.
@@ -72,6 +80,9 @@ export function springLine(drive: Float64Array, travel: Float64Array, motion: St
 
 /**
  * @param noise standard deviation of the noise of drive and travel together, unit of the drive
+ * @param settles samples after a movement begins until the actuator's lag is over
+ * @param logged for a drive that was measured: its own noise, and the hidden jumps, one a leg, as the command, which
+ *   has no noise, shows them
  */
 export function strokeLevels(
   drive: Float64Array,
@@ -79,6 +90,8 @@ export function strokeLevels(
   motion: StemMotion,
   { offset, slope }: SpringLine,
   noise: number,
+  settles: number,
+  logged?: { readonly noise: number; readonly hiddenJumps: readonly (number | null)[] },
 ): StrokeLevels {
   const breaks: number[] = [];
   const afterSlips: number[] = [];
@@ -90,10 +103,16 @@ export function strokeLevels(
   for (const motionOfLeg of moving) {
     const { direction } = motionOfLeg.leg;
     const pace = paceOf(motionOfLeg);
+    const wholeSlides = motionOfLeg.stretches
+      .filter(({ slides }) => slides)
+      .reduce((sum, { from, to }) => sum + to - from, 0);
+    const mostly = wholeSlides > slidesMostly * (motionOfLeg.leg.to - motionOfLeg.moves!);
     for (const stretch of motionOfLeg.stretches) {
+      if (stretch.slides && !mostly) continue;
       if (stretch.slides) {
-        // The first samples still carry the slip.
-        const from = Math.min(stretch.to - 2, stretch.from + Math.ceil(0.1 * (stretch.to - stretch.from)));
+        // The first samples still carry the slip, and the actuator getting up to speed.
+        const skipped = Math.max(settles, Math.ceil(0.1 * (stretch.to - stretch.from)));
+        const from = Math.min(stretch.to, stretch.from + skipped);
         const values = Array.from({ length: stretch.to - from }, (_, i) =>
           off(direction, drive[from + i]!, travel[from + i]!),
         );
@@ -105,19 +124,48 @@ export function strokeLevels(
       if (stretch.beforeSlip) breaks.push(off(direction, drive[stretch.to - 1]!, stretch.level) + pace / 2);
     }
   }
-  const restLevel = afterSlips.length > 0 ? mean(afterSlips) : null;
+  const restLevel = afterSlips.length >= fewestSlips ? mean(afterSlips) : null;
 
   // Slips that follow each other too fast, or are too small, to be told apart leave a saw-tooth around the mean level.
-  const scatter = mean([...slid.values()].map(varianceAroundLine));
-  const hidden =
-    slid.size > 0 && scatter > hiddenSlips * noise * noise ? Math.sqrt(12 * (scatter - noise * noise)) : null;
+  const hiddenIn = new Map<LegMotion, number>();
+  for (const [leg, values] of slid) {
+    if (logged) {
+      const known = logged.hiddenJumps[motion.legs.indexOf(leg)];
+      if (known) hiddenIn.set(leg, known);
+      continue;
+    }
+    const scatter = values.length >= fewestForScatter ? varianceAroundLine(values) : 0;
+    if (scatter > hiddenSlips * noise * noise) hiddenIn.set(leg, Math.sqrt(12 * (scatter - noise * noise)));
+  }
   const told = breaks.length > 0 && restLevel !== null ? mean(breaks) - restLevel : null;
+  const hiddenMostly = hiddenIn.size > slid.size / 2 ? mean([...hiddenIn.values()]) : null;
 
+  const driveAt = (leg: LegMotion, at: number): number => {
+    // A noisy drive is taken from the line through some samples around.
+    const reach = (logged?.noise ?? 0) > 0.2 * paceOf(leg) ? linedReach : 0;
+    return reach === 0
+      ? between(drive, at)
+      : onLine(
+          drive,
+          at,
+          Math.max(leg.leg.from, Math.round(at) - reach),
+          Math.min(leg.leg.to, Math.round(at) + reach),
+        );
+  };
   const legs = motion.legs.map((leg): LegLevels => {
     if (leg.moves === null) {
-      return { leg, firstBreak: null, lastMovement: null, sliding: null, slidingSamples: 0, pace: 0 };
+      return {
+        leg,
+        firstBreak: null,
+        lastMovement: null,
+        sliding: null,
+        slidingSamples: 0,
+        pace: 0,
+        hiddenJump: null,
+      };
     }
     const values = slid.get(leg) ?? [];
+    const hidden = hiddenIn.get(leg) ?? null;
     const end = values.slice(-Math.max(20, Math.ceil(values.length / 4)));
     const last = leg.stretches[leg.stretches.length - 1]!;
     const restsAtEnd = !last.slides && restLevel !== null;
@@ -129,21 +177,38 @@ export function strokeLevels(
       firstBreak: restsFirst
         ? slope * leg.jump + restLevel
         : hidden !== null && leg.bend !== null
-          ? off(leg.leg.direction, between(drive, leg.bend), leg.rest) + hidden / 2
-          : off(leg.leg.direction, between(drive, leg.breaks!), leg.rest),
+          ? off(leg.leg.direction, driveAt(leg, leg.bend), leg.rest) + hidden / 2
+          : off(leg.leg.direction, driveAt(leg, leg.breaks!), leg.rest),
       lastMovement: restsAtEnd ? restLevel : slidingAtEnd,
       sliding: values.length > 0 && hidden === null ? mean(values) : null,
       slidingSamples: values.length,
       pace: paceOf(leg),
+      hiddenJump: hidden,
     };
   });
-  return { legs, breaks, afterSlips, jump: told ?? hidden };
+  return { legs, breaks, afterSlips, jump: told ?? hiddenMostly };
 }
 
 function between(values: Float64Array, at: number): number {
   const place = Math.min(values.length - 1, Math.max(0, at));
   const k = Math.min(values.length - 2, Math.floor(place));
   return values[k]! + (place - k) * (values[k + 1]! - values[k]!);
+}
+
+/** Value at `at` of the line through samples `from` to `to`. */
+function onLine(values: Float64Array, at: number, from: number, to: number): number {
+  const n = to - from + 1;
+  if (n < 3) return between(values, at);
+  const middle = (from + to) / 2;
+  let sum = 0;
+  let across = 0;
+  let along = 0;
+  for (let k = from; k <= to; k++) {
+    sum += values[k]!;
+    across += (k - middle) * values[k]!;
+    along += (k - middle) ** 2;
+  }
+  return sum / n + (across / along) * (at - middle);
 }
 
 function mean(values: readonly number[]): number {
