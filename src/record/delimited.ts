@@ -1,5 +1,5 @@
 /** Reads text with columns separated by comma, semicolon or tab. */
-import { parse } from 'papaparse';
+import { type ParseError, parse } from 'papaparse';
 import { UnreadableInput } from '../errors';
 import { tableOf } from './header';
 import type { Table } from './table';
@@ -48,8 +48,18 @@ export function decodeText(bytes: Uint8Array, what: string): string {
  */
 export function readDelimited(text: string, what: string): Table {
   if (text.trim() === '') throw new UnreadableInput(`${what} is empty.`);
-  const { data } = parse<string[]>(text, { delimiter: separatorOf(text) });
+  const { data, errors } = parse<string[]>(text, { delimiter: separatorOf(text) });
+  refuseOpenQuote(errors, what);
   return tableOf(data, what);
+}
+
+/** A quotation mark that is never closed swallows all rows behind it. */
+export function refuseOpenQuote(errors: readonly ParseError[], what: string, linesBefore = 0): void {
+  const open = errors.find(({ code }) => code === 'MissingQuotes');
+  if (open === undefined) return;
+  throw new UnreadableInput(
+    `${what} has a quotation mark on line ${linesBefore + (open.row ?? 0) + 1} that is never closed. Correct the cell, or export again.`,
+  );
 }
 
 /** The separator that cuts most of the first lines into the same number of cells, more than one. */

@@ -2,9 +2,9 @@
 import { createHash } from 'node:crypto';
 import { createReadStream, statSync } from 'node:fs';
 import { Readable } from 'node:stream';
-import { parse } from 'papaparse';
+import { type ParseError, parse } from 'papaparse';
 import { UnreadableInput } from '../../errors';
-import { encodingsOf, judged, separatorOf } from '../../record/delimited';
+import { encodingsOf, judged, refuseOpenQuote, separatorOf } from '../../record/delimited';
 import { DataRows, headerOf, tableOf } from '../../record/header';
 import type { Note } from '../../record/loop-record';
 import type { Cell } from '../../record/table';
@@ -87,7 +87,8 @@ export function openDelimited(path: string, encoding: string, what: string): Exp
       }
       yield decode(decoder, new Uint8Array(), false);
     }
-    await eachChunk(Readable.from(pieces()), delimiter, (chunk) => {
+    await eachChunk(Readable.from(pieces()), delimiter, (chunk, errors) => {
+      refuseOpenQuote(errors, what, at);
       if (chunk.length > 0) sinceRow = 0;
       for (const row of chunk) data.add(row, at++);
       if (rows.length > 0) handOn();
@@ -100,11 +101,15 @@ export function openDelimited(path: string, encoding: string, what: string): Exp
 }
 
 /** Rows of a stream of text, in as many chunks as come. What `take` throws ends the reading. */
-function eachChunk(text: Readable, delimiter: string, take: (rows: string[][]) => void): Promise<void> {
+function eachChunk(
+  text: Readable,
+  delimiter: string,
+  take: (rows: string[][], errors: ParseError[]) => void,
+): Promise<void> {
   return new Promise((done, failed) => {
     parse<string[]>(text, {
       delimiter,
-      chunk: ({ data }) => take(data),
+      chunk: ({ data, errors }) => take(data, errors),
       complete: () => done(),
       error: (error) => {
         text.destroy();

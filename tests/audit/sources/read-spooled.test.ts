@@ -318,6 +318,17 @@ describe('a spooled export tells mistakes with the row of the export', () => {
 
   it('and of a row that is wider than the header, or a quotation mark that is never closed', async () => {
     const text = textOf(wide());
+    const open = text.slice(0, text.indexOf('\n', 20_000) + 1);
+    const unclosed = open + text.slice(open.length).replace(/\n([^,]*),/, '\n$1,"');
+    const line = open.split('\n').length + 1;
+    for (const read of [
+      (file: string) => spooled(file, map),
+      async (file: string) => [readLoop(file, map[0]!)],
+    ]) {
+      await expect(read(fileOf(unclosed))).rejects.toThrow(
+        `quotation mark on line ${line} that is never closed`,
+      );
+    }
     const at = text.indexOf('\n', 30_000);
     await expect(spooled(fileOf(`${text.slice(0, at)},77${text.slice(at)}`), map)).rejects.toThrow(
       /has 11 cells on line \d+ but 10 column names/,
