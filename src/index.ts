@@ -12,9 +12,23 @@ export type {
   NextStep,
   Verdict,
 } from './assessment/assessment';
-export { cautions } from './assessment/cautions';
+export { cautions, valveTestCautions } from './assessment/cautions';
 export type { Findings } from './assessment/findings';
 export { answerCard } from './assessment/make-answer-card';
+export type { Audit, AuditPart, FailedLoop, FinishedLoop, LoopGroup, RankedLoop } from './audit/audit';
+export { hasFailed } from './audit/audit';
+export {
+  type AuditOptions,
+  type AuditProgress,
+  auditLoops,
+  auditOf,
+  type FinishedRun,
+  finishLoops,
+  partOf,
+  type RunOptions,
+} from './audit/audit-loops';
+export { mergeAudits } from './audit/merge-audits';
+export type { Shard } from './audit/shard';
 export { type CauseInput, nameCause } from './cause/name-cause';
 export { MissingTool, StickbandError, UnreadableInput, UnwritableOutput, WrongUse } from './errors';
 export { type FitOptions, fitStiction } from './estimate/fit-stiction';
@@ -27,6 +41,22 @@ export type {
   StictionResult,
   ValveTest,
 } from './estimate/stiction-fit';
+export type { ActuatorFriction, FrictionAmount } from './field-test/actuator-friction';
+export type {
+  FittedLaw,
+  FrictionCurve,
+  FrictionCurvePoint,
+  FrictionLawName,
+} from './field-test/friction-curve';
+export {
+  type ReadValveTestOptions,
+  readValveTest,
+  type ValveTestFindings,
+} from './field-test/read-valve-test';
+export { readingCard } from './field-test/reading-card';
+export type { TestCard } from './field-test/test-card';
+export { type ReadTestOptions, readTestRecord, type TestRecord } from './field-test/test-record';
+export type { StepRead, ValveTestKind, ValveTestReading } from './field-test/valve-test-reading';
 export { cycleFigure } from './figures/cycle-figure';
 export { evidenceFigure } from './figures/evidence-figure';
 export type { Figure } from './figures/figure';
@@ -71,6 +101,7 @@ export { type ReadLoopOptions, readLoop } from './record/read-loop';
 export { answerText } from './report/answer-text';
 export { staticPictures } from './report/static-picture';
 export type { Table, TableValue } from './report/table';
+export { testCardHtml, testCardText } from './report/test-card';
 export {
   type FrictionLaw,
   type FrictionPoint,

@@ -1,22 +1,37 @@
 /** Makes the audit of its finished loops: names told apart, groups, ranking. */
 import type { Assessment } from '../assessment/assessment';
 import { cautions } from '../assessment/cautions';
+import { refuseUnknownOptions } from '../errors';
 import type { Audit, AuditProvenance, FailedLoop, FinishedLoop } from './audit';
 import { hasFailed } from './audit';
 import { groupLoops } from './group-loops';
-import { rankLoops } from './rank-loops';
+import { type RankingRule, rankLoops } from './rank-loops';
 
-/** @param finished all loops of the audit, in its order */
-export function assembleAudit(finished: readonly FinishedLoop[], provenance: AuditProvenance): Audit {
+export interface AssembleOptions {
+  /** Parts of the rule of the ranking to change. Default: none; the rule is that of {@link rankLoops}. */
+  readonly ranking?: Partial<RankingRule>;
+}
+
+/**
+ * @param finished all loops of the audit, in its order
+ * @throws WrongUse for an unknown option, or a rule of the ranking that makes no sense
+ */
+export function assembleAudit(
+  finished: readonly FinishedLoop[],
+  { version, options, seed }: AuditProvenance,
+  assembling: AssembleOptions = {},
+): Audit {
+  refuseUnknownOptions('Making an audit', assembling, ['ranking']);
+  const { ranking } = assembling;
   const loops = tellApart(finished);
   const groups = groupLoops(loops);
   return {
     schema: 'stickband/audit/1',
     loops: loops.map(({ result }) => result),
     groups,
-    ranking: rankLoops(loops, groups),
+    ranking: rankLoops(loops, groups, { rule: ranking }),
     cautions,
-    provenance,
+    provenance: { version, options: ranking === undefined ? options : { ...options, ranking }, seed },
   };
 }
 

@@ -6,12 +6,13 @@ import { cautions } from '../assessment/cautions';
 import { refuseUnknownOptions, UnwritableOutput, WrongUse } from '../errors';
 import type { ReadLoopOptions } from '../record/read-loop';
 import { version } from '../version';
-import { assembleAudit } from './assemble-audit';
+import { type AssembleOptions, assembleAudit } from './assemble-audit';
 import type { Audit, AuditPart, FinishedLoop } from './audit';
 import { hasFailed } from './audit';
 import { type FoundLoops, findLoops } from './find-loops';
 import { type AuditIdentity, Journal } from './journal';
 import type { ListedLoop, LoopJob, LoopSource } from './loop-job';
+import { rankLoops } from './rank-loops';
 import { runJobs } from './run-jobs';
 import { checkShard, isInShard, type Shard } from './shard';
 import { type ExportMap, isReadable } from './sources/export-map';
@@ -39,7 +40,8 @@ export interface AuditProgress {
   readonly timeLeft: number | null;
 }
 
-export interface AuditOptions {
+/** What {@link finishLoops} takes. */
+export interface RunOptions {
   /** File with the map of an export that holds many loops. Default: none; the source is a folder or a list. */
   readonly map?: string;
   /** What holds for every file of a folder or list, such as names of columns or `zone`. Default: nothing. */
@@ -58,6 +60,8 @@ export interface AuditOptions {
   /** Called when something moved on. */
   readonly onProgress?: (progress: AuditProgress) => void;
 }
+
+export interface AuditOptions extends RunOptions, AssembleOptions {}
 
 const optionNames = ['map', 'reading', 'folder', 'resume', 'workers', 'seed', 'onProgress'] as const;
 
@@ -81,12 +85,15 @@ export interface FinishedRun extends AuditIdentity {
  * @throws UnwritableOutput when the journal cannot be written
  */
 export async function auditLoops(source: string, options: AuditOptions = {}): Promise<Audit> {
-  return auditOf(await finishLoops(source, null, options));
+  refuseUnknownOptions('auditLoops', options, [...optionNames, 'ranking']);
+  const { ranking, ...running } = options;
+  rankLoops([], [], { rule: ranking }); // a wrong rule is told now, not after hours of work
+  return auditOf(await finishLoops(source, null, running), { ranking });
 }
 
-/** The audit of a run over all loops. */
-export function auditOf({ loops, provenance }: FinishedRun): Audit {
-  return assembleAudit(loops, provenance);
+/** The audit of a run over all loops. Throws {@link WrongUse} for a rule of the ranking that makes no sense. */
+export function auditOf({ loops, provenance }: FinishedRun, options: AssembleOptions = {}): Audit {
+  return assembleAudit(loops, provenance, options);
 }
 
 /** What one shard leaves to be merged. */
@@ -107,12 +114,12 @@ export function journalName(shard: Shard | null): string {
 export async function finishLoops(
   source: string,
   shard: Shard | null,
-  options: AuditOptions = {},
+  options: RunOptions = {},
 ): Promise<FinishedRun> {
-  refuseUnknownOptions('auditLoops', options, optionNames);
+  refuseUnknownOptions('finishLoops', options, optionNames);
   const { map = null, reading = {}, folder, resume = false, seed = 1, onProgress = () => {} } = options;
   const { workers = availableParallelism() } = options;
-  refuseUnknownOptions('The option "reading" of auditLoops', reading, readingForAll);
+  refuseUnknownOptions('The option "reading" of finishLoops', reading, readingForAll);
   if (!(Number.isInteger(workers) && workers >= 0)) {
     throw new WrongUse(`The option "workers" is a whole number from 0 on. Received ${workers}.`);
   }

@@ -1,6 +1,6 @@
 /** Puts the shards of an audit together again. Groups and ranking are made anew from all loops. */
 import { WrongUse } from '../errors';
-import { assembleAudit } from './assemble-audit';
+import { type AssembleOptions, assembleAudit } from './assemble-audit';
 import type { Audit, AuditPart } from './audit';
 
 /**
@@ -8,7 +8,7 @@ import type { Audit, AuditPart } from './audit';
  *
  * @throws WrongUse when parts are missing, given twice, or those of different audits
  */
-export function mergeAudits(parts: readonly AuditPart[]): Audit {
+export function mergeAudits(parts: readonly AuditPart[], options: AssembleOptions = {}): Audit {
   const [first] = parts;
   if (first === undefined) throw new WrongUse('There are no parts to merge.');
   for (const part of parts) checkSame(first, part);
@@ -29,7 +29,7 @@ export function mergeAudits(parts: readonly AuditPart[]): Audit {
       `The parts hold ${loops.length} loops, but the audit has ${first.allLoops}: a part was changed. Run its shard again.`,
     );
   }
-  return assembleAudit(loops, first.provenance);
+  return assembleAudit(loops, first.provenance, options);
 }
 
 function checkSame(first: AuditPart, part: AuditPart): void {

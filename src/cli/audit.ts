@@ -3,13 +3,13 @@ import { rmdirSync, rmSync } from 'node:fs';
 import { basename, dirname, extname, join, resolve } from 'node:path';
 import { type FailedLoop, hasFailed } from '../audit/audit';
 import {
-  type AuditOptions,
   type AuditProgress,
   auditOf,
   type FinishedRun,
   finishLoops,
   journalName,
   partOf,
+  type RunOptions,
 } from '../audit/audit-loops';
 import type { Shard } from '../audit/shard';
 import { WrongUse } from '../errors';
@@ -61,7 +61,7 @@ export async function audit(words: readonly string[], output: Output): Promise<v
     return;
   }
   const shard = values.shard === undefined ? null : shardOption(values.shard);
-  const options = auditOptions(values);
+  const options = runOptions(values);
   const jsonAlone = values.json === '-';
   const jsonFile = values.json === undefined || jsonAlone ? null : resolve(values.json);
   const folder = resolve(values.out ?? join(defaultOutFolder(), `audit-${nameOf(source)}`));
@@ -119,7 +119,7 @@ function refuseOthers(values: Given, name: keyof Given): void {
   if (others.length > 0) throw new WrongUse(`--${name} stands alone; leave out --${others.join(', --')}.`);
 }
 
-function auditOptions(values: Given): AuditOptions {
+function runOptions(values: Given): RunOptions {
   const { map, resume, time, sp, pv, op, travel, mode, zone } = values;
   return stated({
     map,

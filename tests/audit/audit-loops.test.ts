@@ -125,6 +125,24 @@ describe('auditLoops', () => {
     expect(again.loops.map(({ loop }) => `${loop}.csv`)).toEqual([first, second, third]);
   });
 
+  it('ranks by another rule when one is stated, without doing a loop again', async () => {
+    const kept = { folder: scratchFolder() };
+    const rule = { openConfidence: 1 };
+    const usual = await audit(folder, kept);
+    const told: number[] = [];
+    const onProgress = ({ finished }: AuditProgress): number => told.push(finished);
+    const other = await audit(folder, { ...kept, resume: true, ranking: rule, onProgress });
+    expect(told).toEqual([6, 7, 8]); // the two that failed are tried again
+    // The rule of the ranking: the score is proportional to the confidence, which is open here and 0.5 by default.
+    for (const { loop, score } of other.ranking) {
+      const before = usual.ranking.find((one) => one.loop === loop)!.score;
+      expect(Math.abs(score - 2 * before)).toBeLessThanOrEqual(0.15); // scores have one decimal
+    }
+    expect(other.ranking[0]!.score).toBeGreaterThan(0);
+    expect(other.provenance.options).toEqual({ ranking: rule });
+    expect(other.loops).toEqual(usual.loops);
+  });
+
   it('calls records with one tag after their files as well', async () => {
     const unit = scratchFolder();
     for (const name of ['31-FC-104 march.csv', '31-FC-104 april.csv', '31-FC-105.csv']) {
@@ -162,10 +180,11 @@ describe('auditLoops', () => {
 
   it.each([
     [{ wrokers: 2 }, /auditLoops has no option "wrokers"/],
-    [{ reading: { tag: 'x' } }, /"reading" of auditLoops has no option "tag"/],
+    [{ reading: { tag: 'x' } }, /"reading" of finishLoops has no option "tag"/],
     [{ workers: 1.5 }, /"workers" is a whole number from 0 on\. Received 1\.5/],
     [{ workers: -1 }, /"workers" is a whole number/],
     [{ resume: true }, /State the option "folder"/],
+    [{ ranking: { cuase: {} } }, /"rule" of rankLoops has no option "cuase"/],
   ])('refuses the options %j', async (options, sentence) => {
     await expect(auditLoops(folder, options as AuditOptions)).rejects.toThrow(sentence);
   });
