@@ -5,27 +5,20 @@
 import { type LoopOptions, type LoopRun, simulateLoop } from '../../src/process/closed-loop';
 import { seededRandom } from '../../src/signal/random';
 import { textbookStem } from '../../src/valve/stem';
+import type { ExportedLoop } from './export';
 
 export type DemoName = '31-FC-104' | '31-FC-104-with-travel' | '31-PC-122' | '31-FC-131' | '31-LC-140';
 
-export interface DemoLoop {
+export interface DemoLoop extends ExportedLoop {
   readonly name: DemoName;
-  /** Tag under which the loop is logged. */
-  readonly tag: string;
   /** What makes it cycle, as the program names causes. */
   readonly cause: 'stiction' | 'tight-tuning' | 'outside-disturbance' | 'lost-motion';
   /** One sentence on what was simulated. */
   readonly story: string;
   readonly pvUnit: string;
   readonly pvRange: { readonly low: number; readonly high: number };
-  /** s between rows. */
-  readonly samplePeriod: number;
-  readonly start: string;
   /** Seed of the copy kept in data/. */
   readonly seed: number;
-  readonly logsTravel: boolean;
-  /** Decimals of PV in the export. */
-  readonly pvDecimals: number;
   /** S and J with which stem and linkage were set up, % (the truth is fitted to the travel, see `truth.ts`). */
   readonly built: { readonly S: number; readonly J: number };
   readonly loop: (seed: number) => LoopOptions;
@@ -152,14 +145,14 @@ export const DEMO_LOOPS: readonly DemoLoop[] = [
     seed: 140,
     logsTravel: false,
     pvDecimals: 2,
-    built: { S: 2.5, J: 0.02 },
+    built: { S: 4.0, J: 0.02 },
     loop: (seed) => ({
       samples: 2160,
       runIn: 5400,
       logEvery: 5,
       setPoint: (time) => (time < -5000 ? 50 : 55),
       controller: { gain: 4, integralTime: 60, action: 'direct', bias: 48 },
-      valve: textbookStem({ S: 0.2, J: 0.02, actuatorLag: 1, backlash: 2.3, startOp: 48 }),
+      valve: textbookStem({ S: 0.2, J: 0.02, actuatorLag: 1, backlash: 3.8, startOp: 48 }),
       process: {
         response: 'integrating',
         gain: -0.0033,
@@ -168,8 +161,8 @@ export const DEMO_LOOPS: readonly DemoLoop[] = [
         restInput: 48,
         restOutput: 50,
       },
-      inputDisturbances: [{ kind: 'ima', spread: 0.02, theta: 0.5, every: 1, seed: seed + 1 }],
-      noise: 0.05,
+      inputDisturbances: [{ kind: 'ima', spread: 0.04, theta: 0.5, every: 1, seed: seed + 1 }],
+      noise: 0.03,
       seed,
       pvStep: 0.02,
       opStep: 0.01,

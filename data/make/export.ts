@@ -1,12 +1,28 @@
 /** Writes a made loop as a historian exports it: one time column, one column a signal, rounded values, a mode column. */
+
+import type { LoopRun } from '../../src/process/closed-loop';
 import { seededRandom } from '../../src/signal/random';
-import type { MadeDemoLoop } from './demo-loops';
+
+/** What the export needs to know of a loop beside its log. */
+export interface ExportedLoop {
+  /** Tag under which the loop is logged. */
+  readonly tag: string;
+  /** s between rows. */
+  readonly samplePeriod: number;
+  readonly start: string;
+  readonly logsTravel: boolean;
+  /** Decimals of PV in the export. */
+  readonly pvDecimals: number;
+}
 
 /** Standard deviation of the position transmitter's noise, % of travel. */
 const TRAVEL_NOISE = 0.05;
 
 /** The CSV of a demo loop; `seed` moves the noise of the position transmitter only. */
-export function toCsv({ demo, run }: MadeDemoLoop, seed: number): string {
+export function toCsv(
+  { demo, run }: { readonly demo: ExportedLoop; readonly run: LoopRun },
+  seed: number,
+): string {
   const random = seededRandom(seed + 500);
   const begin = Date.parse(demo.start);
   const columns = ['SP', 'PV', 'OP', ...(demo.logsTravel ? ['TRAVEL'] : []), 'MODE'];

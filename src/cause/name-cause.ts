@@ -1,16 +1,19 @@
 /**
  * Names what makes the cycle, with reasons and what was ruled out, or says that the record cannot tell.
  *
- * The valve is accused only when it predicts PV better than a straight line does, block after block, and still does
- * once a steady line in OP is taken out of the comparison. Without valve evidence a steady line points outside the
- * loop, and a wandering, linearly predictable cycle with proportional-dominated control points at the tuning.
+ * The valve is accused by a probability (`valve-odds.ts`): above all, how clearly it predicts PV better than a straight
+ * line does, block after block, also once a steady line in OP is taken out of the comparison. Without valve evidence a
+ * steady line points outside the loop, and a wandering, linearly predictable cycle with proportional-dominated control
+ * points at the tuning.
  */
 import type { Cause, Verdict } from '../assessment/assessment';
-import type { StictionResult, ValveTest } from '../estimate/stiction-fit';
+import type { StictionFit, StictionResult, ValveTest } from '../estimate/stiction-fit';
 import type { Cycle } from '../oscillation/cycle';
 import type { ControllerReading } from '../process/read-controller';
 import type { Fitness } from '../record/fitness';
 import type { LoopRecord } from '../record/loop-record';
+import { median } from '../signal/statistics';
+import { valveProbability, valveSigns } from './valve-odds';
 
 export interface CauseInput {
   readonly record: LoopRecord;
@@ -22,20 +25,23 @@ export interface CauseInput {
 }
 
 /**
- * t over blocks above which the valve beats the straight line, with a cycle and without one, and the share of blocks it
- * must win. Between the lower pair and these the record does not decide. Own choice, set on simulated loops.
+ * Probability of a sticking valve from which it is accused, and below which it is cleared, with a cycle and without
+ * one; in between the record does not decide. Own choice, set on simulated loops for one false accusation in fifty.
  */
-const clearT = { cycling: 3, hunting: 4.5 };
-const clearWins = 0.75;
-const doubtfulT = 1.8;
-const doubtfulWins = 0.65;
-/** t of jump against dead band alone that a very regular cycle of a self-regulating loop asks for, and how regular. */
-const jumpT = 1.5;
+const accuseFrom = 0.9;
+const clearBelow = { cycling: 0.2, hunting: 0.4 };
+/** Highest confidence that is ever said. */
+const surest = 0.95;
+/** In an integrating loop: J/S, or median slip over S, below which a cycle is put down to dead band alone. Own choice. */
+const lostMotion = { ratio: 0.12, tOverDeadBand: 2, slip: 0.3 };
+/** Regularity above which a cycle is very regular, and above which it keeps time like a clock. Own choice. */
 const veryRegular = 10;
-/** Share of odd harmonics below which a cycle is a clean sine; a triangle has 0.014. Own choice. */
-const sineShare = 0.002;
-/** J/S below which an integrating loop's cycle is put down to dead band alone. Own choice. */
-const lostMotionRatio = 0.12;
+const clockwork = 60;
+/** Shares of odd harmonics in PV below and above which its shape is told; a triangle has 0.014, a square 0.15. Own choice. */
+const nearlySine = 0.002;
+const squarish = 0.1;
+/** S, % of span, that good valves have as well. Common practice, no source. */
+const goodValve = 0.4;
 /** 2 pi Ti / period near 1: from here on control is proportional-dominated at the cycle. Own choice. */
 const proportionalRatio = 0.7;
 
@@ -43,66 +49,39 @@ export function nameCause(input: CauseInput): Cause {
   const { fitness, stiction } = input;
   if (!fitness.allows.cycle) return cannotTell(failures(input, 'cycle'), []);
   if (!fitness.allows.cause) return cannotTell(failures(input, 'cause'), []);
-  const { test } = stiction;
-  if (!cycling(input) && !(test && valveMayMatter(input, test))) return notOscillating(input);
-  if (!test) {
+  const { test, drawn } = stiction;
+  const cycles = input.opCycle.present || input.pvCycle.present;
+  if (!test || !drawn) {
+    if (!cycles) return notOscillating(input, null);
     return cannotTell(
       ['OP and PV do not share a cycle to which a valve could be fitted.', ...stiction.refused],
       [],
     );
   }
-  return weigh(input, test);
+  const probability = valveProbability(valveSigns(input.opCycle, input.pvCycle, test, drawn));
+  if (probability >= accuseFrom) return accused(input, test, drawn, probability);
+  if (probability >= (cycles ? clearBelow.cycling : clearBelow.hunting)) {
+    return cannotTell(
+      [
+        ...valveSentences(input, test, drawn, probability),
+        'That is too little to accuse the valve and too much to clear it.',
+      ],
+      [],
+    );
+  }
+  if (!cycles) return notOscillating(input, probability);
+  return cleared(input, test, drawn, probability);
 }
 
-function notOscillating({ opCycle, pvCycle }: CauseInput): Cause {
+function notOscillating({ opCycle, pvCycle }: CauseInput, probability: number | null): Cause {
   return {
     verdict: 'not-oscillating',
-    confidence: 0.65,
+    // A loop that hunts a little because of its valve may look the same: this does not clear the valve.
+    confidence: 0.85 * (1 - (probability ?? clearBelow.hunting)),
     reasons: [`OP: ${opCycle.why}`, `PV: ${pvCycle.why}`],
     ruledOut: [],
     also: [],
   };
-}
-
-/** t of valve against straight line: the lower one when OP carries a steady line that was also taken out. */
-function decisiveT(test: ValveTest): number {
-  return Math.min(test.tOverLine, test.tWithoutLine ?? test.tOverLine);
-}
-
-function cycling({ opCycle, pvCycle }: CauseInput): boolean {
-  return opCycle.present || pvCycle.present;
-}
-
-/** Dead band alone cannot hold a regular cycle in a self-regulating loop; there the jump must show. */
-function deadBandWouldNotCycle({ opCycle, stiction }: CauseInput, test: ValveTest): boolean {
-  return (
-    stiction.drawn?.process?.response === 'self-regulating' &&
-    (opCycle.regularity ?? 0) > veryRegular &&
-    test.tOverDeadBand < jumpT
-  );
-}
-
-/** A clean sine in OP and PV alike, steady over the record: no valve that sticks and slips makes that. */
-function cleanSine({ opCycle, pvCycle }: CauseInput, test: ValveTest): boolean {
-  const odd = Math.max(opCycle.oddHarmonicShare ?? 1, pvCycle.oddHarmonicShare ?? 1);
-  return test.tWithoutLine !== null && odd < sineShare;
-}
-
-function valveStands(input: CauseInput, test: ValveTest): boolean {
-  const least = cycling(input) ? clearT.cycling : clearT.hunting;
-  return (
-    decisiveT(test) > least &&
-    test.blocksForValve / test.blocks >= clearWins &&
-    !deadBandWouldNotCycle(input, test) &&
-    !cleanSine(input, test)
-  );
-}
-
-function valveMayMatter(input: CauseInput, test: ValveTest): boolean {
-  return (
-    valveStands(input, test) ||
-    (decisiveT(test) > doubtfulT && test.blocksForValve / test.blocks >= doubtfulWins)
-  );
 }
 
 function failures(input: CauseInput, what: 'cycle' | 'cause'): string[] {
@@ -115,79 +94,107 @@ function cannotTell(reasons: readonly string[], ruledOut: readonly string[]): Ca
   return { verdict: 'cannot-tell', confidence: null, reasons, ruledOut, also: [] };
 }
 
-function weigh(input: CauseInput, test: ValveTest): Cause {
-  const { record, opCycle, pvCycle, controller, stiction } = input;
-  const share = test.blocksForValve / test.blocks;
+/** What speaks for and against the valve, and how it weighs together. */
+function valveSentences(
+  { opCycle, pvCycle }: CauseInput,
+  test: ValveTest,
+  { S }: StictionFit,
+  probability: number,
+): string[] {
+  const sentences = [
+    `A sticking valve predicts PV ${test.tOverLine > 0 ? 'better' : 'worse'} than a straight line from OP to travel: it wins in ${test.blocksForValve} of ${test.blocks} parts of the record (t = ${test.tOverLine.toFixed(1)}; below 2 it can be chance).`,
+  ];
+  if (test.tWithoutLine !== null) {
+    sentences.push(
+      `OP carries a steady line; with that taken out the comparison gives t = ${test.tWithoutLine.toFixed(1)}.`,
+    );
+  }
+  if (S.value < goodValve) {
+    sentences.push(
+      `The dead band that would explain it is ${S.value.toFixed(2)} % of span, as good valves have it.`,
+    );
+  }
+  const regularity = opCycle.regularity ?? 0;
+  if ((opCycle.present || pvCycle.present) && regularity > clockwork) {
+    sentences.push(
+      `The cycle keeps time like a clock (regularity ${regularity.toFixed(0)}), which a cycle from outside does more often than a sticking valve.`,
+    );
+  }
+  const odd = pvCycle.oddHarmonicShare;
+  if (odd !== null && odd < nearlySine) {
+    sentences.push(
+      `PV is nearly a pure sine (odd harmonics hold ${(100 * odd).toFixed(2)} % of its power), while slips leave corners in it.`,
+    );
+  }
+  if (odd !== null && odd > squarish && regularity > veryRegular) {
+    sentences.push(
+      `PV is squarer than a slip behind a process leaves it (odd harmonics hold ${(100 * odd).toFixed(0)} % of its power), as something that switches outside the loop makes it.`,
+    );
+  }
+  sentences.push(
+    `Weighed together, that gives a sticking valve a probability of ${probability.toFixed(2)} (from ${accuseFrom} on it is named).`,
+  );
+  return sentences;
+}
+
+function accused(input: CauseInput, test: ValveTest, drawn: StictionFit, probability: number): Cause {
+  const { opCycle, pvCycle } = input;
   const coherent = test.tWithoutLine !== null;
-  const t = decisiveT(test);
-  const valveSentence = `A sticking valve predicts PV better than a straight line from OP to travel in ${test.blocksForValve} of ${test.blocks} parts of the record (t = ${test.tOverLine.toFixed(1)}; above ${clearT.cycling} is clear).`;
-  const lineSentence =
-    'With the steady line in OP taken out, ' +
-    `the comparison of valve and straight line gives t = ${(test.tWithoutLine ?? 0).toFixed(1)} (above ${clearT.cycling} is clear).`;
-
-  if (valveStands(input, test)) {
-    const drawn = stiction.drawn;
-    const ratio = drawn ? drawn.jumpDrawn / drawn.S.value : 0;
-    const jumpBeats = test.tOverDeadBand > 2 && ratio > lostMotionRatio;
-    const integrating = drawn?.process?.response === 'integrating';
-    const verdict: Verdict = integrating && !jumpBeats ? 'lost-motion' : 'stiction';
-    const reasons = [valveSentence];
-    if (coherent) reasons.push(lineSentence);
-    if (!opCycle.present && !pvCycle.present) {
-      reasons.push(
-        'The loop hunts without a fixed period, as a sticking valve makes it do when the load keeps changing.',
-      );
-    }
-    if (drawn) {
-      reasons.push(
-        `The fitted valve explains ${percent(drawn.explains)} of the travel, and valve and process together ${percent(drawn.explainsPv)} of the movement of PV.`,
-      );
-    }
+  const slips = Float64Array.from(drawn.slips, ({ size }) => Math.abs(size));
+  const slip = slips.length === 0 ? 0 : median(slips) / drawn.S.value;
+  const jumpShows =
+    slip > lostMotion.slip ||
+    (test.tOverDeadBand > lostMotion.tOverDeadBand && drawn.jumpDrawn > lostMotion.ratio * drawn.S.value);
+  const integrating = drawn.process?.response === 'integrating';
+  const verdict: Verdict = integrating && !jumpShows ? 'lost-motion' : 'stiction';
+  const reasons = valveSentences(input, test, drawn, probability);
+  if (!opCycle.present && !pvCycle.present) {
     reasons.push(
-      verdict === 'stiction'
-        ? `Dead band with a slip jump fits better than dead band alone (t = ${test.tOverDeadBand.toFixed(1)}).`
-        : `A slip jump adds little to dead band alone (t = ${test.tOverDeadBand.toFixed(1)}), and the loop integrates: dead band by itself makes such a loop cycle.`,
+      'The loop hunts without a fixed period, as a sticking valve makes it do when the load keeps changing.',
     );
-    return {
-      verdict,
-      confidence: valveConfidence(t, share),
-      reasons,
-      ruledOut: [
-        'Tight tuning alone: the loop between OP and PV is not linear.',
-        coherent
-          ? 'An outside disturbance alone: the valve keeps its lead when the steady line in OP is taken out.'
-          : 'A steady outside disturbance alone: OP carries no steady line.',
-      ],
-      also: [],
-    };
   }
+  reasons.push(
+    `The fitted valve explains ${percent(drawn.explains)} of the travel, and valve and process together ${percent(drawn.explainsPv)} of the movement of PV.`,
+  );
+  if (verdict === 'lost-motion') {
+    reasons.push(
+      `A slip jump adds little to dead band alone (t = ${test.tOverDeadBand.toFixed(1)}), and the loop integrates: dead band by itself makes such a loop cycle.`,
+    );
+  } else if (test.tOverDeadBand > lostMotion.tOverDeadBand) {
+    reasons.push(
+      `Dead band with a slip jump fits better than dead band alone (t = ${test.tOverDeadBand.toFixed(1)}).`,
+    );
+  }
+  return {
+    verdict,
+    confidence: Math.min(surest, probability),
+    reasons,
+    ruledOut: [
+      'Tight tuning alone: the loop between OP and PV is not linear.',
+      coherent
+        ? 'An outside disturbance alone: the valve keeps its lead when the steady line in OP is taken out.'
+        : 'A steady outside disturbance alone: OP carries no steady line.',
+    ],
+    also: [],
+  };
+}
 
-  const deadBandOnly = deadBandWouldNotCycle(input, test);
-  if (valveMayMatter(input, test) && !deadBandOnly && !cleanSine(input, test)) {
-    return cannotTell(
-      [
-        valveSentence,
-        ...(coherent ? [lineSentence] : []),
-        'That is too little to accuse the valve and too much to clear it.',
-      ],
-      [],
-    );
-  }
-  const lineDecides = coherent && (test.tWithoutLine as number) < test.tOverLine;
-  const decidingSentence = lineDecides ? lineSentence : valveSentence;
-  const cleared = cleanSine(input, test)
-    ? 'Stiction: OP and PV are clean sines, which a valve that sticks and slips does not make.'
-    : `Stiction: ${lower(decidingSentence)}`;
-  if (coherent) {
+/** The loop cycles and it is not the valve: a steady line comes from outside, else it may be the tuning. */
+function cleared(input: CauseInput, test: ValveTest, drawn: StictionFit, probability: number): Cause {
+  const { record, opCycle, controller } = input;
+  const [comparison, ...others] = valveSentences(input, test, drawn, probability);
+  const notTheValve = [`Stiction: ${lower(others[others.length - 1])}`];
+  if (test.tWithoutLine !== null) {
     return {
       verdict: 'outside-disturbance',
-      confidence: 0.8,
+      confidence: 0.85 * (1 - probability / 2),
       reasons: [
         `OP carries a steady line at a period of ${seconds(opCycle.period)}, sharper than a loop makes by itself.`,
-        ...(cleanSine(input, test) ? [] : [decidingSentence]),
+        comparison,
+        ...others,
       ],
       ruledOut: [
-        cleared,
+        ...notTheValve,
         'Tight tuning: the cycle keeps its period and height too well for a lightly damped loop.',
       ],
       also: [],
@@ -198,10 +205,9 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
   const proportional = controller?.form === 'P' || (ratio !== null && ratio >= proportionalRatio);
   if (proportional || (opCycle.regularity ?? 0) > veryRegular) {
     const reasons = [
-      deadBandOnly
-        ? `What speaks for the valve is dead band without a jump (t = ${test.tOverDeadBand.toFixed(1)} for the jump), and dead band alone does not hold a regular cycle in a self-regulating loop.`
-        : valveSentence,
       'OP carries no steady line as a cycle from outside makes it: the cycle keeps wandering a little, like a lightly damped loop driven by noise.',
+      comparison,
+      ...others,
     ];
     if (ratio !== null) {
       reasons.push(
@@ -212,26 +218,22 @@ function weigh(input: CauseInput, test: ValveTest): Cause {
     }
     return {
       verdict: 'tight-tuning',
-      confidence: proportional ? 0.75 : 0.65,
+      confidence: proportional ? 0.85 : 0.8,
       reasons,
-      ruledOut: [cleared, 'A steady outside cycle: OP carries no steady line.'],
-      also: deadBandOnly ? ['lost-motion'] : [],
+      ruledOut: [...notTheValve, 'A steady outside cycle: OP carries no steady line.'],
+      also: [],
     };
   }
   return cannotTell(
     [
-      valveSentence,
+      comparison,
+      ...others,
       record.sp === null
         ? 'Without the set point the controller cannot be read, so tuning and disturbance cannot be told apart.'
         : 'The cycle is neither a steady line nor very regular nor proportional-dominated, so tuning and disturbance cannot be told apart.',
     ],
-    [cleared],
+    notTheValve,
   );
-}
-
-function valveConfidence(t: number, share: number): number {
-  const strength = 1 / (1 + Math.exp(-(t - clearT.cycling) / 2));
-  return Math.min(0.93, 0.5 + 0.45 * strength * share);
 }
 
 function percent(share: number): string {

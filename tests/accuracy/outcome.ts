@@ -2,6 +2,7 @@
 import type { ValveTruth } from '../../data/make/truth';
 import { assessLoop } from '../../src/assessment/assess-loop';
 import type { Verdict } from '../../src/assessment/assessment';
+import { type ValveSigns, valveSigns } from '../../src/cause/valve-odds';
 import type { Estimate } from '../../src/estimate/stiction-fit';
 import type { AccuracyCase } from './generate';
 
@@ -20,6 +21,8 @@ export interface Outcome
   readonly J: Estimate | null;
   /** The best fit even where its numbers were withheld: to look into misses, never scored. */
   readonly drawn: { readonly S: number; readonly J: number; readonly explains: number } | null;
+  /** What the valve's part in the cause is weighed by; null where it was not. */
+  readonly signs: ValveSigns | null;
   /** Why there are no numbers; see {@link reasonOf}. */
   readonly refusals: readonly string[];
   /** Why no cause was named; empty when one was. */
@@ -31,7 +34,9 @@ export interface Outcome
 export function outcomeOf(made: AccuracyCase): Outcome {
   const { id, kind, cause, service, noise, form, cascade, compressed, visible, truth } = made;
   const start = performance.now();
-  const { assessment, fitness, stiction } = assessLoop(made.record);
+  const { assessment, fitness, stiction, opCycle, pvCycle } = assessLoop(made.record);
+  const { drawn, test } = stiction;
+  const weighed = fitness.allows.cause && test && drawn;
   const seconds = (performance.now() - start) / 1000;
   const reason = (text: string): string => reasonOf(text, fitness.checks);
   const { verdict, confidence, reasons } = assessment.cause;
@@ -52,11 +57,8 @@ export function outcomeOf(made: AccuracyCase): Outcome {
     confidence,
     S: assessment.stiction?.S ?? null,
     J: assessment.stiction?.J ?? null,
-    drawn: stiction.drawn && {
-      S: stiction.drawn.S.value,
-      J: stiction.drawn.jumpDrawn,
-      explains: stiction.drawn.explains,
-    },
+    drawn: drawn && { S: drawn.S.value, J: drawn.jumpDrawn, explains: drawn.explains },
+    signs: weighed ? valveSigns(opCycle, pvCycle, test, drawn) : null,
     refusals: [...new Set(assessment.stictionRefused.map(reason))],
     causeRefusals: verdict === 'cannot-tell' ? [...new Set(reasons.map(reason))] : [],
     seconds,

@@ -23,6 +23,7 @@ const plain: Outcome = {
   S: { value: 4, low: 3, high: 5, unit: '% of OP span' },
   J: { value: 1, low: 0.6, high: 1.4, unit: '% of OP span' },
   drawn: null,
+  signs: null,
   refusals: [],
   causeRefusals: [],
   seconds: 1,

@@ -1,6 +1,6 @@
 /**
- * The two sets of the accuracy suite and their cache. The estimator is worked on with the development set alone; the
- * reported set has other seeds and is run only to report.
+ * The sets of the accuracy suite and their cache. The estimator is worked on with the development set alone; `weighing`
+ * goes with it into the weights of the cause (`weigh.ts`); the reported set has other seeds and is run only to report.
  */
 import { createHash } from 'node:crypto';
 import { existsSync, mkdirSync, readFileSync, renameSync, writeFileSync } from 'node:fs';
@@ -8,10 +8,11 @@ import { join } from 'node:path';
 import { deserialize, serialize } from 'node:v8';
 import { type AccuracyCase, makeCase } from './generate';
 
-export type SetName = 'development' | 'reported';
+export type SetName = 'development' | 'weighing' | 'reported';
 
 export const SETS: Record<SetName, { seed: number; stiction: number; other: number }> = {
   development: { seed: 11_000_000, stiction: 320, other: 207 },
+  weighing: { seed: 23_000_000, stiction: 300, other: 300 },
   reported: { seed: 47_000_000, stiction: 320, other: 207 },
 };
 

@@ -14,6 +14,11 @@ interface Known {
   readonly cycles?: boolean;
   readonly test?: Partial<ValveTest> | null;
   readonly response?: 'self-regulating' | 'integrating';
+  /** Regularity of a cycle, and share of odd harmonics in PV. */
+  readonly regularity?: number;
+  readonly odd?: number | null;
+  /** % */
+  readonly S?: number;
   /** J over S of the fit that was drawn. */
   readonly jump?: number;
   readonly forbids?: readonly Forbids[];
@@ -25,16 +30,16 @@ const period = 60;
 
 function inputOf(known: Known): CauseInput {
   const { cycles = true, test = {}, response = 'self-regulating', jump = 0.5, forbids = [] } = known;
-  const { integralTime = 20, controllerRead = true } = known;
+  const { integralTime = 20, controllerRead = true, regularity = 3, odd = null, S: size = 3 } = known;
   const cycle: Cycle = {
     present: cycles,
     why: cycles ? 'The zero crossings repeat every 60 s.' : 'The zero crossings do not repeat.',
     period: cycles ? period : null,
-    regularity: cycles ? 3 : 0.4,
+    regularity: cycles ? regularity : 0.4,
     cycles: cycles ? 30 : 0,
     others: [],
     amplitude: cycles ? 2 : null,
-    oddHarmonicShare: null,
+    oddHarmonicShare: odd,
     powerShare: null,
     single: [],
     autocorrelation: { lag: none, value: none },
@@ -61,13 +66,13 @@ function inputOf(known: Known): CauseInput {
     },
     recordToAskFor: 'Ask for more.',
   };
-  const S = { value: 3, low: 2.6, high: 3.4, unit: '% of OP span' };
+  const S = { value: size, low: 0.9 * size, high: 1.1 * size, unit: '% of OP span' };
   const fit: StictionFit = {
     model: 'slides-on',
     travelSource: 'reconstructed',
     S,
-    J: { value: 3 * jump, low: 0, high: 3, unit: S.unit },
-    jumpDrawn: 3 * jump,
+    J: { value: size * jump, low: 0, high: size, unit: S.unit },
+    jumpDrawn: size * jump,
     explains: 0.93,
     explainsPv: 0.88,
     notes: [],
@@ -130,6 +135,11 @@ const valveLoses = {
   tOverDeadBand: 0,
 };
 
+/** A loop whose valve is not to blame: a sine in PV, regular, and no more dead band than a good valve has. */
+const goodValve = { test: valveLoses, regularity: 15, odd: 0.0003, S: 0.3 };
+/** A cycle like clockwork, as it comes in from outside. */
+const fromOutside = { regularity: 300, odd: 0.0003, S: 0.6 };
+
 /** What every cause owes: sentences without holes, and a confidence unless it cannot tell. */
 function expectSound(cause: Cause): void {
   if (cause.verdict === 'cannot-tell') expect(cause.confidence).toBeNull();
@@ -180,26 +190,31 @@ describe('nameCause', () => {
   });
 
   it('looks outside where the lead of the valve goes with the steady line', () => {
-    const { verdict, reasons, ruledOut } = named({ test: { tWithoutLine: -2 } });
+    const { verdict, reasons, ruledOut } = named({
+      ...fromOutside,
+      test: { blocksForValve: 11, tWithoutLine: -2 },
+    });
     expect(verdict).toBe('outside-disturbance');
     expect(reasons.join(' ')).toMatch(/60\.0 s/);
     expect(ruledOut.join(' ')).toMatch(/stiction/i);
-    expect(named({ test: { ...valveLoses, tWithoutLine: -4 } }).verdict).toBe('outside-disturbance');
+    expect(named({ ...fromOutside, test: { ...valveLoses, tWithoutLine: -4 } }).verdict).toBe(
+      'outside-disturbance',
+    );
   });
 
   it('names tight tuning for a cycle that a straight line predicts under proportional-dominated control', () => {
     // 2 pi Ti / period is 6.3 for an integral time of a whole period.
     for (const integralTime of [period, null]) {
-      const { verdict, ruledOut } = named({ test: valveLoses, integralTime });
+      const { verdict, ruledOut } = named({ ...goodValve, integralTime });
       expect(verdict, `integral time ${integralTime}`).toBe('tight-tuning');
       expect(ruledOut.join(' ')).toMatch(/stiction/i);
     }
-    expect(named({ test: valveLoses, integralTime: period }).reasons.join(' ')).toMatch(/6\.3/);
+    expect(named({ ...goodValve, integralTime: period }).reasons.join(' ')).toMatch(/6\.3/);
   });
 
   it('cannot tell tuning from disturbance under integral-dominated control, or with no controller read', () => {
     for (const known of [{ integralTime: 1 }, { controllerRead: false }]) {
-      const { verdict, ruledOut } = named({ test: valveLoses, ...known });
+      const { verdict, ruledOut } = named({ ...goodValve, regularity: 5, ...known });
       expect(verdict).toBe('cannot-tell');
       // What was found out about the valve stands all the same.
       expect(ruledOut.join(' ')).toMatch(/stiction/i);
@@ -207,14 +222,22 @@ describe('nameCause', () => {
   });
 
   it('says not-oscillating where nothing cycles and the valve has no say', () => {
-    const { verdict, reasons } = named({ cycles: false, test: valveLoses });
+    const { verdict, reasons } = named({ ...goodValve, cycles: false });
     expect(verdict).toBe('not-oscillating');
     expect(reasons.join(' ')).toContain('The zero crossings do not repeat.');
     expect(named({ cycles: false, test: null }).verdict).toBe('not-oscillating');
   });
 
+  it('takes slips of a third of S in the travel for a jump, in an integrating loop too', () => {
+    const deadBand = { response: 'integrating', jump: 0, test: { tOverDeadBand: -1 } } as const;
+    const input = inputOf(deadBand);
+    const slips = Array.from({ length: 20 }, (_, i) => ({ sample: i, time: i, size: i % 2 ? 1.2 : -1.2 }));
+    const drawn = { ...input.stiction.drawn!, slips };
+    expect(nameCause({ ...input, stiction: { ...input.stiction, drawn } }).verdict).toBe('stiction');
+  });
+
   it('cannot tell where the valve leads in some blocks only', () => {
-    const { verdict, reasons } = named({ test: { tOverLine: 2.4, blocksForValve: 11 } });
+    const { verdict, reasons } = named({ regularity: 15, test: { tOverLine: 2.4, blocksForValve: 11 } });
     expect(verdict).toBe('cannot-tell');
     expect(reasons.join(' ')).toMatch(/11 of 16 /);
   });
