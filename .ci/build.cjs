@@ -27,7 +27,11 @@ rmSync(dist, { recursive: true, force: true });
 const compiler = join(root, 'node_modules', 'typescript', 'bin', 'tsc');
 const { status } = spawnSync(process.execPath, [compiler, '-p', root], { stdio: 'inherit' });
 if (status !== 0) process.exit(status ?? 1);
-for (const file of ['assessment/assessment.schema.json', 'report/run-notebook.py']) {
+for (const file of [
+  'assessment/assessment.schema.json',
+  'field-test/valve-test.schema.json',
+  'report/run-notebook.py',
+]) {
   copyFileSync(join(root, 'src', file), join(dist, file));
 }
 chmodSync(join(dist, 'cli', 'main.js'), 0o755);

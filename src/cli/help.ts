@@ -5,6 +5,7 @@ export const generalHelp: string = `stickband: is the final control assembly mak
   stickband assess FILE    assess one loop from a record of SP, PV and OP
   stickband audit SOURCE   assess all loops of a folder, a list or an export; group and rank them
   stickband merge PART...  put the shards of an audit together
+  stickband valve-test FILE  read a hold, step or stroke test of a valve
   stickband notebook       open Jupyter with the guided notebook and its kernel ready
 
   stickband COMMAND --help says more about one command; stickband --version prints the version.
@@ -86,4 +87,29 @@ Opens Jupyter with the TypeScript kernel ready: in the repository on its noteboo
 folder, into which the guided notebook is copied unless a file of that name is there.
 
   --install            set up Jupyter when it is missing: with pip in .venv, or Debian's packages for root
+  --help               this text`;
+
+export const valveTestHelp: string = `stickband valve-test FILE [options]
+
+Reads a test of a valve from FILE (CSV text, or .xlsx): a manual hold, steps, or strokes (ramps). Says whether the
+cycle died, or dead band, resolution, hysteresis, response times, and, where actuator pressure was logged, spring and friction.
+
+What the file holds. Columns are recognised by name where that is safe; a column called MV never is.
+  --tag T              the loop's tag; picks one loop of a file that holds several
+  --time COL --op COL --travel COL --pv COL --pressure COL --mode COL
+                       names of the columns: time, command (%), measured valve travel, process variable,
+                       pressure in the actuator, controller mode
+  --time-format F      how time is written, when it is not ISO 8601 or epoch time
+  --zone Z             time zone of stamps without one; without it UTC is taken
+
+What is known of the test and the valve. Everything is optional; what is not stated is assumed and noted.
+  --kind K             hold, step or stroke; without it, by what the command did
+  --response R         self-regulating or integrating, for tests that are read from PV
+  --period S           for a hold without cycles before it: period of the cycle, s,
+  --swing X            and peak-to-peak swing of PV, as the assessment found them
+  --pressure-unit U    unit of the pressure, e.g. kPa
+  --stroke "40 mm"     rated travel, and
+  --area "645 cm2"     effective area of the actuator: friction is then given as a force too
+
+  --json FILE|-        also write the reading as JSON; with "-" stdout holds JSON alone, everything else goes to stderr
   --help               this text`;

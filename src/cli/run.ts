@@ -7,12 +7,14 @@ import { generalHelp } from './help';
 import { merge } from './merge';
 import { openNotebook } from './notebook';
 import type { Output } from './output';
+import { valveTest } from './valve-test';
 
 const commands: Readonly<Record<string, (words: string[], output: Output) => Promise<void>>> = {
   assess,
   audit,
   merge,
   notebook: openNotebook,
+  'valve-test': valveTest,
 };
 
 /**

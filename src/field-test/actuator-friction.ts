@@ -61,9 +61,9 @@ export function actuatorFriction(
   const travel = record.travel!;
   const logged = record.pressure!;
   const unit = record.pressureUnit || 'bar';
-  const { motion } = stroke;
+  const { motion, line: commandLine } = stroke;
   const plain = springLine(logged, travel, motion);
-  if (plain === null || plain.slope === 0 || stroke.levels === null || stroke.line === null) {
+  if (plain === null || plain.slope === 0 || stroke.levels === null || commandLine === null) {
     notes.push({
       code: 'no-friction',
       text: 'Spring and friction are not resolved: the stem has to move both ways at least once.',
@@ -85,7 +85,7 @@ export function actuatorFriction(
     {
       noise: ownNoise,
       hiddenJumps: stroke.levels.legs.map(
-        ({ hiddenJump }) => hiddenJump && (hiddenJump * line.slope) / stroke.line.slope,
+        ({ hiddenJump }) => hiddenJump && (hiddenJump * line.slope) / commandLine.slope,
       ),
     },
   );

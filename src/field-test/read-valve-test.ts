@@ -3,6 +3,7 @@ import { valveTestCautions } from '../assessment/cautions';
 import { refuseUnknownOptions, UnreadableInput, WrongUse } from '../errors';
 import type { DataFrameLike } from '../record/data-frame';
 import type { Note } from '../record/loop-record';
+import { mean } from '../signal/statistics';
 import { type ActuatorFriction, type ActuatorSize, actuatorFriction } from './actuator-friction';
 import { kindOf } from './command';
 import { type HoldFindings, readHold } from './read-hold';
@@ -81,6 +82,12 @@ export function readValveTest(
   if (kind === 'stroke' && record.travel === null) {
     throw new UnreadableInput(
       `${what} is a stroke without measured travel. Strokes are read from travel; without it make a step test.`,
+    );
+  }
+  const automatic = record.automatic ? mean(record.automatic) : 0;
+  if (statedKind === undefined && kind !== 'hold' && automatic > 0.5) {
+    throw new UnreadableInput(
+      `${what} has the controller in automatic most of the time, so it is the record of a loop and no valve test: assess it with stickband assess. If it is a test after all, state its kind with --kind (option "kind").`,
     );
   }
   const hold = kind === 'hold' ? readHold(record, period ?? null, swing ?? null) : null;
