@@ -51,28 +51,33 @@ export interface Step {
 
 /**
  * Whether two cycles keep step while both were logged: length and angle of the mean of exp(2 pi j difference in phase)
- * over the cycles of the first (mean phase coherence, Mormann, Lehnertz, David, Elger 2000, Physica D 144:358-369;
- * formula: value from memory). Two cycles of equal period that have nothing to do with each other drift apart.
+ * over the starts of both (mean phase coherence, Mormann, Lehnertz, David, Elger 2000, Physica D 144:358-369; formula:
+ * value from memory). Two cycles of equal period that have nothing to do with each other drift apart.
  *
  * @param fewest cycles that both must show at the same time
  * @returns null with fewer
  */
 export function keepingStep(a: CycleClock, b: CycleClock, fewest: number): Step | null {
-  let re = 0;
-  let im = 0;
-  let count = 0;
+  const phases = [...phasesAt(a.starts, b), ...phasesAt(b.starts, a).map((phase) => -phase)];
+  if ((phases.length / 2) * Math.max(a.every, b.every) < fewest) return null;
+  const turn = (of: (angle: number) => number): number =>
+    phases.reduce((sum, phase) => sum + of(2 * Math.PI * phase), 0) / phases.length;
+  const re = turn(Math.cos);
+  // A phase of b above 0 where a starts: b started before, so it is ahead.
+  const im = -turn(Math.sin);
+  return { kept: Math.hypot(re, im), lag: Math.atan2(im, re) / (2 * Math.PI) };
+}
+
+/** How far a clock is into its cycle at each of these moments, in cycles; moments outside its record are left out. */
+function phasesAt(moments: readonly number[], { starts, every }: CycleClock): number[] {
+  const phases: number[] = [];
   let k = 0;
-  for (const start of a.starts) {
-    while (k + 1 < b.starts.length && b.starts[k + 1]! <= start) k++;
-    if (k + 1 >= b.starts.length || b.starts[k]! > start) continue;
-    // Phase of b when a starts: 0 where b starts as well; the later b starts, the more it is behind.
-    const phase = (b.every * (start - b.starts[k]!)) / (b.starts[k + 1]! - b.starts[k]!);
-    re += Math.cos(2 * Math.PI * phase);
-    im -= Math.sin(2 * Math.PI * phase);
-    count++;
+  for (const moment of moments) {
+    while (k + 1 < starts.length && starts[k + 1]! <= moment) k++;
+    if (k + 1 >= starts.length || starts[k]! > moment) continue;
+    phases.push((every * (moment - starts[k]!)) / (starts[k + 1]! - starts[k]!));
   }
-  if (count * a.every < fewest || count < 2) return null;
-  return { kept: Math.hypot(re, im) / count, lag: Math.atan2(im, re) / (2 * Math.PI) };
+  return phases;
 }
 
 /** Cycles that two loops must show at the same time before anything is said of their sharing one (own choice). */

@@ -19,12 +19,17 @@ export type Disturbance =
       readonly theta: number;
       readonly every: number;
       readonly seed: number;
-    };
+    }
+  /**
+   * A signal from elsewhere, such as the PV of a neighbouring loop: a value at the start and after each `every`
+   * seconds, straight lines between them, the last one held.
+   */
+  | { readonly kind: 'signal'; readonly values: Float64Array; readonly every: number };
 
 /**
  * Values at the ends of `count` steps of `step` seconds, in the unit of the amplitude or spread.
  *
- * @throws WrongUse for a period that is not above 0 or a theta outside 0..1
+ * @throws WrongUse for a period or time step that is not above 0, a theta outside 0..1 or a signal without values
  */
 export function disturbanceValues(disturbance: Disturbance, count: number, step: number): Float64Array {
   const values = new Float64Array(count);
@@ -69,6 +74,21 @@ export function disturbanceValues(disturbance: Disturbance, count: number, step:
           before = shock;
         }
         values[k] = sum;
+      }
+      return values;
+    }
+    case 'signal': {
+      const { values: signal, every } = disturbance;
+      if (!(every > 0) || signal.length === 0) {
+        throw new WrongUse(
+          `A signal from elsewhere needs values and a time step above 0 s. Received ${signal.length} values every ${every} s.`,
+        );
+      }
+      for (let k = 0; k < count; k++) {
+        const at = Math.min(((k + 1) * step) / every, signal.length - 1);
+        const below = Math.floor(at);
+        const above = Math.min(below + 1, signal.length - 1);
+        values[k] = signal[below]! + (at - below) * (signal[above]! - signal[below]!);
       }
       return values;
     }
