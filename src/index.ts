@@ -66,6 +66,24 @@ export { phaseFigure } from './figures/phase-figure';
 export { travelFigure } from './figures/travel-figure';
 export { trendFigure } from './figures/trend-figure';
 export { valveLoopFigure } from './figures/valve-loop-figure';
+export type { DeadBandBound } from './forecast/bound-dead-band';
+export {
+  type ComparedRow,
+  type CompareOptions,
+  compareAssessments,
+  type RepairAnswer,
+  type RepairComparison,
+} from './forecast/compare-assessments';
+export type {
+  BalanceForecast,
+  CycleForecast,
+  Forecast,
+  ForecastResult,
+  MapPlace,
+  SettingForecast,
+} from './forecast/forecast';
+export { type ControllerSetting, type ForecastOptions, forecastCycle } from './forecast/forecast-cycle';
+export { type FrictionInForce, type FrictionOptions, frictionInForce } from './forecast/friction-in-force';
 export { canMakeDataFrames, dataFrame } from './notebook/data-frame';
 export { demoFile } from './notebook/demo-file';
 export {

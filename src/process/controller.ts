@@ -17,6 +17,8 @@ export interface ControllerOptions {
   readonly high?: number;
   /** OP while the error is zero and nothing has been integrated, %. Default 50. */
   readonly bias?: number;
+  /** While the error is no larger than this, PV units, nothing is integrated. Default 0: all is. */
+  readonly integralDeadBand?: number;
 }
 
 export interface Controller {
@@ -41,6 +43,7 @@ export function createController(options: ControllerOptions, scanPeriod: number)
     'low',
     'high',
     'bias',
+    'integralDeadBand',
   ]);
   const {
     form = 'PI',
@@ -51,6 +54,7 @@ export function createController(options: ControllerOptions, scanPeriod: number)
     low = 0,
     high = 100,
     bias = 50,
+    integralDeadBand = 0,
   } = options;
   if (!(gain > 0 && integralTime > 0 && scanPeriod > 0 && derivativeTime >= 0)) {
     throw new WrongUse(
@@ -60,6 +64,9 @@ export function createController(options: ControllerOptions, scanPeriod: number)
   }
   if (!(low < high)) {
     throw new WrongUse(`The low limit of OP must be below the high one. Received ${low} and ${high}.`);
+  }
+  if (!(integralDeadBand >= 0)) {
+    throw new WrongUse(`An integral dead band is 0 or more, in PV units. Received ${integralDeadBand}.`);
   }
   const direction = action === 'reverse' ? 1 : -1;
   const proportional = form === 'I' ? 0 : gain;
@@ -75,7 +82,7 @@ export function createController(options: ControllerOptions, scanPeriod: number)
       if (lastPv !== null) slope = keep * slope + ((1 - keep) * (pv - lastPv)) / scanPeriod;
       lastPv = pv;
       const acting = proportional * error - direction * derivative * slope;
-      const moved = sum + integral * error;
+      const moved = Math.abs(error) > integralDeadBand ? sum + integral * error : sum;
       const wanted = acting + moved;
       const windsUp = (wanted > high && error > 0) || (wanted < low && error < 0);
       if (!windsUp) sum = moved;

@@ -33,6 +33,15 @@ describe('controller', () => {
     expect(controller.scan(20, 21)).toBeLessThan(60);
   });
 
+  it('integrates nothing while the error is within its integral dead band', () => {
+    const settings = { gain: 2, integralTime: 10, bias: 40, integralDeadBand: 0.5 };
+    const within = createController(settings, 1);
+    for (let k = 0; k < 50; k++) expect(within.scan(10, 9.5)).toBeCloseTo(41, 12);
+    const beyond = createController(settings, 1);
+    for (let k = 0; k < 9; k++) beyond.scan(10, 9);
+    expect(beyond.scan(10, 9)).toBeCloseTo(42 + 2, 12);
+  });
+
   it('refuses what cannot be', () => {
     expect(() => createController({ gain: 0 }, 1)).toThrow(/above 0/);
     expect(() => createController({ low: 60, high: 50 }, 1)).toThrow(/low limit/);
