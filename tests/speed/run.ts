@@ -1,5 +1,6 @@
 /**
- * Measures how fast the program is: `npm run speed -- [--records N] [--repeats N] [--lengths N,N,...] [--json FILE]`.
+ * Measures how fast the program is: `npm run speed -- [--records N] [--repeats N] [--lengths N,N,...] [--json FILE]`,
+ * or `npm run speed -- --audit [--audit-loops N] [--audit-samples N]` for the audit of a unit alone (20 minutes or so).
  *
  * Stage 1 against a search over the same candidates in plain C and NumPy, and the whole assessment of loops of growing
  * length, each in a fresh process. Prints tables and writes JSON. Times mean something only on a quiet machine.
@@ -13,6 +14,7 @@ import { rate } from '../accuracy/score';
 import { wholeOption } from '../command-options';
 import { percent, textTable } from '../text-table';
 import type { AssessmentTime } from './assessment-time';
+import { type AuditTime, timeAudit } from './audit-time';
 import { compileRival, numpyRival, type Rival } from './rivals';
 import { compareOn, longRecords, middle, type RecordResult, SAMPLES } from './stage-one';
 
@@ -27,9 +29,19 @@ async function measure(): Promise<void> {
       records: { type: 'string', default: '10' },
       repeats: { type: 'string', default: '3' },
       lengths: { type: 'string', default: '1800,3600,14400,86400' },
-      json: { type: 'string', default: join(__dirname, '../../.cache/speed/speed.json') },
+      audit: { type: 'boolean', default: false },
+      'audit-loops': { type: 'string', default: '1000' },
+      'audit-samples': { type: 'string', default: '7200' },
+      json: { type: 'string' },
     },
   });
+  if (values.audit) {
+    const loops = wholeOption('audit-loops', values['audit-loops']);
+    const audit = await timeAudit(loops, wholeOption('audit-samples', values['audit-samples']));
+    say(printAudit(audit));
+    write(values.json ?? inCache('audit.json'), { audit });
+    return;
+  }
   const repeats = wholeOption('repeats', values.repeats);
   const records = wholeOption('records', values.records);
   const lengths = values.lengths.split(',').map((length) => wholeOption('lengths', length));
@@ -53,13 +65,23 @@ async function measure(): Promise<void> {
     process.stderr.write(`${samples} samples assessed ...\n`);
   }
   say(printAssessments(assessments));
-  const file = resolve(values.json);
+  write(values.json ?? inCache('speed.json'), {
+    repeats,
+    stageOne: summaryOf(searches),
+    searches,
+    assessments,
+  });
+}
+
+function inCache(name: string): string {
+  return join(__dirname, '../../.cache/speed', name);
+}
+
+function write(path: string, measured: object): void {
+  const file = resolve(path);
   mkdirSync(dirname(file), { recursive: true });
-  const machine = { node: process.version, processor: cpus()[0]?.model ?? null };
-  writeFileSync(
-    file,
-    `${JSON.stringify({ machine, repeats, stageOne: summaryOf(searches), searches, assessments }, null, 1)}\n`,
-  );
+  const machine = { node: process.version, processor: cpus()[0]?.model ?? null, cores: cpus().length };
+  writeFileSync(file, `${JSON.stringify({ machine, ...measured }, null, 1)}\n`);
   say(`Written to ${file}`);
 }
 
@@ -161,4 +183,27 @@ function printAssessments(assessments: readonly AssessmentTime[]): string {
       ...steps.map((step) => one.steps[step].toFixed(3)),
     ]),
   );
+}
+
+function printAudit({ loops, samples, workers, seconds, oneLoop, overIdeal, memory }: AuditTime): string {
+  const { early, late, most } = memory;
+  const grown = ((100 * (late - early)) / early).toFixed(1);
+  return [
+    textTable(
+      `An audit of ${loops} made loops of ${samples} samples by the built program, ${workers} workers`,
+      ['s', 's a loop alone', 'over ideal', 'MB early', 'MB late', 'growth %', 'MB most'],
+      [
+        [
+          seconds.toFixed(1),
+          oneLoop.toFixed(3),
+          overIdeal.toFixed(3),
+          ...[early, late].map((value) => value.toFixed(0)),
+          grown,
+          most.toFixed(0),
+        ],
+      ],
+    ),
+    'Early: around a tenth of the loops. Late: from 95 % of them to the last but one. Targets: growth at most 10 %, time at',
+    'most 1.2 times that of one loop x loops / workers. "Most" has the end in it, when groups and ranking are made.\n',
+  ].join('\n');
 }
