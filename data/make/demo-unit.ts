@@ -33,6 +33,7 @@ export interface UnitLoop extends ExportedLoop {
   readonly pvUnit: string;
   readonly pvRange: readonly [number, number];
   readonly samples: number;
+  readonly seed: number;
   /** S and J with which stem and linkage were set up, %. */
   readonly built: { readonly S: number; readonly J: number };
   readonly shakenBy: Shaking | null;
@@ -102,6 +103,7 @@ function unitLoop(plan: Plan): UnitLoop {
     pvRange: plan.pvRange,
     samplePeriod,
     samples,
+    seed,
     start,
     logsTravel: false,
     pvDecimals: 2,
@@ -135,7 +137,7 @@ function unitLoop(plan: Plan): UnitLoop {
 /** Flow of 0 to 100 m3/h behind a short pipe. */
 const flow = { pvUnit: 'm3/h', pvRange: [0, 100], noise: 0.08, drift: 0.03 } as const;
 const pressure = { pvUnit: 'kPa', pvRange: [0, 600], noise: 0.4, drift: 0.2 } as const;
-const level = { pvUnit: '%', pvRange: [0, 100], noise: 0.05, drift: 0.03, samplePeriod: 5 } as const;
+const level = { pvUnit: '%', pvRange: [0, 100], noise: 0.03, drift: 0.03, samplePeriod: 5 } as const;
 const temperature = { pvUnit: 'degC', pvRange: [0, 150], noise: 0.05, drift: 0.03, samplePeriod: 5 } as const;
 
 export const DEMO_UNIT: readonly UnitLoop[] = (
@@ -206,7 +208,7 @@ export const DEMO_UNIT: readonly UnitLoop[] = (
       setPoint: 42,
       from: 38,
       gain: 0.5,
-      integralTime: 4,
+      integralTime: 3,
       process: { gain: 0.9, lags: [4], deadTime: 1 },
     },
     {
@@ -218,22 +220,26 @@ export const DEMO_UNIT: readonly UnitLoop[] = (
       J: 1.2,
       setPoint: 240,
       from: 228,
-      gain: 0.12,
-      integralTime: 8,
+      gain: 0.15,
+      integralTime: 5,
       process: { gain: 4, lags: [9], deadTime: 2 },
     },
     {
       ...level,
       tag: '31-LC-221',
       cause: 'lost-motion',
+      logEvery: 5,
+      samples: 1800,
       story: 'Wash water tank level, outlet valve with a worn linkage.',
       S: 0.2,
       J: 0.02,
-      backlash: 2.8,
+      noise: 0.05,
+      drift: 0.1,
+      backlash: 3,
       setPoint: 55,
       from: 51,
-      gain: 4,
-      integralTime: 40,
+      gain: 5,
+      integralTime: 80,
       process: { response: 'integrating', gain: -0.0033, lags: [6], deadTime: 2 },
     },
     {
@@ -253,10 +259,11 @@ export const DEMO_UNIT: readonly UnitLoop[] = (
       tag: '31-TC-232',
       cause: 'tight-tuning',
       story: 'Wash water heater, controller gain near the limit of stability.',
-      S: 0.12,
-      J: 0.02,
+      S: 0.05,
+      J: 0.01,
+      noise: 0.02,
       setPoint: 65,
-      gain: 6.2,
+      gain: 6.8,
       integralTime: 140,
       process: { gain: 0.8, lags: [80, 20], deadTime: 12 },
     },
@@ -313,7 +320,7 @@ export const DEMO_UNIT: readonly UnitLoop[] = (
         ['31-FC-301', 'Fresh water intake', 48, flow, 0.35, 14, { gain: 1, lags: [6], deadTime: 1 }],
         ['31-FC-302', 'Wash water to the tables', 30, flow, 0.3, 12, { gain: 0.8, lags: [5], deadTime: 2 }],
         ['31-FC-303', 'Condensate to storage', 71, flow, 0.25, 16, { gain: 1.2, lags: [8], deadTime: 1 }],
-        ['31-FC-304', 'Filter backwash', 22, flow, 0.3, 10, { gain: 0.9, lags: [4], deadTime: 1 }],
+        ['31-FC-304', 'Filter backwash', 22, flow, 0.2, 12, { gain: 0.9, lags: [4], deadTime: 1 }],
         [
           '31-PC-305',
           'Steam to the flash vessel',
@@ -332,7 +339,7 @@ export const DEMO_UNIT: readonly UnitLoop[] = (
           30,
           { gain: 3.5, lags: [12], deadTime: 2 },
         ],
-        ['31-PC-307', 'Vacuum filter', 120, pressure, 0.1, 40, { gain: 2.5, lags: [20], deadTime: 4 }],
+        ['31-PC-307', 'Vacuum filter', 120, pressure, 0.08, 30, { gain: 2.5, lags: [20], deadTime: 4 }],
         ['31-TC-308', 'Process water', 58, temperature, 1, 120, { gain: 0.9, lags: [60, 15], deadTime: 10 }],
         [
           '31-TC-309',
@@ -348,8 +355,8 @@ export const DEMO_UNIT: readonly UnitLoop[] = (
           'Process water tank',
           60,
           level,
-          2,
-          500,
+          3,
+          700,
           { response: 'integrating', gain: -0.004, lags: [5], deadTime: 3 },
         ],
         [
@@ -357,8 +364,8 @@ export const DEMO_UNIT: readonly UnitLoop[] = (
           'Seal water tank',
           35,
           level,
-          1.5,
-          600,
+          2.5,
+          900,
           { response: 'integrating', gain: -0.005, lags: [5], deadTime: 3 },
         ],
         ['31-FC-312', 'Rinse water', 64, flow, 0.2, 11, { gain: 1.1, lags: [5], deadTime: 1 }],
@@ -377,6 +384,24 @@ export const DEMO_UNIT: readonly UnitLoop[] = (
     })),
   ] satisfies readonly Plan[]
 ).map(unitLoop);
+
+/** Where the records of the unit and their list lie in data/. */
+export const unitFolder = 'unit';
+export const unitListFile = 'unit-loops.csv';
+
+/** The list of the unit's loops as an audit reads it. */
+export function unitList(): string {
+  const rows = DEMO_UNIT.map(({ tag, service, response, pvRange: [low, high], pvUnit }) =>
+    [
+      `${unitFolder}/${tag}.csv`,
+      tag,
+      service,
+      response,
+      ...(pvUnit === '%' ? [low, high] : [`${low} ${pvUnit}`, `${high} ${pvUnit}`]),
+    ].join(','),
+  );
+  return `${['file,tag,service,response,pv_low,pv_high', ...rows].join('\n')}\n`;
+}
 
 export interface MadeUnitLoop {
   readonly demo: UnitLoop;
