@@ -48,6 +48,8 @@ export type {
   FrictionCurvePoint,
   FrictionLawName,
 } from './field-test/friction-curve';
+export { planCard } from './field-test/plan-card';
+export { planValveTest } from './field-test/plan-valve-test';
 export {
   type ReadValveTestOptions,
   readValveTest,
@@ -56,6 +58,14 @@ export {
 export { readingCard } from './field-test/reading-card';
 export type { TestCard } from './field-test/test-card';
 export { type ReadTestOptions, readTestRecord, type TestRecord } from './field-test/test-record';
+export type {
+  PlannedMove,
+  PlannedTest,
+  PlanRefusal,
+  TypedValve,
+  ValveTestLimits,
+  ValveTestPlan,
+} from './field-test/valve-test-plan';
 export type { StepRead, ValveTestKind, ValveTestReading } from './field-test/valve-test-reading';
 export { cycleFigure } from './figures/cycle-figure';
 export { evidenceFigure } from './figures/evidence-figure';

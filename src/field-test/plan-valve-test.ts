@@ -134,7 +134,7 @@ function basisOf({ assessment, record, stiction, opCycle, pvCycle }: Findings): 
     loop: assessment.loop,
     S: fit?.S.high ?? null,
     J: fit?.J?.high ?? null,
-    op: mean(record.op),
+    op: Math.round(10 * mean(record.op)) / 10,
     pv: mean(record.pv),
     pvSwing: assessment.severity.pvSwing,
     pvUnit: record.pvUnit,
@@ -152,9 +152,9 @@ function typedBasis(valve: TypedValve): TypedValveBasis {
     ['pv', pv, () => true, 'a number'],
     ['pvSwing', pvSwing, (value) => value >= 0, '0 or more'],
     ['period', period, (value) => value > 0, 'above 0, or null'],
-    ['process.gain', process && process.gain, (value) => value !== 0, 'other than 0'],
-    ['process.deadTime', process && process.deadTime, (value) => value >= 0, '0 or more'],
-    ['process.lag', process && process.lag, (value) => value >= 0, '0 or more, or null'],
+    ['process.gain', process?.gain ?? null, (value) => value !== 0, 'other than 0'],
+    ['process.deadTime', process?.deadTime ?? null, (value) => value >= 0, '0 or more'],
+    ['process.lag', process?.lag ?? null, (value) => value >= 0, '0 or more, or null'],
   ];
   const nullable = ['J', 'period', 'process.gain', 'process.deadTime', 'process.lag'];
   const wrong = numbers
@@ -273,10 +273,19 @@ function sides({ op }: TypedValveBasis, { opBand }: ValveTestLimits): { sign: 1 
 const notKnown =
   'Steps and ramps need S and the process between valve and PV, so that the expected movement of PV can be stated.';
 
+/**
+ * A gain that was fitted together with S and J may be too small, the more so where J was not resolved: expected PV gets
+ * room for a larger one (own choice). A typed gain is taken as it is.
+ */
+function gainRoom({ from, J }: TypedValveBasis): number {
+  return from === 'typed' ? 1 : J === null ? 2 : 1.5;
+}
+
 /** Where PV goes when OP goes `reach` % to one side; the stem may lag and jump by J, and started anywhere in its stick band. */
 function pvReach(basis: TypedValveBasis, sign: 1 | -1, reach: number, jump: number, seconds: number): Range {
   const { process, pv, pvSwing } = basis;
-  const { gain, response } = process!;
+  const { response } = process!;
+  const gain = process!.gain * gainRoom(basis);
   const moves =
     response === 'self-regulating'
       ? [sign * gain * (reach + jump), -sign * gain * jump]
@@ -319,18 +328,24 @@ function stepTest(basis: TypedValveBasis, limits: ValveTestLimits): Made {
         continue;
       }
       const offsets = smallSteps(count, small);
-      for (const size of series) {
-        if (size <= small || size > limits.largestStep || 2 * size > reach) continue;
+      let furthest = reach;
+      const expectedFor = (far: number, moves: number): Range =>
+        pvReach(basis, sign, far, jump, moves * hold);
+      if (!inside(expectedFor(reach, offsets.length), limits.pvBand)) {
+        why = 'Steps that show the dead band would move PV out of its band.';
+        continue;
+      }
+      // Larger steps for the response times, as far as OP and PV leave room: twice up, twice down.
+      for (const size of series.filter((one) => one > small && one <= limits.largestStep)) {
+        const far = Math.max(furthest, 2 * size);
+        if (far > room || !inside(expectedFor(far, offsets.length + 4), limits.pvBand)) break;
+        furthest = far;
         offsets.push(size, 2 * size, size, 0);
         if (size >= beyond * S) break;
       }
       const moves = offsets.map((offset): PlannedMove => ({ op: op + sign * offset, rate: null, hold }));
       const duration = moves.length * hold;
-      const expectedPv = pvReach(basis, sign, reach, jump, duration);
-      if (!inside(expectedPv, limits.pvBand)) {
-        why = 'Steps that show the dead band would move PV out of its band.';
-        continue;
-      }
+      const expectedPv = expectedFor(furthest, moves.length);
       const sizes = [
         ...new Set(offsets.map((offset, i) => rounded(Math.abs(offset - (offsets[i - 1] ?? 0))))),
       ];
@@ -408,7 +423,8 @@ function rampTest(basis: TypedValveBasis, limits: ValveTestLimits): Made {
   return without(why);
 }
 
-function notesOn({ from, op, pv, pvUnit, J, S, process }: TypedValveBasis): Note[] {
+function notesOn(basis: TypedValveBasis): Note[] {
+  const { from, op, pv, pvUnit, J, S, process } = basis;
   const notes: Note[] = [
     {
       code: 'starting-point',
@@ -427,7 +443,7 @@ function notesOn({ from, op, pv, pvUnit, J, S, process }: TypedValveBasis): Note
     const per = process.response === 'integrating' ? `${pvUnit} per % and s` : `${pvUnit} per %`;
     notes.push({
       code: 'expected-pv',
-      text: `Expected PV comes from a process gain of ${threeDigits(process.gain)} ${per}${from === 'assessment' ? ', as fitted to the record' : ''}. If the first steps move PV by more, stop.`,
+      text: `Expected PV comes from a process gain of ${threeDigits(process.gain)} ${per}${from === 'assessment' ? `, as fitted to the record, with room for ${gainRoom(basis)} times as much` : ''}. If the first steps move PV by more, stop.`,
     });
   }
   return notes;
