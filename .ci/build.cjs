@@ -29,6 +29,7 @@ const { status } = spawnSync(process.execPath, [compiler, '-p', root], { stdio: 
 if (status !== 0) process.exit(status ?? 1);
 for (const file of [
   'assessment/assessment.schema.json',
+  'audit/audit.schema.json',
   'field-test/valve-test.schema.json',
   'report/run-notebook.py',
 ]) {

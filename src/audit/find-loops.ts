@@ -78,7 +78,8 @@ function fromMap(source: string, mapFile: string, forAll: ReadLoopOptions): Foun
 
 function fromFolder(folder: string, forAll: ReadLoopOptions): FoundLoops {
   const names = readdirSync(folder, { withFileTypes: true })
-    .filter((entry) => !entry.name.startsWith('.') && !entry.isDirectory())
+    // Hidden files, and what Excel leaves beside a workbook that is open.
+    .filter((entry) => !/^(\.|~\$)/.test(entry.name) && !entry.isDirectory())
     .map(({ name }) => name)
     .sort();
   const leftOut: string[] = [];

@@ -65,6 +65,9 @@ export async function audit(words: readonly string[], output: Output): Promise<v
   const jsonAlone = values.json === '-';
   const jsonFile = values.json === undefined || jsonAlone ? null : resolve(values.json);
   const folder = resolve(values.out ?? join(defaultOutFolder(), `audit-${nameOf(source)}`));
+  if (folder === resolve(source)) {
+    throw new WrongUse(`The results of an audit cannot lie among its loops. Name another folder with --out.`);
+  }
   prepareFolder(folder);
   if (jsonFile) prepareFolder(dirname(jsonFile));
 

@@ -172,7 +172,7 @@ function groupOf(
   if (hasRole(withoutTag, 'pv') || hasRole(withoutTag, 'op')) return withoutTag;
   if (loops.length > 1) {
     throw new UnreadableInput(
-      `${what} has columns of ${loops.length} loops: ${choice()}. Choose one with --tag (option "tag").`,
+      `${what} has columns of ${loops.length} loops: ${choice()}. Choose one with --tag (option "tag"), or assess all of them with stickband audit and a map.`,
     );
   }
   return loops[0] ?? withoutTag;

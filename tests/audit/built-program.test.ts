@@ -1,9 +1,9 @@
 /** The audit as it is run: the built program with its worker threads, killed, short of memory, and resumed. */
 import { execFileSync, spawn, spawnSync } from 'node:child_process';
-import { existsSync, readFileSync, statSync, writeFileSync } from 'node:fs';
-import { join } from 'node:path';
+import { existsSync, readFileSync, rmSync, statSync, writeFileSync } from 'node:fs';
+import { join, resolve } from 'node:path';
 import { setTimeout } from 'node:timers/promises';
-import { beforeAll, describe, expect, it } from 'vitest';
+import { beforeAll, describe, expect, it, vi } from 'vitest';
 import { type Audit, hasFailed } from '../../src/audit/audit';
 import { auditLoops } from '../../src/audit/audit-loops';
 import { seededRandom } from '../../src/signal/random';
@@ -12,6 +12,9 @@ import { scratchFolder } from '../scratch-folder';
 import { writeSmallLoops } from './small-loops';
 
 const program = join('dist', 'cli', 'main.js');
+
+/** ms; each run starts Node and its workers, which a busy machine makes slow. */
+vi.setConfig({ testTimeout: 300_000 });
 
 beforeAll(() => {
   execFileSync(process.execPath, [join('.ci', 'build.cjs')]);
@@ -95,6 +98,45 @@ describe('an audit killed with SIGKILL', () => {
     const whole: Audit = JSON.parse(auditIn(out));
     expect(whole).toEqual(JSON.parse(JSON.stringify(await auditLoops(unit, { workers: 0 }))));
     expect(whole.loops.filter(hasFailed)).toEqual([]);
+  });
+});
+
+/** What the README shows, run as printed but for the way to the program. */
+describe('the shards of the README', () => {
+  const readme = readFileSync('README.md', 'utf8');
+  const unit = scratchFolder();
+  const names = writeSmallLoops(join(unit, 'loops'), 20);
+  writeFileSync(join(unit, 'loops.csv'), `file\n${names.map((name) => `loops/${name}\n`).join('')}`);
+
+  /** Runs a line with a shell in the folder of the unit. */
+  const shell = async (line: string, env: Record<string, string> = {}): Promise<number | null> => {
+    const command = line.replace('npx --no stickband', `"${process.execPath}" "${resolve(program)}"`);
+    expect(command).not.toBe(line);
+    const child = spawn('sh', ['-c', command], {
+      cwd: unit,
+      env: { ...process.env, ...env },
+      stdio: 'ignore',
+    });
+    return new Promise((ended) => {
+      child.on('close', ended);
+    });
+  };
+  const shards = [1, 2, 3, 4, 5, 6, 7, 8];
+  const parts = (): string[] =>
+    shards.map((shard) => readFileSync(join(unit, 'parts', `audit-part-${shard}-of-8.json`), 'utf8'));
+
+  it.each<[string, RegExp, (shard: number) => Record<string, string>]>([
+    ['Slurm', /--wrap '(.*)'/, (shard) => ({ SLURM_ARRAY_TASK_ID: String(shard) })],
+    ['Kubernetes', /args: \['(.*)'\]/, (shard) => ({ JOB_COMPLETION_INDEX: String(shard - 1) })],
+  ])('merge to the audit of one run: %s', async (_, pattern, environment) => {
+    rmSync(join(unit, 'parts'), { recursive: true, force: true });
+    const line = pattern.exec(readme)![1]!;
+    const codes = await Promise.all(shards.map((shard) => shell(`${line} --workers 1`, environment(shard))));
+    expect(codes).toEqual(shards.map(() => 0));
+    expect(parts().reduce((sum, part) => sum + JSON.parse(part).loops.length, 0)).toBe(20);
+    expect(await shell(/^npx --no stickband merge .*$/m.exec(readme)![0])).toBe(0);
+    const whole = await auditLoops(join(unit, 'loops.csv'), { workers: 0 });
+    expect(readFileSync(join(unit, 'audit.json'), 'utf8')).toBe(`${JSON.stringify(whole, null, 2)}\n`);
   });
 });
 

@@ -25,7 +25,7 @@ describe('the loops of a folder', () => {
     const folder = scratchFolder();
     writeSmallLoops(folder, 2);
     mkdirSync(join(folder, 'old.csv'));
-    for (const name of ['.31-FC-900.csv', 'README.md', 'unit.parquet'])
+    for (const name of ['.31-FC-900.csv', '~$31-FC-100.xlsx', 'README.md', 'unit.parquet'])
       writeFileSync(join(folder, name), smallLoop(0));
     writeFileSync(join(folder, 'loops.csv'), 'file,tag\n31-FC-100.csv,31-FC-100\n');
     const { loops, leftOut } = findLoops(folder, null, {});

@@ -1,8 +1,11 @@
 import { existsSync, mkdirSync, readdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { join, resolve } from 'node:path';
+import Ajv from 'ajv';
 import { describe, expect, it } from 'vitest';
+import ofAssessment from '../../src/assessment/assessment.schema.json';
 import { cautions } from '../../src/assessment/cautions';
 import type { Audit, AuditPart } from '../../src/audit/audit';
+import ofAudit from '../../src/audit/audit.schema.json';
 import { run } from '../../src/cli/run';
 import { smallLoop, writeSmallLoops } from '../audit/small-loops';
 import { scratchFolder } from '../scratch-folder';
@@ -38,8 +41,12 @@ describe('stickband audit', () => {
   it('puts JSON alone on stdout, keeps no file, and gives the same bytes again', async () => {
     const first = await audit(unit, '--json', '-');
     expect(first.code).toBe(0);
-    const { schema, loops } = JSON.parse(first.stdout) as Audit;
-    expect([schema, loops.length]).toEqual(['stickband/audit/1', 5]);
+    const answer = JSON.parse(first.stdout) as Audit;
+    expect([answer.schema, answer.loops.length]).toEqual(['stickband/audit/1', 5]);
+    const ajv = new Ajv({ allErrors: true, strict: true, allowUnionTypes: true });
+    const validate = ajv.addSchema(ofAssessment, '../assessment/assessment.schema.json').compile(ofAudit);
+    validate(answer);
+    expect(validate.errors ?? []).toEqual([]);
     expect(first.stdout).not.toContain(unit);
     expect(first.stderr).toContain('1 of 5 loops failed');
     expect(plain(first.stderr)).toContain(cautions[0]);
@@ -125,6 +132,7 @@ describe('stickband audit', () => {
     [['data', '--map', 'map.csv'], /is a folder\. A map goes with one export/],
     [['data', '--shard', '2'], /--shard takes i\/n, e\.g\. --shard 2\/8; "2" was received/],
     [['data', '--shard', '3/2'], /Received 3\/2/],
+    [['data', '--out', 'data/'], /cannot lie among its loops\. Name another folder with --out/],
     [['data', '--out', join('package.json', 'out')], /cannot be written to/],
   ])('answers wrong use %j with exit code 2 and a sentence', async (words, sentence) => {
     const out = words.includes('--out') ? [] : ['--out', join(scratchFolder(), 'out')];
