@@ -5,6 +5,7 @@ import { DEMO_LOOPS, makeDemoLoop } from './demo-loops';
 import { type MadeUnitLoop, makeDemoUnit, unitFolder, unitList, unitListFile } from './demo-unit';
 import { toCsv } from './export';
 import { fitTruth } from './truth';
+import { makeValveTests, testedValve } from './valve-tests';
 
 const folder = join(__dirname, '..');
 const rows: string[] = [];
@@ -27,6 +28,9 @@ for (const made of unit) {
   writeFileSync(join(folder, unitFolder, `${made.demo.tag}.csv`), toCsv(made, made.demo.seed));
 }
 writeFileSync(join(folder, unitListFile), unitList());
+
+const valveTests = makeValveTests();
+for (const { name, csv } of valveTests) writeFileSync(join(folder, `${name}.csv`), csv);
 
 /** A row of the unit's table: S and J as in the table above, dashes where the valve is not to blame. */
 function unitRow({ demo, run }: MadeUnitLoop): string {
@@ -71,5 +75,14 @@ be asked of it. S and J (of the valves that are to blame) are found as above.
 | tag | cause of the cycle | what it is | record | S, % | J, % |
 |---|---|---|---|---|---|
 ${unit.map(unitRow).join('\n')}
+
+## Tests of a valve
+
+The sticky valve of 31-FC-104 as it was tested, S and J built in as ${testedValve.S} % and ${testedValve.J} %, an actuator of
+${1e4 * testedValve.area} cm2 behind a lag of ${testedValve.actuatorLag} s, rated travel 101.6 mm:
+
+| file | what it is |
+|---|---|
+${valveTests.map(({ name, story }) => `| ${name}.csv | ${story} |`).join('\n')}
 `,
 );
