@@ -22,6 +22,8 @@ const rounding = 1e-6;
 const spread = 3;
 /** Samples that a command has to stand still after a step so that it is one (own choice). */
 const dwell = 5;
+/** Share of the record that a rest takes so that the whole is a hold, where no mode tells (own choice). */
+const holdShare = 0.3;
 /** Samples that the command has to stand still within a ramp so that it counts as a stop (own choice). */
 const shortestStop = 10;
 /** Turns of the command by less than this share of its whole range are none (own choice). */
@@ -49,19 +51,28 @@ export function commandSteps(op: Float64Array): CommandStep[] {
   return steps.map(({ at, from, to }, i) => ({ at, until: steps[i + 1]?.at ?? op.length, from, to }));
 }
 
-/** What kind of test a command was made for. */
-export function kindOf(op: Float64Array): ValveTestKind {
+/**
+ * What kind of test a command was made for.
+ *
+ * @param automatic 1 where the controller was in automatic; null when no mode was logged
+ */
+export function kindOf(op: Float64Array, automatic: Float64Array | null = null): ValveTestKind {
   const steps = commandSteps(op);
   if (steps.length === 0) return 'hold';
   const dwells = steps.map(({ at, until }) => until - at).sort((a, b) => a - b);
   const longest = Math.max(steps[0]!.at, dwells[dwells.length - 1]!);
   const median = dwells[Math.floor((dwells.length - 1) / 2)]!;
+  // A controller that was moving OP before it was put in manual leaves one long rest.
+  const movedInManual = automatic?.some(
+    (flag, k) => k > 1 && flag === 0 && automatic[k - 1] === 0 && op[k] !== op[k - 1],
+  );
+  const wasAutomatic = automatic?.includes(1) ?? false;
+  if (wasAutomatic && !movedInManual && automatic!.includes(0)) return 'hold';
+  if (longest >= holdShare * op.length && median < dwell) return 'hold';
   // A ramp logged in coarse steps has many of them, each small against its whole range.
   const range = rangeOf(op);
   const sizes = steps.map(({ from, to }) => Math.abs(to - from)).sort((a, b) => a - b);
   const isFine = steps.length > 60 && sizes[Math.floor(sizes.length / 2)]! < range / 40;
-  // A controller that was moving OP before it was put in manual leaves one long rest at the end.
-  if (longest >= 0.5 * op.length && median < dwell) return 'hold';
   return median >= dwell && !isFine ? 'step' : 'stroke';
 }
 

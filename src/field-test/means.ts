@@ -1,4 +1,4 @@
-/** A value with its 90 % interval from repeated readings, or from a bracket. */
+/** A value with its 90 % interval from repeated readings. */
 import type { Estimate } from '../estimate/stiction-fit';
 import { normalQuantile, studentTQuantile } from '../signal/distributions';
 
@@ -29,9 +29,4 @@ export function meanOf(readings: readonly number[], each: number, unit: string, 
     high: Math.max(least, value + half),
     unit,
   };
-}
-
-/** Something known to lie between `low` and `high`; its value is the middle. */
-export function between(low: number, high: number, unit: string): Estimate {
-  return { value: (low + high) / 2, low, high, unit };
 }

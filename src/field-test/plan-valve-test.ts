@@ -47,6 +47,8 @@ const valveSeconds = 5;
 const beyond = 1.5;
 /** A ramp passes S in at least this many seconds and this many response times, so that it reads as slow (own choice). */
 const rampThrough = { seconds: 60, responses: 8 };
+/** Room between expected PV and the ends of the band, share of the band (own choice). */
+const leastRoom = 0.05;
 /** Share of the way from expected PV to the band at which the test is stopped. */
 const stopShare = 0.5;
 
@@ -207,7 +209,8 @@ interface Made {
 
 /** Whether PV stays inside the band, with room to stop before its ends. */
 function inside(expected: Range, band: Range): boolean {
-  return expected.low > band.low && expected.high < band.high;
+  const room = leastRoom * (band.high - band.low);
+  return expected.low > band.low + room && expected.high < band.high - room;
 }
 
 function stopAt(expected: Range, band: Range): Range {

@@ -27,6 +27,8 @@ export interface HoldFindings {
 
 /** Periods that a hold has to last (common practice, no source). */
 export const shortestHold = 3;
+/** Samples from which a cycle can be looked for. */
+const fewestBefore = 20;
 /** Of the swing before: below the first it died, above the second it stayed (own choice). */
 const left = { died: 0.3, stayed: 0.7 };
 
@@ -38,8 +40,7 @@ export function readHold(record: TestRecord, period: number | null, swing: numbe
   const pv = record.pv!;
   const { samplePeriod } = record;
   const { from, to } = longestRest(record.op);
-  const before = findCycle(pv.subarray(0, from), samplePeriod);
-  const used = period ?? before.period;
+  const used = period ?? periodBefore(record, from);
   const seconds = (to - from) * samplePeriod;
   const decided = (
     outcome: HoldFindings['outcome'],
@@ -105,6 +106,14 @@ export function readHold(record: TestRecord, period: number | null, swing: numbe
     `${numbers} That is neither gone nor as before; hold again, or longer, in a quiet hour.`,
     swingBefore,
     swingIn,
+  );
+}
+
+/** Period of the cycle before sample `to`, s, in PV or else in OP; null without one. */
+function periodBefore({ pv, op, samplePeriod }: TestRecord, to: number): number | null {
+  if (to < fewestBefore) return null;
+  return (
+    findCycle(pv!.subarray(0, to), samplePeriod).period ?? findCycle(op.subarray(0, to), samplePeriod).period
   );
 }
 

@@ -7,7 +7,7 @@ import type { Note } from '../record/loop-record';
 import { quantile } from '../signal/statistics';
 import { threeDigits } from '../signal/three-digits';
 import { commandSteps } from './command';
-import { between, meanOf } from './means';
+import { meanOf } from './means';
 import { restNoise } from './stem-motion';
 import { stepResponse } from './step-response';
 import type { TestRecord } from './test-record';
@@ -204,18 +204,23 @@ function bracketed(
     notes.push({ code: `no-${code}`, text: `The ${name} is not resolved: there is no ${what}.` });
     return null;
   }
-  // Behind a slow actuator the stem may stop again early in a step: then the range counts from somewhere within it.
-  for (const early of [0, 1]) {
-    const low = Math.max(...brackets.map((one) => Math.max(0, one.low - early * one.stepBefore)));
-    const high = Math.min(...brackets.map((one) => one.high));
-    if (low >= high) continue;
+  // The stem may have moved early in the step before and stopped again, as behind a slow actuator: the interval takes in
+  // that the range may count from anywhere in that step. The value is the middle of what the steps say as they stand.
+  const low = Math.max(...brackets.map((one) => one.low));
+  const high = Math.min(...brackets.map((one) => one.high));
+  const widest = {
+    low: Math.max(...brackets.map((one) => Math.max(0, one.low - (one.reversal ? one.stepBefore : 0)))),
+    high: Math.min(...brackets.map((one) => one.high + (one.reversal ? 0 : one.stepBefore))),
+  };
+  if (widest.low < widest.high) {
     if (low === 0) {
       notes.push({
         code: `${code}-below-steps`,
-        text: `The ${name} is below the smallest step that shows it: it is known only to be at most ${threeDigits(high)} %.`,
+        text: `The ${name} is below the smallest step that shows it: it is known only to be at most ${threeDigits(widest.high)} %.`,
       });
     }
-    return between(low, high, band);
+    const middle = low < high ? (low + high) / 2 : (widest.low + widest.high) / 2;
+    return { value: middle, low: low === 0 ? 0 : widest.low, high: widest.high, unit: band };
   }
   notes.push({
     code: `${code}-scatters`,

@@ -74,7 +74,7 @@ export function readValveTest(
   const record = isRecord
     ? (source as TestRecord)
     : readTestRecord(source as string | DataFrameLike, withStroke(forFile, length));
-  const kind = statedKind ?? kindOf(record.op);
+  const kind = statedKind ?? kindOf(record.op, record.automatic ?? null);
   const what = record.source;
   if (kind === 'hold' && record.pv === null) {
     throw new UnreadableInput(`${what} is a hold without PV. Whether the cycle died is seen in PV: log it.`);

@@ -74,6 +74,7 @@ function answer({ reading, hold, record }: ValveTestFindings): Pick<TestCard, 'h
 
 /** A bracket that begins at nothing is a bound. */
 function bounded(one: Estimate): string {
+  if (one.high === 0) return `0 ${one.unit}`;
   return one.low === 0 ? `at most ${threeDigits(one.high)} ${one.unit}` : withInterval(one);
 }
 
