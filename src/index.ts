@@ -27,8 +27,24 @@ export {
   partOf,
   type RunOptions,
 } from './audit/audit-loops';
+export { type GroupOptions, groupLoops } from './audit/group-loops';
 export { mergeAudits } from './audit/merge-audits';
+export {
+  type RankingRule,
+  type RankOptions,
+  rankingRule,
+  rankLoops,
+  type SeverityPart,
+} from './audit/rank-loops';
 export type { Shard } from './audit/shard';
+export type { CycleClock, LoopPicture, LoopSignature } from './audit/signature';
+export type { Change } from './audit/stiction-change';
+export {
+  type StictionTrack,
+  type StictionWindow,
+  type TrackOptions,
+  trackStiction,
+} from './audit/track-stiction';
 export { type CauseInput, nameCause } from './cause/name-cause';
 export { MissingTool, StickbandError, UnreadableInput, UnwritableOutput, WrongUse } from './errors';
 export { type FitOptions, fitStiction } from './estimate/fit-stiction';
@@ -73,6 +89,7 @@ export type { Figure } from './figures/figure';
 export { fitFigure } from './figures/fit-figure';
 export { misfitFigure } from './figures/misfit-figure';
 export { phaseFigure } from './figures/phase-figure';
+export { stictionOverTimeFigure } from './figures/stiction-over-time-figure';
 export { travelFigure } from './figures/travel-figure';
 export { trendFigure } from './figures/trend-figure';
 export { valveLoopFigure } from './figures/valve-loop-figure';

@@ -1,10 +1,11 @@
 /** S and J along the calendar: a long record, window by window, and whether S is getting worse, since when. */
+import { DateTime } from 'luxon';
 import { duration } from '../assessment/make-answer-card';
 import { refuseUnknownOptions, WrongUse } from '../errors';
 import { fitStiction } from '../estimate/fit-stiction';
 import type { Estimate } from '../estimate/stiction-fit';
 import type { LoopRecord } from '../record/loop-record';
-import { type Change, fewestWindows, findChange } from './stiction-change';
+import { type Change, fewestWindows, findChange, leastChance } from './stiction-change';
 
 export interface TrackOptions {
   /**
@@ -99,7 +100,7 @@ export function trackStiction(record: LoopRecord, options: TrackOptions = {}): S
     window: samples * samplePeriod,
     windows,
     change,
-    reasons: reasonsOf(change, values.length, count, samples * samplePeriod),
+    reasons: reasonsOf(change, record.start, values.length, windows),
   };
 }
 
@@ -119,27 +120,40 @@ function stretch(record: LoopRecord, from: number, to: number): LoopRecord {
   };
 }
 
-function reasonsOf(change: Change, withS: number, count: number, window: number): string[] {
-  const of = `${withS} of ${count} windows of ${duration(window)} give S.`;
+function reasonsOf(
+  change: Change,
+  start: string,
+  withS: number,
+  windows: readonly StictionWindow[],
+): string[] {
+  const of = `${withS} of ${windows.length} windows of ${duration(windows[0]!.to)} give S.`;
   const { says, since, before, after, chance } = change;
   if (says === 'cannot tell') {
     return [of, `Fewer than ${fewestWindows} are too few to tell whether S changes.`];
   }
-  const clear = `The same values in any other order show as clear a change in ${percent(chance!)} of cases`;
+  const clear = `Shuffled over the windows, the same values show as clear a change in ${percent(chance!)} of cases`;
   if (since === null) {
     return [
       of,
-      `No change of S is shown: S is about ${short(before!)} %. ${clear} (at most 5 % would show one).`,
+      `No change of S is shown: S is about ${short(before!)} %. ${clear}; ${percent(leastChance)} or less would show one.`,
     ];
   }
-  const moment = `${duration(since.value)} after the start of the record (90 % interval ${duration(since.low)} to ${duration(since.high)})`;
+  const at = (seconds: number): string => clockTime(start, seconds);
+  const moment = `${at(since.value)} (90 % interval ${at(since.low)} to ${at(since.high)})`;
   return [
     of,
     change.shape === 'step'
       ? `S went ${says === 'rising' ? 'up' : 'down'} from about ${short(before!)} % to ${short(after!)} % at ${moment}.`
-      : `S is ${says}: from about ${short(before!)} % to ${short(after!)} % at the end, since ${moment}.`,
+      : `S is ${says} since ${moment}: from about ${short(before!)} % to ${short(after!)} % at the end.`,
     `${clear}.`,
   ];
+}
+
+/** As the clock on the wall showed it where the record was made. */
+function clockTime(start: string, seconds: number): string {
+  return DateTime.fromISO(start, { setZone: true, zone: 'utc' })
+    .plus({ seconds })
+    .toFormat('yyyy-MM-dd HH:mm');
 }
 
 const short = (value: number): string => String(Number(value.toPrecision(2)));

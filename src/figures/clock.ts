@@ -17,24 +17,33 @@ export interface RecordClock {
 }
 
 /** @throws WrongUse when the record's start is not an ISO 8601 time */
-export function recordClock(record: LoopRecord): RecordClock {
-  const start = DateTime.fromISO(record.start, { setZone: true, zone: 'utc' });
+export function recordClock({ start, pv, samplePeriod }: LoopRecord): RecordClock {
+  return clockFrom(start, pv.length * samplePeriod);
+}
+
+/**
+ * The clock of `seconds` from a start, ISO 8601.
+ *
+ * @throws WrongUse when the start is no such time
+ */
+export function clockFrom(startTime: string, seconds: number): RecordClock {
+  const start = DateTime.fromISO(startTime, { setZone: true, zone: 'utc' });
   if (!start.isValid) {
     throw new WrongUse(
-      `The start of the record must be an ISO 8601 time, e.g. 2024-03-05T06:00:00Z. Received "${record.start}".`,
+      `The start of the record must be an ISO 8601 time, e.g. 2024-03-05T06:00:00Z. Received "${startTime}".`,
     );
   }
   const wall = start.setZone('utc', { keepLocalTime: true }).toMillis();
-  const zoned = /(Z|[+-]\d\d:?\d\d)$/i.test(record.start);
-  const at = (seconds: number): string =>
-    new Date(wall + Math.round(seconds * 1000))
+  const zoned = /(Z|[+-]\d\d:?\d\d)$/i.test(startTime);
+  const at = (later: number): string =>
+    new Date(wall + Math.round(later * 1000))
       .toISOString()
       .replace('T', ' ')
       .replace(/(\.000)?Z$/, '');
-  const textLength = record.pv.length * record.samplePeriod < 1200 ? 8 : 5;
+  const textLength = seconds < 1200 ? 8 : 5;
   return {
     title: zoned ? `clock time (${start.offset === 0 ? 'UTC' : start.toFormat("'UTC'ZZ")})` : 'clock time',
     at,
-    text: (seconds) => at(seconds).slice(11, 11 + textLength),
+    text: (later) => at(later).slice(11, 11 + textLength),
   };
 }
