@@ -59,18 +59,16 @@ export class TravelMisfit {
   private readonly sums: Record<'t' | 'u' | 'tt' | 'uu' | 'ut', Float64Array>;
   private readonly start: number;
 
-  /** `start`: travel before the first sample, %; default: the travel's first value. */
   constructor(
     private readonly op: Float64Array,
     travel: Float64Array,
-    start?: number,
   ) {
     const samples = op.length;
     this.pieces = createTravelPieces(samples);
     this.first = Math.floor(notCounted * samples);
     this.opMean = meanFrom(op, this.first);
     this.travelMean = meanFrom(travel, this.first);
-    this.start = start ?? travel[0];
+    this.start = travel[0];
     const sum = (): Float64Array => new Float64Array(samples + 1);
     this.sums = { t: sum(), u: sum(), tt: sum(), uu: sum(), ut: sum() };
     const { t, u, tt, uu, ut } = this.sums;

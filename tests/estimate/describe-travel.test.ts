@@ -112,7 +112,7 @@ describe('TravelMisfit', () => {
     const travel = twoParameterValve(op, { S: 3, J: 1, start: 48 }).map(
       (value) => value + 0.2 * random.normal(),
     );
-    const misfit = new TravelMisfit(op, travel, 48);
+    const misfit = new TravelMisfit(op, travel);
     const first = samples / 10;
     const squares = (values: Float64Array): number => {
       const counted = values.subarray(first);
@@ -126,7 +126,7 @@ describe('TravelMisfit', () => {
         [4, 4],
         [1.5, 1],
       ]) {
-        const element = twoParameterValve(op, { S, J, model, start: 48 });
+        const element = twoParameterValve(op, { S, J, model, start: travel[0] });
         const left = squares(element.map((value, k) => value - travel[k])) / squares(travel);
         expectClose(misfit.of(S, J, model), left, { absolute: 1e-9 }, `${model} S ${S} J ${J}`);
       }
