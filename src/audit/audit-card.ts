@@ -1,0 +1,95 @@
+/** The answer to a whole unit as short plain sentences, made once and shown by terminal, notebook and page alike. */
+import type { Assessment, Verdict } from '../assessment/assessment';
+import { duration, withInterval } from '../assessment/make-answer-card';
+import type { Audit, LoopGroup, RankedLoop } from './audit';
+import { hasFailed } from './audit';
+
+export interface AuditCard {
+  /** How many cycle, and what to look at first. */
+  readonly headline: string;
+  /** How many loops have which cause. */
+  readonly counts: string;
+  readonly figures: readonly { readonly label: string; readonly value: string; readonly note: string }[];
+  /** The first of the ranking, each with why in one line. */
+  readonly first: readonly { readonly loop: string; readonly line: string }[];
+  /** Loops that share a cycle, a sentence a group. */
+  readonly together: readonly string[];
+  readonly cautions: readonly string[];
+}
+
+/** Loops named on the card at most; the ranking has all (own choice: what fits on a screen). */
+const namedFirst = 5;
+const namedGroups = 5;
+const accused: readonly Verdict[] = ['stiction', 'lost-motion'];
+
+export function auditCard({ loops, groups, ranking, cautions }: Audit): AuditCard {
+  const assessed = loops.flatMap((one) => (hasFailed(one) ? [] : [one]));
+  const cycling = assessed.filter(({ oscillation }) => oscillation.present).length;
+  const failed = loops.length - assessed.length;
+  const verdicts = new Map<string, number>();
+  for (const { cause } of assessed) verdicts.set(cause.verdict, (verdicts.get(cause.verdict) ?? 0) + 1);
+  if (failed > 0) verdicts.set('failed', failed);
+  const counted = [...verdicts].sort(([a, n], [b, m]) => m - n || (a < b ? -1 : 1));
+  const worth = ranking.filter(({ score }) => score > 0);
+  const valves = assessed.filter(({ cause }) => accused.includes(cause.verdict)).length;
+  const told = groups.filter(({ likelySource }) => likelySource !== null).length;
+  const lineOf = (one: RankedLoop): string => {
+    const group = groups.find((shared) => shared.loops.includes(one.loop)) ?? null;
+    return inOneLine(one, assessed.find(({ loop }) => loop === one.loop)!, group);
+  };
+  return {
+    headline: headline(cycling, loops.length, worth),
+    counts: `${countOf(loops.length, 'loop')}: ${counted.map(([verdict, n]) => `${n} ${verdict}`).join(', ')}.`,
+    figures: [
+      { label: 'Loops that cycle', value: `${cycling} of ${assessed.length}`, note: 'of those assessed' },
+      {
+        label: 'Final control assembly accused',
+        value: String(valves),
+        note: accused.map((verdict) => `${verdicts.get(verdict) ?? 0} ${verdict}`).join(', '),
+      },
+      {
+        label: 'Cycles shared by several loops',
+        value: String(groups.length),
+        note: groups.length === 0 ? '' : `${told} with a likely source`,
+      },
+      { label: 'Not assessed', value: String(failed), note: failed === 0 ? '' : 'each with its error' },
+    ],
+    first: worth.slice(0, namedFirst).map((one) => ({ loop: one.loop, line: lineOf(one) })),
+    together: [
+      ...groups.slice(0, namedGroups).map(groupSentence),
+      ...(groups.length > namedGroups ? [`And ${groups.length - namedGroups} smaller ones.`] : []),
+    ],
+    cautions,
+  };
+}
+
+function headline(cycling: number, all: number, [first]: readonly RankedLoop[]): string {
+  const cycle = `${cycling === 0 ? 'None' : cycling} of ${countOf(all, 'loop')} ${cycling > 1 ? 'cycle' : 'cycles'}`;
+  if (first === undefined) return `${cycle}; nothing stands out to be looked at first.`;
+  return `${cycle}. Look first at ${first.loop}.`;
+}
+
+/** Why a loop stands where it stands: its cause, its dead band where there is one, and who cycles with it. */
+export function inOneLine({ reasons }: RankedLoop, assessment: Assessment, group: LoopGroup | null): string {
+  const { loop, stiction } = assessment;
+  const parts = [reasons[0] ?? ''];
+  if (stiction !== null) parts.push(`S is ${withInterval(stiction.S)}.`);
+  if (group !== null) parts.push(sharedWords(loop, group));
+  return parts.join(' ');
+}
+
+function sharedWords(loop: string, { loops, likelySource }: LoopGroup): string {
+  const others = countOf(loops.length - 1, 'other loop');
+  if (likelySource === loop) return `Likely shakes ${others}.`;
+  if (likelySource !== null) return `Likely shaken by ${likelySource}.`;
+  return `Shares its cycle with ${others}; the source cannot be told.`;
+}
+
+export function groupSentence({ period, loops, likelySource }: LoopGroup): string {
+  const source = likelySource === null ? 'The source cannot be told.' : `Likely source: ${likelySource}.`;
+  return `${loops.join(', ')} share a cycle of ${duration(period)}. ${source}`;
+}
+
+function countOf(count: number, what: string): string {
+  return `${count} ${what}${count === 1 ? '' : 's'}`;
+}
