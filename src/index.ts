@@ -90,6 +90,12 @@ export { fitFigure } from './figures/fit-figure';
 export { misfitFigure } from './figures/misfit-figure';
 export { phaseFigure } from './figures/phase-figure';
 export { stictionOverTimeFigure } from './figures/stiction-over-time-figure';
+export { strokeFrictionFigure } from './figures/stroke-friction-figure';
+export { strokePressureFigure } from './figures/stroke-pressure-figure';
+export { testLoopFigure } from './figures/test-loop-figure';
+export { testPlanFigure } from './figures/test-plan-figure';
+export { testResponseFigure } from './figures/test-response-figure';
+export { testTrendFigure } from './figures/test-trend-figure';
 export { travelFigure } from './figures/travel-figure';
 export { trendFigure } from './figures/trend-figure';
 export { valveLoopFigure } from './figures/valve-loop-figure';
@@ -124,6 +130,7 @@ export {
   showSetUp,
   showTable,
 } from './notebook/show';
+export { showValveTest, showValveTestPlan } from './notebook/show-valve-test';
 export {
   cycleTable,
   estimateTable,
@@ -133,6 +140,7 @@ export {
   provenanceTable,
   slipTable,
 } from './notebook/tables';
+export { frictionLawTable, frictionTable, planTable, stepTable } from './notebook/valve-test-tables';
 export type { Cycle, SingleCycle } from './oscillation/cycle';
 export { findCycle } from './oscillation/find-cycle';
 export { type LoopOptions, type LoopRun, simulateLoop } from './process/closed-loop';

@@ -2,6 +2,7 @@
 import type { Findings } from '../assessment/findings';
 import { withInterval } from '../assessment/make-answer-card';
 import { fitCaveats } from './caveats';
+import { dimension } from './dimension';
 import type { Figure } from './figure';
 import { axis, axisTitle, makeFigure, panelName } from './layout';
 import { fontSize, lineWidth, palette } from './palette';
@@ -101,20 +102,6 @@ export function valveLoopFigure(findings: Findings): Figure | null {
     width: 460,
     height: 460,
   });
-}
-
-/** A dimension line with an arrow head at either end; `heads` are the ways they point, degrees clockwise from up. */
-function dimension(x: readonly number[], y: readonly number[], heads: readonly number[]): object {
-  return {
-    type: 'scatter',
-    mode: 'lines+markers',
-    x: plain(x),
-    y: plain(y),
-    line: { color: palette.ink, width: 1.4 },
-    marker: { symbol: 'arrow', angle: heads, size: 9, color: palette.ink, opacity: 1 },
-    hoverinfo: 'skip',
-    showlegend: false,
-  };
 }
 
 function label(x: number, y: number, name: string, value: string, xanchor: string, yanchor: string): object {

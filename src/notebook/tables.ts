@@ -4,7 +4,7 @@ import type { Estimate } from '../estimate/stiction-fit';
 import type { Table } from '../report/table';
 
 /** A table from rows with the same keys. */
-function tableFrom<Key extends string>(
+export function tableFrom<Key extends string>(
   title: string,
   names: readonly Key[],
   rows: readonly Readonly<Record<Key, string | number | boolean | null>>[],
