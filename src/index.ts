@@ -72,6 +72,11 @@ export {
   type ValveTestFindings,
 } from './field-test/read-valve-test';
 export { readingCard } from './field-test/reading-card';
+export {
+  type SimulatedStroke,
+  type SimulateStrokeOptions,
+  simulateStroke,
+} from './field-test/simulate-stroke';
 export type { TestCard } from './field-test/test-card';
 export { type ReadTestOptions, readTestRecord, type TestRecord } from './field-test/test-record';
 export type {
@@ -130,7 +135,7 @@ export {
   showSetUp,
   showTable,
 } from './notebook/show';
-export { showValveTest, showValveTestPlan } from './notebook/show-valve-test';
+export { showValveTest, showValveTestCautions, showValveTestPlan } from './notebook/show-valve-test';
 export {
   cycleTable,
   estimateTable,
@@ -140,7 +145,14 @@ export {
   provenanceTable,
   slipTable,
 } from './notebook/tables';
-export { frictionLawTable, frictionTable, planTable, stepTable } from './notebook/valve-test-tables';
+export {
+  frictionLawTable,
+  frictionTable,
+  planTable,
+  stepTable,
+  testFileTable,
+  testTable,
+} from './notebook/valve-test-tables';
 export type { Cycle, SingleCycle } from './oscillation/cycle';
 export { findCycle } from './oscillation/find-cycle';
 export { type LoopOptions, type LoopRun, simulateLoop } from './process/closed-loop';

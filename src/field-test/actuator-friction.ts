@@ -39,6 +39,8 @@ export interface ActuatorFriction {
   readonly curve: FrictionCurve | null;
   /** The spring's line: pressure = offset + slope x travel. */
   readonly line: SpringLine;
+  /** Rated travel as stated, m; null when not. */
+  readonly stroke: number | null;
   /** 1 where more pressure gives more travel, -1 where it gives less. */
   readonly sense: 1 | -1;
   readonly notes: readonly Note[];
@@ -183,6 +185,7 @@ export function actuatorFriction(
     standing: amount(standing),
     curve,
     line: { offset: plain.offset, slope: plain.slope, slopeError: plain.slopeError },
+    stroke: length,
     sense,
     notes: own,
   };

@@ -8,8 +8,14 @@ import { fontSize, lineWidth, palette } from './palette';
 import { extent, padded, plain, short } from './plain-numbers';
 import { thin } from './thin';
 
-/** null for a hold, and where nothing was watched. */
-export function testLoopFigure(findings: ValveTestFindings): Figure | null {
+/**
+ * @param simulated travel of a simulated stem, %, to draw over the measured one
+ * @returns null for a hold, and where nothing was watched
+ */
+export function testLoopFigure(
+  findings: ValveTestFindings,
+  simulated: Float64Array | null = null,
+): Figure | null {
   const { record, reading, step, stroke } = findings;
   if (!step && !stroke) return null;
   const watched = record.travel ?? record.pv;
@@ -30,6 +36,17 @@ export function testLoopFigure(findings: ValveTestFindings): Figure | null {
       hovertemplate: '%{y:.4g} at %{x:.4g} %<extra></extra>',
     },
   ];
+  if (simulated) {
+    data.push({
+      type: 'scatter',
+      mode: 'lines',
+      name: 'simulated',
+      x: plain(drive, indices),
+      y: plain(simulated, indices),
+      line: { color: palette.model, width: lineWidth.thin },
+      hoverinfo: 'skip',
+    });
+  }
   const annotations: object[] = [panelName(what, 'y')];
   const name = (at: number, level: number, text: string, yanchor: string): object => ({
     x: at,
@@ -98,7 +115,7 @@ export function testLoopFigure(findings: ValveTestFindings): Figure | null {
   const sentence = read.join('; ');
   const lag = stroke?.lag ? ' The command is drawn behind the lag of the actuator.' : '';
   return makeFigure({
-    id: `test-loop-${reading.kind}`,
+    id: `test-loop-${reading.kind}${simulated ? '-simulated' : ''}`,
     title: `${record.loop}: ${record.travel ? 'travel' : 'PV'} against command`,
     caption: `${sentence === '' ? 'Nothing was resolved.' : `${sentence[0]!.toUpperCase()}${sentence.slice(1)}.`}${lag}`,
     alt: `${record.travel ? 'Measured travel' : 'PV'} of ${record.loop} against the command from ${short(x.low)} to ${short(x.high)} %: dead band ${reading.deadBand ? withInterval(reading.deadBand) : 'not resolved'}, resolution ${reading.resolution ? withInterval(reading.resolution) : 'not resolved'}.`,
@@ -109,7 +126,7 @@ export function testLoopFigure(findings: ValveTestFindings): Figure | null {
       xaxis: axis({ title: axisTitle('command, % of span'), range: padded(x.low, x.high, 0.06, 0.06) }),
       yaxis: axis({ range: padded(y.low, y.high, 0.12, 0.14) }),
     },
-    legend: false,
+    legend: simulated !== null,
     width: 480,
     height: 460,
   });

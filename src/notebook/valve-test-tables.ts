@@ -1,4 +1,5 @@
 /** Plans and readings of valve tests as tables, with units in the column names. */
+import { withInterval } from '../assessment/make-answer-card';
 import type { Estimate } from '../estimate/stiction-fit';
 import type { ValveTestFindings } from '../field-test/read-valve-test';
 import type { ValveTestPlan } from '../field-test/valve-test-plan';
@@ -28,9 +29,43 @@ export function planTable(plan: ValveTestPlan): Table {
   return tableFrom('Every move, as proposed and not released', names, rows);
 }
 
+/** One row a test: what each of several tests says. */
+export function testTable(tests: readonly ValveTestFindings[]): Table {
+  const text = (one: Estimate | null): string => (one ? withInterval(one) : 'not resolved');
+  const rows = tests.map(({ reading, record, hold }) => ({
+    test: reading.kind,
+    record: record.source,
+    'what it says': hold
+      ? `the cycle ${{ died: 'died', stayed: 'stayed', 'not-decided': 'neither died nor stayed' }[hold.outcome]}`
+      : `dead band ${text(reading.deadBand)}`,
+    resolution: hold ? null : text(reading.resolution),
+  }));
+  return tableFrom(
+    'The tests side by side, with 90 % intervals',
+    ['test', 'record', 'what it says', 'resolution'],
+    rows,
+  );
+}
+
+/** The records of tests, with their fingerprints. */
+export function testFileTable(tests: readonly ValveTestFindings[]): Table {
+  const rows = tests.map(({ record }) => ({
+    record: record.source,
+    'first sample': record.start,
+    samples: record.op.length,
+    'seconds between': record.samplePeriod,
+    'SHA-256': record.sha256,
+  }));
+  return tableFrom(
+    'Records of tests',
+    ['record', 'first sample', 'samples', 'seconds between', 'SHA-256'],
+    rows,
+  );
+}
+
 /** Every step of a step test: whether it moved the valve, by how much, and how fast. */
 export function stepTable({ reading }: ValveTestFindings): Table {
-  const value = (one: Estimate | null): number | null => one && one.value;
+  const value = (one: Estimate | null): number | null => one?.value ?? null;
   const rows = reading.steps.map(
     ({ time, from, to, reversal, moved, change, deadTime, T63, T86, overshoot, note }) => ({
       'at, s': time,
