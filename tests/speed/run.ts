@@ -1,6 +1,7 @@
 /**
  * Measures how fast the program is: `npm run speed -- [--records N] [--repeats N] [--lengths N,N,...] [--json FILE]`,
- * or `npm run speed -- --audit [--audit-loops N] [--audit-samples N]` for the audit of a unit alone (20 minutes or so).
+ * or `npm run speed -- --audit [--audit-loops N] [--audit-samples N]` for the audit of a unit alone (20 minutes or so),
+ * or `npm run speed -- --export [--megabytes 2000]` for a large wide export alone; it takes its size of disk and half as much again.
  *
  * Stage 1 against a search over the same candidates in plain C and NumPy, and the whole assessment of loops of growing
  * length, each in a fresh process. Prints tables and writes JSON. Times mean something only on a quiet machine.
@@ -15,6 +16,7 @@ import { wholeOption } from '../command-options';
 import { percent, textTable } from '../text-table';
 import type { AssessmentTime } from './assessment-time';
 import { type AuditTime, timeAudit } from './audit-time';
+import { measureExport, printExport } from './export-time';
 import { compileRival, numpyRival, type Rival } from './rivals';
 import { compareOn, longRecords, middle, type RecordResult, SAMPLES } from './stage-one';
 
@@ -32,9 +34,17 @@ async function measure(): Promise<void> {
       audit: { type: 'boolean', default: false },
       'audit-loops': { type: 'string', default: '1000' },
       'audit-samples': { type: 'string', default: '7200' },
+      export: { type: 'boolean', default: false },
+      megabytes: { type: 'string', default: '2000' },
       json: { type: 'string' },
     },
   });
+  if (values.export) {
+    const time = await measureExport(1e6 * wholeOption('megabytes', values.megabytes));
+    say(printExport(time));
+    write(values.json ?? inCache('export.json'), { export: time });
+    return;
+  }
   if (values.audit) {
     const loops = wholeOption('audit-loops', values['audit-loops']);
     const audit = await timeAudit(loops, wholeOption('audit-samples', values['audit-samples']));

@@ -12,7 +12,7 @@ import type { Batch, ExportReader, OnProgress, ReadThrough, Wanted } from './exp
 import { bytesOf } from './file-bytes';
 
 /** Bytes read at a time. The end of lines is judged on the first megabyte, as it is for a file that is read whole. */
-const chunkBytes = 1 << 21;
+const chunkBytes = 1 << 20;
 /** Lines that the header and the separator are looked for in; more than are judged, as some may be blank. */
 const firstLines = 2 * judged;
 /** A row longer than this is a quotation mark that was never closed, or no text at all (own choice). */
