@@ -5,6 +5,8 @@ import { join } from 'node:path';
 import { cautions } from '../assessment/cautions';
 import { refuseUnknownOptions, UnwritableOutput, WrongUse } from '../errors';
 import type { ReadLoopOptions } from '../record/read-loop';
+import { wallClock } from '../record/wall-clock';
+import { seededRandom } from '../signal/random';
 import { version } from '../version';
 import { type AssembleOptions, assembleAudit } from './assemble-audit';
 import type { Audit, AuditPart, FinishedLoop } from './audit';
@@ -51,7 +53,10 @@ export interface RunOptions {
    * taken away at the end, so that nothing can be continued.
    */
   readonly folder?: string;
-  /** Continue the journal in `folder`: what is there is not done again, but loops that failed or whose file changed. Default false. */
+  /**
+   * Continue the journal in `folder`, if there is one: what it holds is not done again, except loops that failed or whose
+   * file was changed. Default false: a journal that is there is refused.
+   */
   readonly resume?: boolean;
   /** Threads, of which each assesses one loop at a time; 0 for the calling thread. Default: one for each core. */
   readonly workers?: number;
@@ -123,6 +128,9 @@ export async function finishLoops(
   if (!(Number.isInteger(workers) && workers >= 0)) {
     throw new WrongUse(`The option "workers" is a whole number from 0 on. Received ${workers}.`);
   }
+  // Told now, and not of each loop.
+  seededRandom(seed);
+  if (reading.zone !== undefined) wallClock(reading.zone);
   if (resume && folder === undefined) {
     throw new WrongUse('Only an audit with a folder of its own can be resumed. State the option "folder".');
   }

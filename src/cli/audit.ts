@@ -68,7 +68,6 @@ export async function audit(words: readonly string[], output: Output): Promise<v
   if (folder === resolve(source)) {
     throw new WrongUse(`The results of an audit cannot lie among its loops. Name another folder with --out.`);
   }
-  prepareFolder(folder);
   if (jsonFile) prepareFolder(dirname(jsonFile));
 
   const say = (line: string): unknown => output.stderr.write(`${line}\n`);
