@@ -28,7 +28,7 @@ export interface CauseInput {
  * Probability of a sticking valve from which it is accused, and below which it is cleared, with a cycle and without
  * one; in between the record does not decide. Own choice, set on simulated loops for one false accusation in fifty.
  */
-const accuseFrom = 0.9;
+const accuseFrom = 0.88;
 const clearBelow = { cycling: 0.2, hunting: 0.4 };
 /** Highest confidence that is ever said. */
 const surest = 0.95;
