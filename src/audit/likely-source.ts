@@ -19,17 +19,16 @@ export interface LikelySource {
 const sticks: readonly Verdict[] = ['stiction', 'lost-motion'];
 /** Rows of the evidence that tell a nonlinear cycle from a linear one, without asking where it is made. */
 const nonlinearityRows: readonly string[] = ['surrogate test', 'bicoherence', 'odd harmonics'];
-/** So many of them must say so before nonlinearity alone points at a loop (own choice). */
-const fewestNonlinearRows = 2;
 /** A loop is first when the others began at least this many cycles later (own choice: half a cycle leaves the order open). */
 const cyclesAhead = 1;
 
 /**
  * In this order: a loop whose valve was found sticking; where several were, the one that cycled first; without any, the
- * one loop with tight tuning; without that, the one loop whose cause is open and whose cycle is clearly nonlinear
- * (nonlinearity is strongest near the source and weaker the further a process filters it: Thornhill 2005, IEEE Trans.
- * Control Syst. Technol. 13:434-443). A loop that is not the one that cycled first is never named. What is left is said
- * to be open. Phase names nothing: it is told for the reader.
+ * one loop with tight tuning; without that, the loop that cycled first while its cause is open. A loop that was not the
+ * first, where that is known, is never named. What is left is said to be open. Nonlinearity and phase are told for the
+ * reader and name nothing: a cycle is most nonlinear near its source and less so the further processes filter it
+ * (Thornhill 2005, IEEE Trans. Control Syst. Technol. 13:434-443), but a noisy source shows it less than a quiet
+ * neighbour.
  *
  * @param loops that share a cycle, by tag
  */
@@ -37,8 +36,8 @@ export function likelySource(loops: readonly CyclingLoop[]): LikelySource {
   const first = firstInTime(loops);
   const choice = chosen(loops, first);
   const names = (which: readonly CyclingLoop[]): string => which.map(({ result }) => result.loop).join(', ');
-  const reasons = [choice.why, strongestNonlinearity(loops), orderInTime(loops, first)];
   const { source } = choice;
+  const reasons = [choice.why, strongestNonlinearity(loops, source), orderInTime(loops, first)];
   if (source === null) return { source: null, reasons };
   const victims = loops.filter((loop) => loop !== source);
   const accused = victims.filter(({ result }) => sticks.includes(result.cause.verdict));
@@ -97,21 +96,15 @@ function chosen(loops: readonly CyclingLoop[], first: CyclingLoop | null): Choic
       why: `The source cannot be told: ${tight.length} of them show signs of tight tuning (${named(tight)}), and coupled loops can cycle together.`,
     };
   }
-  const open = loops.filter(
-    ({ result }) => result.cause.verdict === 'cannot-tell' && nonlinearRows(result) >= fewestNonlinearRows,
-  );
-  if (open.length === 1) {
-    return unlessLater(
-      open[0]!,
-      `${open[0]!.result.loop} is the likely source, by its shape alone: no cause was found in any of them, and only its cycle is clearly nonlinear.`,
-    );
+  if (first?.result.cause.verdict === 'cannot-tell') {
+    return {
+      source: first,
+      why: `${first.result.loop} is the likely source, by time alone: no cause was found in any of them, and it cycled before the others.`,
+    };
   }
   return {
     source: null,
-    why:
-      open.length > 1
-        ? `The source cannot be told: no cause was found in any of them, and the cycles of several are clearly nonlinear (${named(open)}).`
-        : 'The source cannot be told: none of them shows a sticking valve, tight tuning or a clearly nonlinear cycle. A source outside these loops is suspected: equipment, a loop that is not in this audit, or one whose record allows no verdict.',
+    why: 'The source cannot be told: none of them shows a sticking valve or tight tuning. A source outside these loops is suspected: equipment, a loop that is not in this audit, or one whose record allows no verdict.',
   };
 }
 
@@ -136,7 +129,7 @@ function surrogateValue({ evidence }: Assessment): number | null {
 }
 
 /** The most nonlinear cycle by the surrogate test, where it could be run on two loops at least. */
-function strongestNonlinearity(loops: readonly CyclingLoop[]): string {
+function strongestNonlinearity(loops: readonly CyclingLoop[], source: CyclingLoop | null): string {
   const values = loops
     .flatMap(({ result }) => {
       const value = surrogateValue(result);
@@ -152,7 +145,11 @@ function strongestNonlinearity(loops: readonly CyclingLoop[]): string {
   }
   return (
     `Nonlinearity is strongest in ${most.loop} (surrogate test ${most.value.toFixed(1)}, above 1 is nonlinear; ` +
-    `${most.rows} of ${nonlinearityRows.length} tests say so), then in ${next.loop} (${next.value.toFixed(1)}): it tends to be strongest near the source.`
+    `${most.rows} of ${nonlinearityRows.length} tests say so), then in ${next.loop} (${next.value.toFixed(1)}): it tends to be strongest near the source${
+      source === null || source.result.loop === most.loop
+        ? ''
+        : ', so this speaks for another loop than the one named'
+    }.`
   );
 }
 
