@@ -17,6 +17,9 @@ export type { Findings } from './assessment/findings';
 export { answerCard } from './assessment/make-answer-card';
 export type { Audit, AuditPart, FailedLoop, FinishedLoop, LoopGroup, RankedLoop } from './audit/audit';
 export { hasFailed } from './audit/audit';
+export { type AuditCard, auditCard } from './audit/audit-card';
+export { auditCsv } from './audit/audit-csv';
+export { type AuditFindings, auditFindings, type RankedFindings } from './audit/audit-findings';
 export {
   type AuditOptions,
   type AuditProgress,
@@ -58,11 +61,12 @@ export type {
   ValveTest,
 } from './estimate/stiction-fit';
 export type { ActuatorFriction, FrictionAmount } from './field-test/actuator-friction';
-export type {
-  FittedLaw,
-  FrictionCurve,
-  FrictionCurvePoint,
-  FrictionLawName,
+export {
+  type FittedLaw,
+  type FrictionCurve,
+  type FrictionCurvePoint,
+  type FrictionLawName,
+  stemPoints,
 } from './field-test/friction-curve';
 export { planCard } from './field-test/plan-card';
 export { planValveTest } from './field-test/plan-valve-test';
@@ -93,6 +97,7 @@ export { evidenceFigure } from './figures/evidence-figure';
 export type { Figure } from './figures/figure';
 export { fitFigure } from './figures/fit-figure';
 export { misfitFigure } from './figures/misfit-figure';
+export { periodMapFigure } from './figures/period-map-figure';
 export { phaseFigure } from './figures/phase-figure';
 export { stictionOverTimeFigure } from './figures/stiction-over-time-figure';
 export { strokeFrictionFigure } from './figures/stroke-friction-figure';
@@ -122,6 +127,14 @@ export type {
 } from './forecast/forecast';
 export { type ControllerSetting, type ForecastOptions, forecastCycle } from './forecast/forecast-cycle';
 export { type FrictionInForce, type FrictionOptions, frictionInForce } from './forecast/friction-in-force';
+export {
+  auditNoteTable,
+  auditProvenanceTable,
+  failedTable,
+  rankingRuleTable,
+  rankingTable,
+  recordTable,
+} from './notebook/audit-tables';
 export { canMakeDataFrames, dataFrame } from './notebook/data-frame';
 export { demoFile } from './notebook/demo-file';
 export {
@@ -135,6 +148,7 @@ export {
   showSetUp,
   showTable,
 } from './notebook/show';
+export { showAuditAnswer, showGroups, showRanking } from './notebook/show-audit';
 export { showValveTest, showValveTestCautions, showValveTestPlan } from './notebook/show-valve-test';
 export {
   cycleTable,

@@ -4,7 +4,8 @@ import type { AnswerCard, Decision } from './answer-card';
 import type { Assessment, Verdict } from './assessment';
 import type { Findings } from './findings';
 
-const decisions: Record<Verdict, Decision> = {
+/** What each cause asks for. */
+export const decisions: Readonly<Record<Verdict, Decision>> = {
   stiction: 'repair',
   'lost-motion': 'repair',
   'tight-tuning': 'retune',
@@ -30,7 +31,7 @@ export function answerCard(findings: Findings): AnswerCard {
   return {
     loop: assessment.loop,
     decision,
-    decisionLine: decisionLine(decision, assessment),
+    decisionLine: decisionLine(assessment),
     cause: `${causeWords[cause.verdict]}${confidence}.`,
     reasons: cause.reasons,
     ruledOut: cause.ruledOut,
@@ -45,9 +46,9 @@ export function answerCard(findings: Findings): AnswerCard {
   };
 }
 
-function decisionLine(decision: Decision, assessment: Assessment): string {
-  const { loop, severity } = assessment;
-  switch (decision) {
+/** One line that says what to do. */
+export function decisionLine({ loop, cause, severity }: Assessment): string {
+  switch (decisions[cause.verdict]) {
     case 'repair':
       return severity.size === 'small'
         ? `Confirm on site, then plan the check of the final control assembly of ${loop}; the effect is small.`
@@ -140,7 +141,8 @@ function readableTime(iso: string): string {
   return parts ? `${parts[1]} ${parts[2]} UTC` : iso;
 }
 
-function workRequest({ loop, cause, stiction, severity, record, oscillation }: Assessment): string {
+/** A paragraph to copy into a work request; '' when no work is asked for. */
+export function workRequest({ loop, cause, stiction, severity, record, oscillation }: Assessment): string {
   if (cause.verdict !== 'stiction' && cause.verdict !== 'lost-motion') return '';
   const size = stiction
     ? ` The record gives a dead band of ${withInterval(stiction.S)}${stiction.J ? ` and a slip jump of ${withInterval(stiction.J)}` : ''}.`

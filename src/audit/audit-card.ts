@@ -35,10 +35,10 @@ export function auditCard({ loops, groups, ranking, cautions }: Audit): AuditCar
   const told = groups.filter(({ likelySource }) => likelySource !== null).length;
   const lineOf = (one: RankedLoop): string => {
     const group = groups.find((shared) => shared.loops.includes(one.loop)) ?? null;
-    return inOneLine(one, assessed.find(({ loop }) => loop === one.loop)!, group);
+    return inOneLine(assessed.find(({ loop }) => loop === one.loop)!, one.reasons, group);
   };
   return {
-    headline: headline(cycling, loops.length, worth),
+    headline: headline(cycling, assessed.length, failed, worth),
     counts: `${countOf(loops.length, 'loop')}: ${counted.map(([verdict, n]) => `${n} ${verdict}`).join(', ')}.`,
     figures: [
       { label: 'Loops that cycle', value: `${cycling} of ${assessed.length}`, note: 'of those assessed' },
@@ -63,15 +63,19 @@ export function auditCard({ loops, groups, ranking, cautions }: Audit): AuditCar
   };
 }
 
-function headline(cycling: number, all: number, [first]: readonly RankedLoop[]): string {
-  const cycle = `${cycling === 0 ? 'None' : cycling} of ${countOf(all, 'loop')} ${cycling > 1 ? 'cycle' : 'cycles'}`;
+function headline(cycling: number, of: number, failed: number, [first]: readonly RankedLoop[]): string {
+  const all = failed > 0 ? countOf(of, 'assessed loop') : countOf(of, 'loop');
+  const cycle = `${cycling === 0 ? 'None' : cycling} of ${all} ${cycling > 1 ? 'cycle' : 'cycles'}`;
   if (first === undefined) return `${cycle}; nothing stands out to be looked at first.`;
   return `${cycle}. Look first at ${first.loop}.`;
 }
 
 /** Why a loop stands where it stands: its cause, its dead band where there is one, and who cycles with it. */
-export function inOneLine({ reasons }: RankedLoop, assessment: Assessment, group: LoopGroup | null): string {
-  const { loop, stiction } = assessment;
+export function inOneLine(
+  { loop, stiction }: Assessment,
+  reasons: readonly string[],
+  group: LoopGroup | null,
+): string {
   const parts = [reasons[0] ?? ''];
   if (stiction !== null) parts.push(`S is ${withInterval(stiction.S)}.`);
   if (group !== null) parts.push(sharedWords(loop, group));
