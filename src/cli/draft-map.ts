@@ -28,7 +28,7 @@ export async function draftMapTo(source: string, target: string, output: Output)
   const open = map.loops.filter(({ pv, op }) => pv === undefined || op === undefined).length;
   const said = [
     `Map of ${map.loops.length} loops drafted from the names in ${source}${target === '-' ? '' : `: ${path}`}`,
-    `Check it before it is used, ${open > 0 ? `above all the ${open} loops of which PV or OP was left open: ` : ''}the column "comment" says why something was left open.`,
+    `Check it before it is used, ${open > 0 ? `above all ${open === 1 ? 'the one loop' : `the ${open} loops`} of which PV or OP was left open: ` : ''}the column "comment" says why something was left open.`,
     `Then: stickband audit ${source} --map ${target === '-' ? 'MAP.csv' : target}`,
   ];
   if (target === '-') output.stdout.write(mapText(map));

@@ -19,8 +19,8 @@ import { spoolWide, type WholeLoop } from './spool-wide';
 import type { SpooledLoop } from './spooled-loop';
 
 /**
- * Spools the loops of a map. A spool that is there already, of the same export (by its bytes), map and version, is used
- * again; any other is made anew.
+ * Spools the loops of a map. A spool that is there already and has these loops, of the same export (by its bytes) and
+ * version, is used again; any other is made anew.
  *
  * Loops of which the map does not state PV or OP come back too: reading them says so.
  *
@@ -37,10 +37,15 @@ export async function spoolExport(
 ): Promise<SpooledLoop[]> {
   if (map.loops.length === 0) return [];
   const readings = map.loops.map(({ order: _, comment: __, ...reading }) => reading);
-  const print = createHash('sha256').update(JSON.stringify(readings)).digest('hex');
+  const prints = readings.map((reading) =>
+    createHash('sha256').update(JSON.stringify(reading)).digest('hex'),
+  );
   const known = readSpool(folder);
-  const usable = known?.version === version && known.map === print && (await isOf(file, known));
-  const { sha256 } = usable ? known : await makeSpool(file, map, print, folder, onProgress);
+  const usable =
+    known?.version === version &&
+    prints.every((print) => known.loops.includes(print)) &&
+    (await isOf(file, known));
+  const { sha256 } = usable ? known : await makeSpool(file, map, prints, folder, onProgress);
   return map.loops.map(({ order, tag }, i) => ({
     order,
     tag,
@@ -62,7 +67,7 @@ async function isOf(file: string, spool: Spool): Promise<boolean> {
 async function makeSpool(
   file: string,
   map: ExportMap,
-  print: string,
+  prints: readonly string[],
   folder: string,
   onProgress: OnProgress,
 ): Promise<Spool> {
@@ -86,7 +91,7 @@ async function makeSpool(
       const made: Spool = {
         schema: 'stickband/spool/1',
         version,
-        map: print,
+        loops: prints,
         size: statSync(file).size,
         ...passed,
       };

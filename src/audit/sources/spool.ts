@@ -1,5 +1,5 @@
 /** What stands beside the cells of a spooled export: where each column lies, and of which export and map it was made. */
-import { readFileSync, renameSync, rmSync, statSync, writeFileSync } from 'node:fs';
+import { existsSync, readFileSync, renameSync, rmSync, statSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import type { Note } from '../../record/loop-record';
 import type { ColumnPlace } from './cell-file';
@@ -34,9 +34,9 @@ export interface LongSpool {
 
 export interface Spool {
   readonly schema: 'stickband/spool/1';
-  /** Version of stickband, and fingerprints of the map and the export. */
+  /** Version of stickband that made it, and fingerprints of what the map says of each loop and of the export. */
   readonly version: string;
-  readonly map: string;
+  readonly loops: readonly string[];
   readonly sha256: string;
   /** Size of the export and of the file of cells, bytes. */
   readonly size: number;
@@ -72,7 +72,9 @@ export function writeSpool(folder: string, spool: Spool): void {
   renameSync(part, spoolPath(folder));
 }
 
+/** Takes a spool away, whole or not. */
 export function dropSpool(folder: string): void {
+  if (!existsSync(folder)) return;
   for (const path of [spoolPath(folder), `${spoolPath(folder)}.part`, cellsPath(folder)]) {
     rmSync(path, { force: true });
   }
