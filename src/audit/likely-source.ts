@@ -16,7 +16,8 @@ export interface LikelySource {
   readonly reasons: readonly string[];
 }
 
-const sticks: readonly Verdict[] = ['stiction', 'lost-motion'];
+/** Causes that accuse the final control assembly. */
+export const sticks: readonly Verdict[] = ['stiction', 'lost-motion'];
 /** Rows of the evidence that tell a nonlinear cycle from a linear one, without asking where it is made. */
 const nonlinearityRows: readonly string[] = ['surrogate test', 'bicoherence', 'odd harmonics'];
 /** A loop is first when the others began at least this many cycles later (own choice: half a cycle leaves the order open). */
@@ -55,19 +56,23 @@ interface Choice {
 
 function chosen(loops: readonly CyclingLoop[], first: CyclingLoop | null): Choice {
   const named = (which: readonly CyclingLoop[]): string => which.map(({ result }) => result.loop).join(', ');
-  const unlessLater = (source: CyclingLoop, why: string): Choice =>
-    first === null || first === source
-      ? { source, why }
-      : {
-          source: null,
-          why: `The source cannot be told: ${why} But ${first.result.loop} cycled before it.`,
-        };
+  /** @param because a clause in which the loop is called `it` or by its tag */
+  const unlessLater = (source: CyclingLoop, because: (whose: string) => string): Choice => {
+    const { loop } = source.result;
+    if (first === null || first === source) {
+      return { source, why: `The likely source is ${loop}: ${because('its')}.` };
+    }
+    return {
+      source: null,
+      why: `The source cannot be told: ${because(`${loop}'s`)}, but ${first.result.loop} cycled before it.`,
+    };
+  };
   const sticking = loops.filter(({ result }) => sticks.includes(result.cause.verdict));
   if (sticking.length === 1) {
-    const [{ result }] = sticking as [CyclingLoop];
+    const [only] = sticking as [CyclingLoop];
     return unlessLater(
-      sticking[0]!,
-      `${result.loop} is the likely source: it is the only one of them whose final control assembly was found ${found(result)}.`,
+      only,
+      (whose) => `of these loops only ${whose} final control assembly was found ${found(only.result)}`,
     );
   }
   if (sticking.length > 1) {
@@ -75,7 +80,7 @@ function chosen(loops: readonly CyclingLoop[], first: CyclingLoop | null): Choic
     if (first !== null && sticking.includes(first)) {
       return {
         source: first,
-        why: `${first.result.loop} is the likely source: ${all}, and it cycled first.`,
+        why: `The likely source is ${first.result.loop}: ${all}, and it cycled first.`,
       };
     }
     return {
@@ -85,9 +90,11 @@ function chosen(loops: readonly CyclingLoop[], first: CyclingLoop | null): Choic
   }
   const tight = loops.filter(({ result }) => result.cause.verdict === 'tight-tuning');
   if (tight.length === 1) {
+    const [only] = tight as [CyclingLoop];
     return unlessLater(
-      tight[0]!,
-      `${tight[0]!.result.loop} is the likely source: no valve among them was found sticking, and it is the only one with signs of tight tuning (confidence ${confidence(tight[0]!.result)}).`,
+      only,
+      (whose) =>
+        `no valve among them was found sticking, and only ${whose} tuning looks tight (confidence ${confidence(only.result)})`,
     );
   }
   if (tight.length > 1) {
@@ -99,7 +106,7 @@ function chosen(loops: readonly CyclingLoop[], first: CyclingLoop | null): Choic
   if (first?.result.cause.verdict === 'cannot-tell') {
     return {
       source: first,
-      why: `${first.result.loop} is the likely source, by time alone: no cause was found in any of them, and it cycled before the others.`,
+      why: `The likely source is ${first.result.loop}, by time alone: no cause was found in it or the others, and it cycled before them.`,
     };
   }
   return {

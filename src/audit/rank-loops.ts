@@ -4,6 +4,7 @@ import { refuseUnknownOptions, WrongUse } from '../errors';
 import type { FinishedLoop, LoopGroup, RankedLoop } from './audit';
 import { hasFailed } from './audit';
 import { order } from './group-loops';
+import { sticks } from './likely-source';
 import type { LoopSignature } from './signature';
 
 /** The rule as data. All of it is own choice and can be changed. */
@@ -67,7 +68,7 @@ export interface RankOptions {
  *
  * Severity is the weighted mean of those of its parts that are known, each counted up to where it is full: PV swing
  * against its range, PV swing against its own noise, S, reversals a day. A loop that is likely shaken by another one
- * counts at most half of its source. Healthy loops have 0. Loops that could not be assessed are not ranked; they stand
+ * counts at most half of its source, unless it was found sticking itself. Healthy loops have 0. Loops that could not be assessed are not ranked; they stand
  * in the audit's list of loops with their error.
  *
  * @param groups of {@link groupLoops} on the same loops
@@ -82,16 +83,23 @@ export function rankLoops(
   refuseUnknownOptions('rankLoops', options, ['rule']);
   const rule = resolved(options.rule ?? {});
   const groupOf = new Map(groups.flatMap((group) => group.loops.map((loop) => [loop, group] as const)));
+  const accused = new Set(
+    loops.flatMap(({ result }) =>
+      !hasFailed(result) && sticks.includes(result.cause.verdict) ? [result.loop] : [],
+    ),
+  );
   const own = loops.flatMap(({ result, signature }) =>
     hasFailed(result) || signature === null
       ? []
-      : [scored(result, signature, groupOf.get(result.loop) ?? null, rule)],
+      : [scored(result, signature, groupOf.get(result.loop) ?? null, accused, rule)],
   );
   const scores = new Map(own.map(({ loop, score }) => [loop, score]));
   return own
     .map(({ loop, score, reasons }): RankedLoop => {
       const source = groupOf.get(loop)?.likelySource ?? null;
-      if (source === null || source === loop) return { loop, score: rounded(score), reasons };
+      if (source === null || source === loop || accused.has(loop)) {
+        return { loop, score: rounded(score), reasons };
+      }
       const most = rule.shakenShare * (scores.get(source) ?? 0);
       const words = `Likely shaken by ${source}: look there first. It counts at most ${rule.shakenShare} of the score of its source.`;
       return { loop, score: rounded(Math.min(score, most)), reasons: [...reasons, words] };
@@ -105,6 +113,7 @@ function scored(
   result: Assessment,
   signature: LoopSignature,
   group: LoopGroup | null,
+  accused: ReadonlySet<string>,
   rule: RankingRule,
 ): RankedLoop {
   const { cause, loop } = result;
@@ -119,18 +128,21 @@ function scored(
     weights += of;
   }
   const severity = weights > 0 ? sum / weights : 0;
-  const shaken = group?.likelySource === loop ? group.loops.filter((other) => other !== loop) : [];
+  const source = group?.likelySource ?? null;
+  const others = (group?.loops ?? []).filter((other) => other !== loop);
+  const shakes = source === loop ? others.filter((other) => !accused.has(other)) : [];
   const score =
     100 *
     weight *
     confidence *
     (rule.leastSeverity + (1 - rule.leastSeverity) * severity) *
-    (1 + rule.perShakenLoop * Math.min(shaken.length, rule.mostShakenLoops));
+    (1 + rule.perShakenLoop * Math.min(shakes.length, rule.mostShakenLoops));
   const reasons = [causeWords(result), ...(weight > 0 ? parts.map(({ words }) => words) : [])];
-  if (shaken.length > 0) reasons.push(`Likely shakes ${shaken.length} more: ${shaken.join(', ')}.`);
-  else if (group !== null && group.likelySource === null) {
-    const others = group.loops.filter((other) => other !== loop);
+  if (shakes.length > 0) reasons.push(`Likely shakes ${shakes.length} more: ${shakes.join(', ')}.`);
+  else if (others.length > 0 && source === null) {
     reasons.push(`Shares its cycle with ${others.join(', ')}; which of them is the source cannot be told.`);
+  } else if (source !== null && source !== loop && accused.has(loop)) {
+    reasons.push(`Shares its cycle with ${source}, which is the likelier source.`);
   }
   return { loop, score, reasons };
 }
