@@ -193,7 +193,7 @@ export function makeValveTests(): ValveTestFile[] {
   return [
     {
       name: '31-FC-104-hold-test',
-      story: 'Ten minutes in automatic, then in manual at constant OP: the cycle dies.',
+      story: 'Twenty-two minutes in automatic, then ten in manual at constant OP: the cycle dies.',
       csv: csv(hold, '2026-03-10T09:00:00Z', ['op', 'pv', 'mode']),
     },
     {

@@ -1,5 +1,5 @@
 /** What to agree before a valve is tested, and when to stop: common practice, no source. Site procedures go before it. */
-import type { Range } from '../record/loop-record';
+import type { PlannedTest } from './valve-test-plan';
 
 export const checkList: readonly string[] = [
   'Permit to work and whatever else the site asks for; this proposal is released by authorised people, or it is not made.',
@@ -16,10 +16,11 @@ export const checkList: readonly string[] = [
   'Bumpless return: set point brought to PV, OP tracked, then automatic; then watched for some periods.',
 ];
 
-export function stopSentences(stop: Range, unit: string): string[] {
+export function stopSentences(tests: readonly PlannedTest[], unit: string): string[] {
   const at = (value: number): string => `${Number(value.toPrecision(4))} ${unit}`.trim();
+  const ends = tests.map(({ kind, stopPv }) => `${kind} test: ${at(stopPv.low)} or ${at(stopPv.high)}`);
   return [
-    `PV reaches ${at(stop.low)} or ${at(stop.high)}, or moves faster than expected: return to automatic at once, do not wait for the limit.`,
+    `PV reaches its stop values (${ends.join('; ')}), or moves faster than expected: return to automatic at once, do not wait for the limit.`,
     'An alarm comes, another loop is upset, or the load changes.',
     'The stem does not move after steps that add up to more than planned: stop, do not push on. A stem that lets go all at once is a hazard.',
     'Contact between valve and panel is lost, or anybody calls stop.',

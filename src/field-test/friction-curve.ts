@@ -32,7 +32,7 @@ export interface FittedLaw {
 }
 
 export interface FrictionCurve {
-  /** The first is at rest; `measuredFriction` of the valve room takes them as they are. */
+  /** The first is at rest. `measuredFriction` of the valve room takes them as they are; see also {@link stemPoints}. */
   readonly points: readonly FrictionCurvePoint[];
   /** The plainest law that does as well as any. */
   readonly chosen: FittedLaw;
@@ -68,6 +68,8 @@ const least = 0.004;
  */
 const clearlyBetter = 6;
 const level90 = 1.645;
+/** Points of the law between rest and the slowest stroke. */
+const pointsOfLaw = 12;
 
 /** null, with a note, for fewer than five steady speeds with enough samples in both directions. */
 export function frictionCurve(input: FrictionCurveInput, notes: Note[]): FrictionCurve | null {
@@ -103,6 +105,26 @@ export function frictionCurve(input: FrictionCurveInput, notes: Note[]): Frictio
     });
   }
   return { points, chosen, laws };
+}
+
+/**
+ * Points for `measuredFriction`: the measured ones and, between rest and the slowest stroke, where nothing was measured,
+ * some of the law that was taken. Straight lines from rest to the slowest stroke would make the stem stick far too long.
+ */
+export function stemPoints({ points, chosen }: FrictionCurve): FrictionPoint[] {
+  const [rest, slowest, ...faster] = points;
+  const between = Array.from({ length: pointsOfLaw }, (_, i) => {
+    const speed = slowest!.speed * 10 ** (-2 * (1 - i / pointsOfLaw));
+    return { speed, force: forceAt(chosen, speed) };
+  });
+  return [rest!, ...between, slowest!, ...faster].map(({ speed, force }) => ({ speed, force }));
+}
+
+/** Friction, N, of a fitted law at a speed, m/s. */
+export function forceAt({ static: rest, coulomb, viscous, stribeckSpeed }: FittedLaw, speed: number): number {
+  if (speed === 0) return rest;
+  const excess = stribeckSpeed === null ? 0 : (rest - coulomb) * Math.exp(-((speed / stribeckSpeed) ** 2));
+  return coulomb + excess + viscous * speed;
 }
 
 interface SpeedPoint {

@@ -81,16 +81,12 @@ export function planValveTest(valve: Findings | TypedValve, limits: ValveTestLim
     const nothing: PlanRefusal = { code: 'nothing-fits', text };
     return { ...plan, tests, refused: [nothing], leftOut, stopWhen: [], notes: [] };
   }
-  const stop = {
-    low: Math.max(...tests.map(({ stopPv }) => stopPv.low)),
-    high: Math.min(...tests.map(({ stopPv }) => stopPv.high)),
-  };
   return {
     ...plan,
     tests,
     refused: [],
     leftOut,
-    stopWhen: stopSentences(stop, basis.pvUnit),
+    stopWhen: stopSentences(tests, basis.pvUnit),
     notes: notesOn(basis),
   };
 }

@@ -2,6 +2,7 @@
 import { refuseUnknownOptions, WrongUse } from '../errors';
 import { measuredFriction } from '../valve/friction-law';
 import { simulateStem } from '../valve/stem';
+import { stemPoints } from './friction-curve';
 import type { ValveTestFindings } from './read-valve-test';
 
 export interface SimulateStrokeOptions {
@@ -39,7 +40,7 @@ export function simulateStroke(
     spring: 1000 * friction.springRate.value,
     // The stem works in % of command; of its travel that is a little more or less.
     stroke: friction.stroke / line.slope,
-    friction: measuredFriction(friction.curve.points),
+    friction: measuredFriction(stemPoints(friction.curve)),
     actuatorLag: stroke.lag ?? 0,
     startTravel: line.offset + line.slope * measured[0]!,
   });

@@ -1,5 +1,5 @@
 /** Friction against the speed of the stem: the measured points with their intervals, and the laws that were tried on them. */
-import type { FittedLaw } from '../field-test/friction-curve';
+import { forceAt } from '../field-test/friction-curve';
 import type { ValveTestFindings } from '../field-test/read-valve-test';
 import type { Figure } from './figure';
 import { axis, axisTitle, makeFigure, panelName } from './layout';
@@ -23,7 +23,7 @@ export function strokeFrictionFigure({ record, friction }: ValveTestFindings): F
       mode: 'lines',
       name: chosen.law,
       x: plain(speeds.map(mm)),
-      y: plain(speeds.map((speed) => forceOf(chosen, speed))),
+      y: plain(speeds.map((speed) => forceAt(chosen, speed))),
       line: { color: palette.model, width: lineWidth.strong },
       hoverinfo: 'skip',
     },
@@ -59,10 +59,4 @@ export function strokeFrictionFigure({ record, friction }: ValveTestFindings): F
     },
     height: 360,
   });
-}
-
-function forceOf({ static: rest, coulomb, viscous, stribeckSpeed }: FittedLaw, speed: number): number {
-  if (speed === 0) return rest;
-  const excess = stribeckSpeed === null ? 0 : (rest - coulomb) * Math.exp(-((speed / stribeckSpeed) ** 2));
-  return coulomb + excess + viscous * speed;
 }

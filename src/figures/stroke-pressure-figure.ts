@@ -5,7 +5,7 @@ import { dimension } from './dimension';
 import type { Figure } from './figure';
 import { axis, axisTitle, makeFigure, panelName } from './layout';
 import { fontSize, lineWidth, palette } from './palette';
-import { extent, plain, short } from './plain-numbers';
+import { extent, padded, plain, short } from './plain-numbers';
 import { thin } from './thin';
 
 /** null without pressure, or where the strokes do not show spring and friction. */
@@ -16,7 +16,7 @@ export function strokePressureFigure({ record, friction }: ValveTestFindings): F
   const indices = thin(pressure, 3000);
   const x = extent(travel);
   const on = (percent: number): number => line.offset + line.slope * percent;
-  const ends = [Math.min(0, x.low), Math.max(100, x.high)];
+  const y = extent(pressure);
   const middle = (x.low + x.high) / 2;
   const bandAt = middle + 0.25 * (x.high - x.low);
   const off = sense * standing.pressure.value;
@@ -34,8 +34,8 @@ export function strokePressureFigure({ record, friction }: ValveTestFindings): F
       type: 'scatter',
       mode: 'lines',
       name: 'spring',
-      x: plain(ends),
-      y: ends.map((percent) => Number(on(percent).toPrecision(6))),
+      x: plain([x.low, x.high]),
+      y: [x.low, x.high].map((percent) => Number(on(percent).toPrecision(6))),
       line: { color: palette.model, width: lineWidth.strong },
       hoverinfo: 'skip',
     },
@@ -54,22 +54,13 @@ export function strokePressureFigure({ record, friction }: ValveTestFindings): F
       [on(bandAt) - sense * moving.pressure.value, on(bandAt) + off],
       sense > 0 ? [180, 0] : [0, 180],
     ),
-    {
-      type: 'scatter',
-      mode: 'markers',
-      name: 'bench set',
-      x: [0, 100],
-      y: [benchSet.closed.value, benchSet.open.value].map((value) => Number(value.toPrecision(6))),
-      marker: { symbol: 'square', size: 9, color: palette.paper, line: { color: palette.ink, width: 1.4 } },
-      hovertemplate: '%{y:.4g}<extra>bench set</extra>',
-    },
   ];
   const band = frictionBand.force ?? frictionBand.pressure;
   const rate = springRate ? `${withInterval(springRate)}` : withInterval(springRange);
   return makeFigure({
     id: 'stroke-pressure',
-    title: `${record.loop}: actuator pressure against travel`,
-    caption: `The spring's line lies midway between the ways up and down; its ends at 0 and 100 % of travel are the bench set, process forces included. Friction band ${withInterval(band)}: from moving one way to breaking loose the other way. Spring ${rate}.`,
+    title: `${record.loop}: pressure against travel`,
+    caption: `The spring's line lies midway between the ways up and down; it would meet 0 and 100 % of travel at ${short(benchSet.closed.value)} and ${short(benchSet.open.value)} ${record.pressureUnit}, the bench set with process forces in it. Friction band ${withInterval(band)}: from moving one way to breaking loose the other way. Spring ${rate}.`,
     alt: `Actuator pressure of ${record.loop} against travel from ${short(x.low)} to ${short(x.high)} %: spring ${rate}, friction band ${withInterval(band)}.`,
     caveats: [],
     data,
@@ -88,7 +79,10 @@ export function strokePressureFigure({ record, friction }: ValveTestFindings): F
         bgcolor: 'rgba(255,255,255,0.8)',
       },
     ],
-    layout: { xaxis: axis({ title: axisTitle('travel, %') }), yaxis: axis({}) },
+    layout: {
+      xaxis: axis({ title: axisTitle('travel, %'), range: padded(x.low, x.high, 0.04, 0.04) }),
+      yaxis: axis({ range: padded(y.low, y.high, 0.08, 0.12) }),
+    },
     height: 420,
   });
 }

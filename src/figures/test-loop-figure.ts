@@ -48,12 +48,14 @@ export function testLoopFigure(
     });
   }
   const annotations: object[] = [panelName(what, 'y')];
+  // A name near an edge grows away from it.
   const name = (at: number, level: number, text: string, yanchor: string): object => ({
     x: at,
     y: level,
     xref: 'x',
     yref: 'y',
-    xanchor: 'center',
+    xanchor:
+      at > x.low + 0.6 * (x.high - x.low) ? 'right' : at < x.low + 0.4 * (x.high - x.low) ? 'left' : 'center',
     yanchor,
     showarrow: false,
     text,
@@ -79,7 +81,7 @@ export function testLoopFigure(
     const upper = first.travel > (y.low + y.high) / 2;
     annotations.push(
       name(
-        (first.from + first.to) / 2,
+        upper ? Math.max(first.from, first.to) : Math.min(first.from, first.to),
         first.travel + (upper ? 0.03 : -0.03) * (y.high - y.low),
         `<b>dead band</b> ${withInterval({ ...reading.deadBand, unit: '%' })}`,
         upper ? 'bottom' : 'top',

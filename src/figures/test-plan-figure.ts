@@ -59,8 +59,8 @@ export function testPlanFigure(plan: ValveTestPlan, test: PlannedTest): Figure {
   ];
   return makeFigure({
     id: `test-plan-${test.kind}`,
-    title: `${loop}: ${test.title}`,
-    caption: `OP as proposed above, inside the band that was stated; below, where PV is expected to stay and where the test is stopped. ${duration(seconds)} in manual.`,
+    title: `${loop}: proposed ${test.kind} test`,
+    caption: `${test.title}. OP as proposed above, inside the band that was stated; below, where PV is expected to stay and where the test is stopped. ${duration(seconds)} in manual.`,
     alt: `Proposal for ${loop}: ${test.title}; PV expected within ${short(test.expectedPv.low)} to ${short(test.expectedPv.high)} ${pvUnit}, stop at ${short(test.stopPv.low)} or ${short(test.stopPv.high)} ${pvUnit}.`,
     caveats: [`${plan.standing[0]!.toUpperCase()}${plan.standing.slice(1)}. Authorised people decide.`],
     data,
