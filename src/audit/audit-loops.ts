@@ -58,6 +58,8 @@ export interface RunOptions {
    * file was changed. Default false: a journal that is there is refused.
    */
   readonly resume?: boolean;
+  /** Whether loops that failed are done again when resuming. Default true; false shows a finished audit as it is. */
+  readonly retry?: boolean;
   /** Threads, of which each assesses one loop at a time; 0 for the calling thread. Default: one for each core. */
   readonly workers?: number;
   /** Seed of everything random. Default 1. */
@@ -68,7 +70,7 @@ export interface RunOptions {
 
 export interface AuditOptions extends RunOptions, AssembleOptions {}
 
-const optionNames = ['map', 'reading', 'folder', 'resume', 'workers', 'seed', 'onProgress'] as const;
+const optionNames = ['map', 'reading', 'folder', 'resume', 'retry', 'workers', 'seed', 'onProgress'] as const;
 
 /** A finished run over all loops, or over those of one shard, before anything is made of them. */
 export interface FinishedRun extends AuditIdentity {
@@ -122,7 +124,15 @@ export async function finishLoops(
   options: RunOptions = {},
 ): Promise<FinishedRun> {
   refuseUnknownOptions('finishLoops', options, optionNames);
-  const { map = null, reading = {}, folder, resume = false, seed = 1, onProgress = () => {} } = options;
+  const {
+    map = null,
+    reading = {},
+    folder,
+    resume = false,
+    retry = true,
+    seed = 1,
+    onProgress = () => {},
+  } = options;
   const { workers = availableParallelism() } = options;
   refuseUnknownOptions('The option "reading" of finishLoops', reading, readingForAll);
   if (!(Number.isInteger(workers) && workers >= 0)) {
@@ -149,7 +159,7 @@ export async function finishLoops(
     try {
       const loops = found.loops.filter(({ tag }) => shard === null || isInShard(tag, shard));
       const spoolFolder = join(workFolder, journalName(shard).replace(/\.jsonl$/, '-export'));
-      await finish(loops, found, journal, { workers, seed, spoolFolder, onProgress });
+      await finish(loops, found, journal, { workers, seed, retry, spoolFolder, onProgress });
       return { ...identity, loops: allOf(loops, journal), leftOut: found.leftOut };
     } finally {
       journal.close();
@@ -162,6 +172,7 @@ export async function finishLoops(
 interface Run {
   readonly workers: number;
   readonly seed: number;
+  readonly retry: boolean;
   /** Where the columns of an export lie while its loops are assessed. */
   readonly spoolFolder: string;
   readonly onProgress: (progress: AuditProgress) => void;
@@ -172,13 +183,13 @@ async function finish(
   loops: readonly ListedLoop[],
   { map }: FoundLoops,
   journal: Journal,
-  { workers, seed, spoolFolder, onProgress }: Run,
+  { workers, seed, retry, spoolFolder, onProgress }: Run,
 ): Promise<void> {
   // Taken before anything is read: a file that changes meanwhile is read again when the audit is resumed.
   const stamps = new Map(loops.map(({ order, path }) => [order, stampOf(path)]));
   const left = loops.filter(({ order }) => {
     const entry = journal.entries.get(order);
-    return entry === undefined || entry.failed || entry.stamp !== stamps.get(order);
+    return entry === undefined || (retry && entry.failed) || entry.stamp !== stamps.get(order);
   });
   if (left.length === 0) return;
   const counts = { finished: loops.length - left.length, loops: loops.length, failed: 0 };

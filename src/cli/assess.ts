@@ -86,7 +86,7 @@ export async function assess(words: readonly string[], output: Output): Promise<
         folder,
         name: resultName(file, record.loop),
         title: `${record.loop}: what makes this loop cycle?`,
-        file,
+        files: { file },
         parameters: { reading, assessing },
         onProgress: (done) => progress('rendering the notebook', share + (1 - share) * done),
       });

@@ -17,8 +17,8 @@ export interface Rendering {
   readonly name: string;
   /** Title of the page. */
   readonly title: string;
-  /** Data file; reaches the notebook as its parameter `file`, relative to the folder it works in. */
-  readonly file: string;
+  /** Files and folders that the notebook needs; each reaches it as a parameter, relative to the folder it works in. */
+  readonly files: Readonly<Record<string, string>>;
   /** Further parameters of the notebook. */
   readonly parameters: Readonly<Record<string, unknown>>;
   readonly onProgress?: (share: number) => void;
@@ -35,8 +35,14 @@ export async function renderNotebook(template: string, rendering: Rendering): Pr
   prepareFolder(rendering.folder);
   const source: Notebook = JSON.parse(readFileSync(template, 'utf8'));
   const workingFolder = importsThisPackage(rendering.folder) ? rendering.folder : dirname(template);
-  const file = relative(realpathSync(workingFolder), realpathSync(rendering.file)).split(sep).join('/');
-  const executed = await runNotebook(withParameters(source, { file, ...rendering.parameters }), {
+  const from = realpathSync(workingFolder);
+  const files = Object.fromEntries(
+    Object.entries(rendering.files).map(([name, path]) => [
+      name,
+      relative(from, realpathSync(path)).split(sep).join('/') || '.',
+    ]),
+  );
+  const executed = await runNotebook(withParameters(source, { ...files, ...rendering.parameters }), {
     jupyter: rendering.jupyter,
     workingFolder,
     onProgress: rendering.onProgress,
