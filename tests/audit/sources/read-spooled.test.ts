@@ -51,7 +51,7 @@ const fileOf = (text: string | Uint8Array, ending = 'csv'): string => {
 };
 
 const spooled = async (file: string, loops: Omit<MappedLoop, 'order'>[]): Promise<LoopRecord[]> => {
-  const work = join(folder, `work-${files}`);
+  const work = mkdtempSync(join(folder, 'work-'));
   const found = await spoolExport(file, { loops: loops.map((loop, order) => ({ order, ...loop })) }, work);
   return found.map((loop) => readSpooled(structuredClone(loop)));
 };
@@ -134,19 +134,30 @@ describe('a wide export gives the records that readLoop gives of single files', 
     expect(records[0]!.sha256).toBe(createHash('sha256').update(readFileSync(file)).digest('hex'));
   });
 
-  it('in Latin-1, which shows only far below the header', async () => {
-    const late = changed('.MODE', (cell, i) => (i > 650 ? 'AUTO' : cell));
-    const modes = {
+  it('in Latin-1, which shows only when a megabyte has been read', async () => {
+    const others = {
       '31-FC-104.MODE': stamps.map((_, i) => (i < 40 ? 'MAN' : 'AUTO')),
-      'r\u00e9serve': stamps.map((_, i) => (i < 690 ? '' : '\u00e9tat')),
+      remark: stamps.map((_, i) => (i < 690 ? '-'.repeat(3000) : 'entleert \u00fcber Nacht')),
     };
-    const encode = (columns: Columns): Buffer =>
-      Buffer.from(textOf(late({ ...columns, ...modes })), 'latin1');
-    const stated = { ...map[0]!, mode: '31-FC-104.MODE' };
-    const [record] = await spooled(fileOf(encode(wide())), [stated]);
-    const single = readLoop(fileOf(encode({ time: stamps, ...loops[0]!.columns })), stated);
+    const encode = (columns: Columns): Buffer => Buffer.from(textOf({ ...columns, ...others }), 'latin1');
+    const stated = { ...map[0]!, mode: '31-FC-104.MODE', travel: 'remark' };
+    const [record] = await spooled(fileOf(encode(wide())), [{ ...stated, travel: undefined }]);
+    const single = readLoop(fileOf(encode({ time: stamps, ...loops[0]!.columns })), {
+      ...stated,
+      travel: undefined,
+    });
     expect(facts(record!)).toEqual(facts(single));
     expect(record!.logging.manualShare).toBeCloseTo(40 / rows, 12);
+    // The word itself comes out as it was written.
+    await expect(spooled(fileOf(encode(wide())), [stated])).rejects.toThrow(
+      /the text "-{40}" where a number/,
+    );
+    const clean = {
+      ...others,
+      remark: stamps.map((_, i) => (i < 690 ? ' '.repeat(3000) : 'entleert \u00fcber Nacht')),
+    };
+    const file = fileOf(Buffer.from(textOf({ ...wide(), ...clean }), 'latin1'));
+    await expect(spooled(file, [stated])).rejects.toThrow(/Row 692 .* the text "entleert \u00fcber Nacht"/);
   });
 
   it('with a time, quality, mode and travel of their own', async () => {
