@@ -41,6 +41,12 @@ export {
 } from './audit/rank-loops';
 export type { Shard } from './audit/shard';
 export type { CycleClock, LoopPicture, LoopSignature } from './audit/signature';
+export { draftMap } from './audit/sources/draft-map';
+export type { ExportMap, MappedLoop } from './audit/sources/export-map';
+export { mapText, readMap } from './audit/sources/read-map';
+export { readSpooled } from './audit/sources/read-spooled';
+export { spoolExport } from './audit/sources/spool-export';
+export type { SpooledLoop } from './audit/sources/spooled-loop';
 export type { Change } from './audit/stiction-change';
 export {
   type StictionTrack,
