@@ -87,7 +87,8 @@ function sharedReason(loops: readonly CyclingLoop[], period: number): string {
       const both = cyclesOfBoth(a, b)!;
       spectral = Math.min(spectral, spectralLikeness(a.spectrum, b.spectrum, both.slowest));
       kept = Math.min(kept, keepingStep(both.a, both.b, fewestCommonCycles)?.kept ?? 0);
-      common = Math.min(common, (Math.min(a.to, b.to) - Math.max(a.from, b.from)) / period);
+      const since = Math.max(both.a.began ?? a.from, both.b.began ?? b.from);
+      common = Math.min(common, (Math.min(a.to, b.to) - since) / period);
     }
   });
   const cycles = Math.max(0, Math.floor(common));

@@ -13,7 +13,7 @@ export interface CycleClock {
   readonly signal: 'PV' | 'OP';
   /** s; of that signal. */
   readonly period: number;
-  /** s since 1970, rising: where each `every`-th cycle begins. */
+  /** s since 1970, rising: where each `every`-th cycle begins, from `began` on. */
   readonly starts: readonly number[];
   readonly every: number;
   /**
@@ -61,7 +61,11 @@ const quietCycles = 3;
 const quietShare = 0.35;
 
 /** The signature of an assessed loop. Numbers are rounded to what grouping and drawing can tell apart. */
-export function loopSignature({ record, opCycle, pvCycle }: Findings): LoopSignature {
+export function loopSignature({
+  record,
+  opCycle,
+  pvCycle,
+}: Pick<Findings, 'record' | 'opCycle' | 'pvCycle'>): LoopSignature {
   const { pv, op, samplePeriod, pvUnit, pvRange } = record;
   const from = secondsSince1970(record.start);
   const signal = !pvCycle.present && opCycle.present ? 'OP' : 'PV';
@@ -85,10 +89,11 @@ function secondsSince1970(time: string): number {
 }
 
 function clockOf({ period, single }: Cycle, signal: 'PV' | 'OP', from: number): CycleClock {
-  const all = single.length === 0 ? [] : [...single.map((one) => one.from), single.at(-1)!.to];
-  const every = Math.max(1, Math.ceil(all.length / mostStarts));
-  const starts = all.filter((_, i) => i % every === 0).map((time) => round(from + time, 100));
   const began = beginning(single);
+  const all = single.length === 0 ? [] : [...single.map((one) => one.from), single.at(-1)!.to];
+  const swinging = all.filter((time) => began === null || time >= began);
+  const every = Math.max(1, Math.ceil(swinging.length / mostStarts));
+  const starts = swinging.filter((_, i) => i % every === 0).map((time) => round(from + time, 100));
   return {
     signal,
     period: digits(period!, 6),
