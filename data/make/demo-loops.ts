@@ -7,12 +7,18 @@ import { seededRandom } from '../../src/signal/random';
 import { textbookStem } from '../../src/valve/stem';
 import type { ExportedLoop } from './export';
 
-export type DemoName = '31-FC-104' | '31-FC-104-with-travel' | '31-PC-122' | '31-FC-131' | '31-LC-140';
+export type DemoName =
+  | '31-FC-104'
+  | '31-FC-104-with-travel'
+  | '31-FC-104-after-repair'
+  | '31-PC-122'
+  | '31-FC-131'
+  | '31-LC-140';
 
 export interface DemoLoop extends ExportedLoop {
   readonly name: DemoName;
   /** What makes it cycle, as the program names causes. */
-  readonly cause: 'stiction' | 'tight-tuning' | 'outside-disturbance' | 'lost-motion';
+  readonly cause: 'stiction' | 'tight-tuning' | 'outside-disturbance' | 'lost-motion' | 'not-oscillating';
   /** One sentence on what was simulated. */
   readonly story: string;
   readonly pvUnit: string;
@@ -37,6 +43,21 @@ const stickyFlow = (seed: number): LoopOptions => ({
   pvStep: 0.02,
   opStep: 0.01,
 });
+
+/** Set points of the record after the repair: s since its start, PV units. Uneven, so that they make no cycle. */
+const movesAfterRepair: readonly (readonly [number, number])[] = [
+  [300, 64],
+  [420, 65],
+  [660, 64.5],
+  [1320, 64.9],
+  [1440, 63.5],
+  [1740, 62],
+  [1920, 62.8],
+  [2460, 62.2],
+  [2640, 61.5],
+  [3180, 63],
+  [3300, 63.6],
+];
 
 export const DEMO_LOOPS: readonly DemoLoop[] = [
   {
@@ -68,6 +89,27 @@ export const DEMO_LOOPS: readonly DemoLoop[] = [
     pvDecimals: 2,
     built: { S: 3.4, J: 1.6 },
     loop: stickyFlow,
+  },
+  {
+    name: '31-FC-104-after-repair',
+    tag: '31-FC-104',
+    cause: 'not-oscillating',
+    story:
+      'The same loop after its valve was repacked: same tuning and load, set point moved by the operators eleven times.',
+    pvUnit: 'm3/h',
+    pvRange: { low: 0, high: 120 },
+    samplePeriod: 1,
+    start: '2026-03-26T06:00:00Z',
+    seed: 326,
+    logsTravel: false,
+    pvDecimals: 2,
+    built: { S: 0.12, J: 0.02 },
+    loop: (seed) => ({
+      ...stickyFlow(seed),
+      setPoint: (time) =>
+        movesAfterRepair.reduce((now, [from, to]) => (time >= from ? to : now), time < -1700 ? 60 : 63.5),
+      valve: textbookStem({ S: 0.12, J: 0.02, actuatorLag: 0.3, startOp: 52 }),
+    }),
   },
   {
     name: '31-PC-122',

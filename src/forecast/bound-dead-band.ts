@@ -32,7 +32,7 @@ const fewestMoves = 8;
 const fewestReversals = 4;
 const leastT = 2;
 /** Values of S tried, % of OP span. */
-const tried: readonly number[] = [0.1, 0.15, 0.2, 0.3, 0.4, 0.5, 0.7, 1, 1.4, 2, 2.8, 4, 5.6, 8];
+const tried: readonly number[] = [0.5, 0.7, 1, 1.4, 2, 2.8, 4, 5.6, 8];
 const jumps: readonly number[] = [0, 0.4, 0.8];
 const lagStarts: readonly number[] = [1, 3, 8, 20];
 

@@ -8,6 +8,8 @@ import type { Findings } from '../assessment/findings';
 import { duration, withInterval } from '../assessment/make-answer-card';
 import { refuseUnknownOptions, WrongUse } from '../errors';
 import type { ValveTestReading } from '../field-test/valve-test-reading';
+import { findCycle } from '../oscillation/find-cycle';
+import type { LoopRecord } from '../record/loop-record';
 import { mean } from '../signal/statistics';
 import { boundDeadBand, type DeadBandBound } from './bound-dead-band';
 import { swingWithin } from './cycle-measure';
@@ -129,10 +131,11 @@ export function compareAssessments(
     );
   }
 
-  const left = swingWithin(after.record.pv, period, after.record.samplePeriod);
-  const share = left / before.assessment.severity.pvSwing;
+  const moved = ({ record }: Findings): number => swingWithin(deviation(record), period, record.samplePeriod);
+  const share = moved(after) / moved(before);
+  const cycling = stillCycles(after);
   const percent = `${Math.round(100 * share)} %`;
-  if (!after.assessment.oscillation.present && share <= mostLeft) {
+  if (!cycling && share <= mostLeft) {
     const gone = `The cycle is gone: within one of its former periods (${duration(period)}) PV now moves by ${percent} of the former swing.`;
     const moves = boundFromMoves(before, after, period);
     const bound = deadBandBound(after, valveTest, moves);
@@ -164,10 +167,27 @@ export function compareAssessments(
     }
     return answered('repaired', [gone, `${said}; up to ${acceptedDeadBand} % is accepted.`], bound, moves);
   }
-  return answered(...stillMoving(before, after, share));
+  return answered(...stillMoving(before, after, share, cycling));
 }
 
-function stillMoving(before: Findings, after: Findings, share: number): [RepairAnswer, string[]] {
+/** PV from its set point, so that moves of the set point do not count; PV itself where none was logged. */
+function deviation({ sp, pv }: LoopRecord): Float64Array {
+  return sp === null ? pv : pv.map((value, k) => value - sp[k]!);
+}
+
+/** A cycle that is seen in PV and OP but not in PV's distance from a moving set point follows the set point. */
+function stillCycles({ assessment, record }: Findings): boolean {
+  if (!assessment.oscillation.present) return false;
+  const moves = record.sp?.some((value, k) => k > 0 && value !== record.sp![k - 1]) ?? false;
+  return !moves || findCycle(deviation(record), record.samplePeriod).present;
+}
+
+function stillMoving(
+  before: Findings,
+  after: Findings,
+  share: number,
+  cycling: boolean,
+): [RepairAnswer, string[]] {
   const swing = `PV swings by ${Math.round(100 * share)} % of what it did.`;
   const S = { before: before.stiction.fit?.S ?? null, after: after.stiction.fit?.S ?? null };
   const lower = S.before !== null && S.after !== null && S.after.high < S.before.low;
@@ -177,9 +197,7 @@ function stillMoving(before: Findings, after: Findings, share: number): [RepairA
       ? 'The dead band was not told in both records.'
       : `The dead band was ${withInterval(S.before)} and is ${withInterval(S.after)}.`;
   const reasons = [
-    after.assessment.oscillation.present
-      ? 'The loop still cycles.'
-      : 'No regular cycle is left, but PV still moves.',
+    cycling ? 'The loop still cycles.' : 'No regular cycle is left, but PV still moves.',
     swing,
     band,
   ];
@@ -204,17 +222,13 @@ function deadBandBound(
   test: ValveTestReading | null,
   moves: DeadBandBound,
 ): RepairComparison['deadBandBelow'] {
-  const found: { value: number; from: string }[] = [];
-  if (test !== null && test.kind !== 'hold') {
-    const tested = test.deadBand ?? test.S;
-    if (tested !== null) found.push({ value: tested.high, from: `The ${test.kind} test` });
-  }
-  if (after.stiction.fit !== null) {
-    found.push({ value: after.stiction.fit.S.high, from: 'The fit of the later record' });
-  }
-  if (moves.below !== null) found.push({ value: moves.below, from: 'Its answer to set-point moves' });
-  // A test on site goes before what is read from operating data.
-  return found[0] ?? null;
+  // A test on site goes before logged travel, and that before what set-point moves show in PV.
+  const tested = test === null || test.kind === 'hold' ? null : (test.deadBand ?? test.S);
+  if (tested !== null) return { value: tested.high, from: `The ${test!.kind} test` };
+  const { fit } = after.stiction;
+  if (fit?.travelSource === 'measured') return { value: fit.S.high, from: 'The logged travel' };
+  if (moves.below === null) return null;
+  return { value: Math.max(moves.below, fit?.S.high ?? 0), from: 'The answer of PV to set-point moves' };
 }
 
 function boundFromMoves(before: Findings, after: Findings, period: number): DeadBandBound {
@@ -319,10 +333,9 @@ function resultRows(before: Findings, after: Findings): ComparedRow[] {
     row(
       `PV swing${pvUnit === '' ? '' : `, ${pvUnit}`}`,
       ({ record }) =>
-        period === null ? 'not told' : short(swingWithin(record.pv, period, record.samplePeriod)),
-      'Within one of the former periods, median.',
+        period === null ? 'not told' : short(swingWithin(deviation(record), period, record.samplePeriod)),
+      'From its set point, within one of the former periods, median.',
     ),
-    row('Valve reversals a day', ({ assessment }) => String(Math.round(assessment.severity.reversalsPerDay))),
     row('Dead band S', ({ stiction }) =>
       stiction.fit === null ? 'no number' : withInterval(stiction.fit.S),
     ),

@@ -18,7 +18,7 @@ import type { CycleForecast, Forecast, ForecastResult, MapPlace, SettingForecast
 import { balanceCycle } from './harmonic-balance';
 import { type Change, type LoopModel, type ModelSource, runModel } from './loop-model';
 import { retuningInWords } from './retuning-in-words';
-import { drawRivals, type RivalLoop, simulatedCycles } from './rival-loops';
+import { drawRivals, jumpAt, type RivalLoop, simulatedCycles } from './rival-loops';
 
 export interface ControllerSetting {
   /** % of OP span per PV unit, above 0. */
@@ -114,7 +114,9 @@ export function forecastCycle(findings: Findings, options: ForecastOptions = {})
     pvSwing: measured.pvSwing,
   };
   const rivals = drawRivals(source, findings, measured, { count: resolved.rivals, seed: resolved.seed });
-  const near = rivals.filter(({ miss }) => miss <= Math.log(1 + resolved.largestMiss)).slice(0, mostUsed);
+  const near = rivals
+    .filter(({ miss, model }) => miss <= Math.log(1 + resolved.largestMiss) && (marginOf(model, {}) ?? 2) > 1)
+    .slice(0, mostUsed);
   if (near.length === 0) return refuse(missInWords(rivals[0] ?? null, measured, resolved.largestMiss));
 
   const notes: Note[] = [];
@@ -232,7 +234,11 @@ const leastTurn = 0.05;
 /** A cycle has so many times the turns that the load's drift alone asks of a valve with this dead band (own choice). */
 const overDrift = 2;
 
-function tryOut({ model, seed }: RivalLoop, change: Change, period: number): Outcome {
+function tryOut(rival: RivalLoop, asked: Change, period: number): Outcome {
+  const { model, seed } = rival;
+  const speed = asked.form === 'P' ? 1 : (asked.gain ?? 1) / (asked.integralTime ?? 1);
+  const valve = { ...model.valve, J: jumpAt(rival, speed) };
+  const change: Change = { valve, ...asked };
   for (const cycles of [simulatedCycles, longer * simulatedCycles]) {
     const length = { period, cycles, seed };
     const run = runModel(model, change, length);
@@ -256,7 +262,7 @@ function turnsByItself(
   run: LoopRun,
   length: { readonly period: number; readonly cycles: number; readonly seed: number },
 ): boolean {
-  const valve = change.valve === undefined ? model.valve : change.valve;
+  const { valve = null } = change;
   if (valve === null || valve.S === 0) return false;
   const turns = countReversals(run.travel, leastTurn * valve.S).count;
   if (turns < fewestTurns) return false;
@@ -393,8 +399,8 @@ function summed(used: readonly RivalLoop[], record: CycleMeasure, change: Change
   }
   const of = (name: keyof CycleMeasure, error: number, unit: string): Estimate =>
     banded(
-      cycling.map(({ rival, measure }) => measure![name] / rival.now[name]),
-      record[name],
+      cycling.map(({ rival, measure }) => anchored(record, rival, measure!, name)),
+      1,
       error,
       unit,
     );
@@ -406,6 +412,19 @@ function summed(used: readonly RivalLoop[], record: CycleMeasure, change: Change
     opSwing: of('opSwing', modelError.swing, '% of OP span'),
     gainMargin: margin,
   };
+}
+
+/**
+ * A simulated value, drawn half way (in logarithms) to the one that would follow from the record by the simulated ratio
+ * of changed to now: both the simulation and a short record are off by chance.
+ */
+function anchored(
+  record: CycleMeasure,
+  { now }: RivalLoop,
+  measure: CycleMeasure,
+  name: keyof CycleMeasure,
+): number {
+  return measure[name] * Math.sqrt(record[name] / now[name]);
 }
 
 /** Median and 5 and 95 % ends of the values, the ends moved out by the relative error, all times `scale`. */
@@ -431,7 +450,7 @@ function placeOf(best: RivalLoop, record: CycleMeasure, change: Change): MapPlac
   };
   const { cycles, measure } = stable ? tryOut(best, change, record.period) : { cycles: true, measure: null };
   const scaled = (name: keyof CycleMeasure): number | null =>
-    measure === null ? null : (record[name] * measure[name]) / best.now[name];
+    measure === null ? null : anchored(record, best, measure, name);
   return {
     ...place,
     cycles,

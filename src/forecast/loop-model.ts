@@ -16,7 +16,7 @@ import type { Disturbance } from '../process/disturbance';
 import type { LinearProcessOptions } from '../process/linear-process';
 import type { ControllerReading } from '../process/read-controller';
 import type { LoopRecord } from '../record/loop-record';
-import { mean, noiseLevel } from '../signal/statistics';
+import { mean, median, noiseLevel } from '../signal/statistics';
 import { twoParameterValve, type ValveModel } from '../valve/two-parameter';
 import { createTwoParameterValve } from '../valve/two-parameter-steps';
 
@@ -92,7 +92,8 @@ export function modelWith(source: ModelSource, valve: ValveNumbers, findings: Fi
     (lag) => lag > 1e-3 * samplePeriod,
   );
   const gain = (settings.sign * fitted.gain) / (integrating ? samplePeriod : 1);
-  const noise = noiseLevel(pv);
+  const level = Math.min(noiseLevel(pv), noiseLevel(residual));
+  const drift = driftOf(residual, level, period / samplePeriod, samplePeriod, integrating);
   return {
     valve,
     process: {
@@ -105,10 +106,9 @@ export function modelWith(source: ModelSource, valve: ValveNumbers, findings: Fi
     },
     controller: controllerOf(controller, mean(op)),
     scanPeriod: controller.scanPeriod,
-    noise,
-    drift:
-      driftOf(residual, period / samplePeriod, samplePeriod, integrating) /
-      (integrating ? Math.abs(gain) : 1),
+    // The steps of a walk on PV show in the noise level too: a third of their mean square (second differences).
+    noise: integrating ? level : Math.sqrt(Math.max(0, level ** 2 - (drift ** 2 * samplePeriod) / 3)),
+    drift: integrating ? drift / Math.abs(gain) : drift,
     setPoint: record.sp === null ? (controller.constantSetPoint ?? mean(pv)) : mean(record.sp),
     push: source.pvSwing,
   };
@@ -127,25 +127,34 @@ function controllerOf(reading: ControllerReading, bias: number): LoopModel['cont
   };
 }
 
+/** Median size of a standard normal. */
+const normalMedian = 0.6745;
+
 /**
  * Random walk behind the residual: means over whole cycles lose what is left of the cycle in it. The difference of
  * neighbouring means of a walk that gains s per square root of a second has the variance 2/3 s^2 T; the second
  * difference of those of its integral has 11/20 s^2 T^3 (T: length of a cycle, s).
  */
-function driftOf(residual: Float64Array, period: number, samplePeriod: number, integrating: boolean): number {
+function driftOf(
+  residual: Float64Array,
+  noise: number,
+  period: number,
+  samplePeriod: number,
+  integrating: boolean,
+): number {
   const length = Math.max(1, Math.round(period));
   const count = Math.floor(residual.length / length);
   const means = Array.from({ length: count }, (_, i) =>
     mean(residual.subarray(i * length, (i + 1) * length)),
   );
-  let changes = means.slice(1).map((value, i) => value - means[i]!);
-  if (integrating) changes = changes.slice(1).map((value, i) => value - changes[i]!);
+  const once = means.slice(1).map((value, i) => value - means[i]!);
+  const changes = integrating ? once.slice(1).map((value, i) => value - once[i]!) : once;
   if (changes.length < 3) return 0;
-  const sizes = changes.map((change) => Math.abs(change)).sort((a, b) => a - b);
-  // 0.6745: the median size of a standard normal.
-  const spread = sizes[Math.floor(sizes.length / 2)]! / 0.6745;
+  const spread = median(Float64Array.from(changes, Math.abs)) / normalMedian;
+  const ofNoise = ((integrating ? 6 : 2) * noise ** 2) / length;
+  const square = Math.max(0, spread ** 2 - ofNoise);
   const T = length * samplePeriod;
-  return integrating ? spread / Math.sqrt(0.55 * T ** 3) : spread / Math.sqrt((2 / 3) * T);
+  return Math.sqrt(square / (integrating ? (11 / 20) * T ** 3 : (2 / 3) * T));
 }
 
 export interface Change {
