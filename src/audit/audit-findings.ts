@@ -19,6 +19,8 @@ export interface RankedFindings {
   readonly group: LoopGroup | null;
   /** File as its list names it, or its name in the folder. */
   readonly file: string;
+  /** Position in the audit, from 0. */
+  readonly order: number;
 }
 
 export interface AuditFindings {
@@ -41,13 +43,13 @@ export function auditFindings(
   const audit = assembleAudit(loops, provenance, options);
   const groupOf = new Map(audit.groups.flatMap((group) => group.loops.map((loop) => [loop, group] as const)));
   const rankOf = new Map(audit.ranking.map((ranked, i) => [ranked.loop, { ...ranked, place: i + 1 }]));
-  const ranked = loops.flatMap(({ signature, file }, i): RankedFindings[] => {
+  const ranked = loops.flatMap(({ signature, file, order }, i): RankedFindings[] => {
     // The audit may call a loop after its file as well, but keeps the order.
     const assessment = audit.loops[i]!;
     if (hasFailed(assessment) || signature === null) return [];
     const { loop } = assessment;
     const { place, score, reasons } = rankOf.get(loop)!;
-    return [{ place, score, reasons, assessment, signature, group: groupOf.get(loop) ?? null, file }];
+    return [{ place, score, reasons, assessment, signature, group: groupOf.get(loop) ?? null, file, order }];
   });
   return {
     audit,

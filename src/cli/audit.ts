@@ -2,21 +2,26 @@
 import { rmdirSync, rmSync } from 'node:fs';
 import { basename, dirname, extname, join, resolve } from 'node:path';
 import { type FailedLoop, hasFailed } from '../audit/audit';
+import { auditCsv } from '../audit/audit-csv';
+import { auditFindings } from '../audit/audit-findings';
 import {
   type AuditProgress,
-  auditOf,
   type FinishedRun,
   finishLoops,
   journalName,
   partOf,
   type RunOptions,
 } from '../audit/audit-loops';
+import { findLoops } from '../audit/find-loops';
 import type { Shard } from '../audit/shard';
 import { WrongUse } from '../errors';
 import { auditText } from '../report/audit-text';
+import { ensureJupyter } from '../report/jupyter';
 import { defaultOutFolder } from '../report/places';
+import type { Rendered } from '../report/render-notebook';
 import { prepareFolder, writeWhole } from '../report/write-whole';
 import { numberOption, readArguments, stated, wholeOption } from './arguments';
+import { renderAudit } from './audit-pages';
 import { draftMapTo } from './draft-map';
 import { fileName } from './file-name';
 import { auditHelp } from './help';
@@ -40,6 +45,9 @@ const optionTypes = {
   workers: 'string',
   resume: 'boolean',
   shard: 'string',
+  pages: 'string',
+  'no-notebook': 'boolean',
+  install: 'boolean',
   help: 'boolean',
 } as const;
 
@@ -68,9 +76,13 @@ export async function audit(words: readonly string[], output: Output): Promise<v
   if (folder === resolve(source)) {
     throw new WrongUse(`The results of an audit cannot lie among its loops. Name another folder with --out.`);
   }
+  const wantsNotebook = !shard && !values['no-notebook'] && (!jsonAlone || values.out !== undefined);
+  const pages = pagesOption(values, wantsNotebook);
+  const listed = findLoops(source, options.map ?? null, options.reading ?? {}).loops;
   if (jsonFile) prepareFolder(dirname(jsonFile));
 
   const say = (line: string): unknown => output.stderr.write(`${line}\n`);
+  const jupyter = wantsNotebook ? ensureJupyter({ install: values.install, say }) : null;
   const progress = startProgress(output.stderr, 'quiet');
   let run: FinishedRun;
   try {
@@ -85,26 +97,69 @@ export async function audit(words: readonly string[], output: Output): Promise<v
   for (const sentence of run.leftOut) say(sentence);
   sayFailures(run, say);
 
-  const whole = shard ? null : auditOf(run);
-  const json = `${JSON.stringify(whole ?? partOf(run), null, 2)}\n`;
+  const findings = shard ? null : auditFindings(run);
+  const json = `${JSON.stringify(findings?.audit ?? partOf(run), null, 2)}\n`;
   const journal = join(folder, journalName(shard));
   const kept = journal.replace(/jsonl$/, 'json');
-  const written = [...(jsonAlone && values.out === undefined ? [] : [kept]), ...(jsonFile ? [jsonFile] : [])];
-  writeWhole(Object.fromEntries(written.map((path) => [path, json])));
+  const numbers = [...(jsonAlone && values.out === undefined ? [] : [kept]), ...(jsonFile ? [jsonFile] : [])];
+  const sheet = findings && numbers.includes(kept) ? kept.replace(/json$/, 'csv') : null;
+  writeWhole({
+    ...Object.fromEntries(numbers.map((path) => [path, json])),
+    ...(findings && sheet ? { [sheet]: auditCsv(findings) } : {}),
+  });
+  let rendered: Rendered | null = null;
+  if (findings && jupyter) {
+    const rendering = startProgress(output.stderr, 'quiet');
+    try {
+      rendered = await renderAudit({
+        jupyter,
+        folder,
+        name: nameOf(source),
+        source,
+        options,
+        findings,
+        listed,
+        pages,
+        onProgress: rendering,
+      });
+    } finally {
+      rendering.stop();
+    }
+  }
   if (values.out === undefined) {
     // Nobody asked for the folder: with the audit complete, the same command may be given again.
     rmSync(journal);
-    if (written.length === 0) removeIfEmpty(folder);
+    if (numbers.length === 0) removeIfEmpty(folder);
   }
-  const summary = whole
-    ? auditText(whole)
+  const summary = findings
+    ? auditText(findings.audit)
     : `Shard ${run.shard} of ${run.of}: ${run.loops.length} of ${run.allLoops} loops. "stickband merge" puts the shards together.`;
-  const lines = [
-    summary,
-    ...(written.length > 0 ? ['', ...written.map((path) => `Numbers (JSON): ${path}`)] : []),
+  const made = [
+    ...(rendered ? [`Page to share:  ${rendered.page}`, `Notebook:       ${rendered.notebook}`] : []),
+    ...(sheet ? [`Table (CSV):    ${sheet}`] : []),
+    ...numbers.map((path) => `Numbers (JSON): ${path}`),
   ];
+  const lines = [summary, ...(made.length > 0 ? ['', ...made] : [])];
   (jsonAlone ? output.stderr : output.stdout).write(`${lines.join('\n')}\n`);
   if (jsonAlone) output.stdout.write(json);
+}
+
+/** How many loops get a page of their own. */
+function pagesOption({ pages, map }: Given, wantsNotebook: boolean): number {
+  if (pages === undefined) return 0;
+  const count = wholeOption('pages', pages);
+  if (!wantsNotebook) {
+    throw new WrongUse(
+      '--pages makes pages that the page of the audit links to, and no such page is made here: not with ' +
+        '--no-notebook, not for a shard, and with --json - only into a folder named with --out.',
+    );
+  }
+  if (map !== undefined) {
+    throw new WrongUse(
+      '--pages needs one file a loop: a folder or a list. Leave it out for an export with a map.',
+    );
+  }
+  return count;
 }
 
 function oneSource(sources: readonly string[]): string {

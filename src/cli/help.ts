@@ -64,9 +64,16 @@ What holds for every file of a folder or list, as for "stickband assess".
   --time-format F --zone Z
 
 How it runs.
-  --out DIR            folder for journal and audit (default: audit-NAME in notebooks/rendered in the repository,
-                       else in stickband-out; the journal there goes when the audit is complete)
-  --json FILE|-        also write the audit as JSON; with "-" stdout holds JSON alone and the rest goes to stderr
+  --out DIR            folder for journal, audit (JSON and CSV), notebook and page (default: audit-NAME in
+                       notebooks/rendered in the repository, else in stickband-out; the journal there goes when
+                       the audit is complete)
+  --json FILE|-        also write the audit as JSON; with "-" stdout holds JSON alone, the rest goes to stderr, and
+                       no notebook is made unless --out is given
+  --no-notebook        neither notebook nor page; a shard has none either
+  --pages N            also render the guided notebook of the first N loops of the ranking, into the folder "loops"
+                       beside the page, which links to them (default 0: the page tells each loop in short;
+                       about ten seconds a loop)
+  --install            set up Jupyter when it is missing: with pip in .venv, or Debian's packages for root
   --resume             continue an audit that was stopped; failed loops and changed files are done again
   --workers N          loops at a time (default: one for each core; 0: without threads)
   --shard I/N          only the loops of shard I of N, by a hash of their tags; "stickband merge" joins the shards

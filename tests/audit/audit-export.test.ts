@@ -96,16 +96,18 @@ describe('stickband audit EXPORT', () => {
   it('drafts a map, and audits with it', async () => {
     const [drafted, out] = [join(folder, 'drafted.csv'), join(folder, 'out')];
     expect((await captured('audit', wide, '--draft-map', drafted)).code).toBe(0);
-    const { code, stdout } = await captured('audit', wide, '--map', drafted, '--workers', '0', '--out', out);
+    const words = ['--workers', '0', '--out', out, '--no-notebook'];
+    const { code, stdout } = await captured('audit', wide, '--map', drafted, ...words);
     expect(code).toBe(0);
     expect(stdout).toMatch(/^5 loops: 5 cannot-tell\./);
-    expect(readdirSync(out).sort()).toEqual(['audit.json', 'audit.jsonl']);
+    expect(readdirSync(out).sort()).toEqual(['audit.csv', 'audit.json', 'audit.jsonl']);
   });
 
   it('refuses a map with mistakes before anything is assessed', async () => {
     const wrong = await map('wrong.csv', (drafted) => drafted.replace('31-TC-103.OP', '31-TC-103.OUT'));
     const out = join(folder, 'refused');
-    const { code, stderr } = await captured('audit', wide, '--map', wrong, '--workers', '0', '--out', out);
+    const words = ['--workers', '0', '--out', out, '--no-notebook'];
+    const { code, stderr } = await captured('audit', wide, '--map', wrong, ...words);
     expect(code).toBe(2);
     expect(stderr).toMatch(/31-TC-103\.OUT/);
     expect(existsSync(join(out, 'audit.json'))).toBe(false);

@@ -25,7 +25,7 @@ async function run(
   words: readonly string[],
   killed: () => Promise<void> = () => new Promise(() => {}),
 ): Promise<boolean> {
-  const child = spawn(process.execPath, [program, 'audit', ...words], {
+  const child = spawn(process.execPath, [program, 'audit', ...words, '--no-notebook'], {
     stdio: ['ignore', 'ignore', 'pipe'],
   });
   let said = '';

@@ -11,8 +11,9 @@ import { smallLoop, writeSmallLoops } from '../audit/small-loops';
 import { scratchFolder } from '../scratch-folder';
 import { type Captured, captured } from './captured';
 
-/** Without threads: these run the built program, and are tested with it. */
-const audit = (...words: string[]): Promise<Captured> => captured('audit', ...words, '--workers', '0');
+/** Without threads and notebook: these run the built program, and are tested with it. */
+const audit = (...words: string[]): Promise<Captured> =>
+  captured('audit', ...words, '--workers', '0', '--no-notebook');
 
 const plain = (text: string): string => text.replace(/\s+/g, ' ');
 
@@ -27,7 +28,7 @@ describe('stickband audit', () => {
     const json = join(out, '..', 'also.json');
     const { code, stdout, stderr } = await audit(unit, '--out', out, '--json', json);
     expect(code).toBe(0);
-    expect(readdirSync(out).sort()).toEqual(['audit.json', 'audit.jsonl']);
+    expect(readdirSync(out).sort()).toEqual(['audit.csv', 'audit.json', 'audit.jsonl']);
     expect(readFileSync(json, 'utf8')).toBe(readFileSync(join(out, 'audit.json'), 'utf8'));
     expect(stdout).toMatch(/^5 loops: 4 cannot-tell, 1 failed\.\n/);
     for (const caution of cautions) expect(plain(stdout)).toContain(caution);

@@ -89,7 +89,16 @@ async function follow(
   out: string,
   workers: number,
 ): Promise<{ seconds: number; looks: Look[] }> {
-  const words = [join('dist', 'cli', 'main.js'), 'audit', unit, '--out', out, '--workers', String(workers)];
+  const words = [
+    join('dist', 'cli', 'main.js'),
+    'audit',
+    unit,
+    '--out',
+    out,
+    '--workers',
+    String(workers),
+    '--no-notebook',
+  ];
   const start = performance.now();
   const child = spawn(process.execPath, words, { stdio: ['ignore', 'ignore', 'inherit'] });
   const looks: Look[] = [];

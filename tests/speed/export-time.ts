@@ -86,7 +86,17 @@ function auditOf(
 ): Promise<{ seconds: number; memory: number }> {
   return new Promise((answered, failed) => {
     const start = performance.now();
-    const words = ['audit', file, '--map', map, '--out', folder, '--workers', String(workers)];
+    const words = [
+      'audit',
+      file,
+      '--map',
+      map,
+      '--out',
+      folder,
+      '--workers',
+      String(workers),
+      '--no-notebook',
+    ];
     const child = fork(join(root, 'dist/cli/main.js'), words, {
       execArgv: ['--require', join(__dirname, 'tell-memory.cjs')],
       stdio: ['ignore', 'ignore', 'inherit', 'ipc'],
