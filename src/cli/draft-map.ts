@@ -2,7 +2,7 @@
 import { existsSync } from 'node:fs';
 import { dirname, resolve } from 'node:path';
 import { draftMap } from '../audit/sources/draft-map';
-import type { ExportMap } from '../audit/sources/export-map';
+import { type ExportMap, isReadable } from '../audit/sources/export-map';
 import { mapText } from '../audit/sources/read-map';
 import { WrongUse } from '../errors';
 import { prepareFolder, writeWhole } from '../report/write-whole';
@@ -25,7 +25,7 @@ export async function draftMapTo(source: string, target: string, output: Output)
   } finally {
     progress.stop();
   }
-  const open = map.loops.filter(({ pv, op }) => pv === undefined || op === undefined).length;
+  const open = map.loops.filter((loop) => !isReadable(loop)).length;
   const said = [
     `Map of ${map.loops.length} loops drafted from the names in ${source}${target === '-' ? '' : `: ${path}`}`,
     `Check it before it is used, ${open > 0 ? `above all ${open === 1 ? 'the one loop' : `the ${open} loops`} of which PV or OP was left open: ` : ''}the column "comment" says why something was left open.`,

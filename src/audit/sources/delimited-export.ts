@@ -22,14 +22,14 @@ const longestRow = 1 << 26;
 export class OtherEncoding extends Error {}
 
 /**
- * Encodings in which the file may be read, the one to try first, first.
+ * Encodings in which the file may be read, in the order in which to try them.
  *
  * @throws UnreadableInput for a file that is empty or no text
  */
-export function textEncodings(path: string, what: string): readonly string[] {
+export function textEncodings(path: string, what: string): readonly [string, string?] {
   const start = bytesOf(path, 0, 65_536);
   if (start.length === 0) throw new UnreadableInput(`${what} is empty.`);
-  return encodingsOf(start, what).filter((encoding) => encoding !== undefined);
+  return encodingsOf(start, what);
 }
 
 /**
@@ -41,7 +41,7 @@ export function openDelimited(path: string, encoding: string, what: string): Exp
   const text = firstText(path, encoding, what);
   if (text.trim() === '') throw new UnreadableInput(`${what} is empty.`);
   const delimiter = separatorOf(text);
-  const { data } = parse<string[]>(text, { delimiter });
+  const { data } = parse<string[]>(text, { delimiter, preview: firstLines });
   const header = headerOf(data, what);
 
   const read = async (

@@ -30,7 +30,9 @@ export interface ExportMap {
   readonly loops: readonly MappedLoop[];
 }
 
-/** Whether the map states enough of a loop to read it. */
-export function isReadable({ pv, op }: MappedLoop): boolean {
-  return pv !== undefined && op !== undefined;
+/** A loop of which the map states enough to read it. */
+export type ReadableLoop = MappedLoop & { readonly pv: string; readonly op: string };
+
+export function isReadable(loop: MappedLoop): loop is ReadableLoop {
+  return loop.pv !== undefined && loop.op !== undefined;
 }

@@ -27,15 +27,13 @@ export async function withExport<Value>(
   const start = magicOf(path).toString('latin1');
   if (start === 'PAR1') return work(await openParquet(path, what));
   if (start.startsWith('PK') || start === '\u00d0\u00cf\u0011\u00e0') return work(openWorkbook(path, what));
-  const encodings = textEncodings(path, what);
-  for (const encoding of encodings) {
-    try {
-      return await work(openDelimited(path, encoding, what));
-    } catch (error) {
-      if (!(error instanceof OtherEncoding) || encoding === encodings[encodings.length - 1]) throw error;
-    }
+  const [encoding, other] = textEncodings(path, what);
+  try {
+    return await work(openDelimited(path, encoding, what));
+  } catch (error) {
+    if (!(error instanceof OtherEncoding) || other === undefined) throw error;
+    return work(openDelimited(path, other, what));
   }
-  throw new UnreadableInput(`${what} is not a text file.`);
 }
 
 function magicOf(path: string): Buffer {

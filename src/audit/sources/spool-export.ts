@@ -9,13 +9,13 @@ import { UnreadableInput, UnwritableOutput } from '../../errors';
 import { longColumns } from '../../record/series';
 import { version } from '../../version';
 import { CellFileWriter } from './cell-file';
-import type { ExportMap } from './export-map';
+import { type ExportMap, isReadable } from './export-map';
 import type { OnProgress } from './export-reader';
 import { sha256Of } from './file-bytes';
 import { calledExport, withExport } from './open-export';
 import { cellsPath, dropSpool, readSpool, type Spool, writeSpool } from './spool';
 import { spoolLong } from './spool-long';
-import { spoolWide, type WholeLoop } from './spool-wide';
+import { spoolWide } from './spool-wide';
 import type { SpooledLoop } from './spooled-loop';
 
 /**
@@ -71,7 +71,7 @@ async function makeSpool(
   folder: string,
   onProgress: OnProgress,
 ): Promise<Spool> {
-  const loops = map.loops.filter((loop): loop is WholeLoop => loop.pv !== undefined && loop.op !== undefined);
+  const loops = map.loops.filter(isReadable);
   if (loops.length === 0) {
     throw new UnreadableInput('The map states PV and OP of no loop. Fill in its columns "pv" and "op".');
   }

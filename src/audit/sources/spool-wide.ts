@@ -5,17 +5,14 @@ import { type Cells, findName, type Series, type SeriesSet, seriesOf } from '../
 import { listed, type Table } from '../../record/table';
 import { readTimes } from '../../record/time';
 import type { CellColumnWriter, CellFileWriter } from './cell-file';
-import type { MappedLoop } from './export-map';
+import type { ReadableLoop } from './export-map';
 import type { ExportReader, OnProgress } from './export-reader';
 import type { Spool } from './spool';
-
-/** A loop of which the map states PV and OP. */
-export type WholeLoop = MappedLoop & { readonly pv: string; readonly op: string };
 
 /** What it takes to go through an export once. */
 export interface Pass {
   readonly reader: ExportReader;
-  readonly loops: readonly WholeLoop[];
+  readonly loops: readonly ReadableLoop[];
   /** How the export is called in messages. */
   readonly what: string;
   /** Makes the file of cells for so many columns. */
@@ -106,7 +103,7 @@ function neededColumns({ reader, loops, what }: Pass): Map<number, boolean> {
 }
 
 function refuseWrongNames(
-  loops: readonly WholeLoop[],
+  loops: readonly ReadableLoop[],
   sets: ReadonlyMap<string | undefined, SeriesSet>,
   what: string,
 ): void {
