@@ -49,7 +49,8 @@ interface Fit {
  * test of the best F over all moments, which needs no distribution and pays for the search. The interval of the moment
  * is the set of moments that F does not reject at 0.9 against the best one, widened to whole windows.
  *
- * Limits: windows count as independent; two changes are told as one.
+ * Limits: windows count as independent; two changes are told as one. Of fewer than eight windows a step cannot be shown,
+ * only a slope: too many orders of the values look like a step.
  *
  * @param values in the order of time
  * @param seed of the shuffles
