@@ -11,7 +11,7 @@ import type { Note } from '../record/loop-record';
 import { conversion } from '../record/units';
 import { threeDigits } from '../signal/three-digits';
 import { type FrictionCurve, frictionCurve } from './friction-curve';
-import { meanOf } from './means';
+import { meanOf, type ReadingErrors } from './means';
 import { type StrokeFindings, settlingSamples, slowPace } from './read-stroke';
 import { restNoise } from './stem-motion';
 import { type LegLevels, type SpringLine, springLine, strokeLevels } from './stroke-levels';
@@ -52,6 +52,9 @@ export interface ActuatorSize {
   /** m; null when not stated. */
   readonly stroke: number | null;
 }
+
+/** Half the size of slips that leave no more scatter than noise explains, over the noise (from the limit on that scatter). */
+const unseenSlip = 1.6;
 
 /** null, with a note in `notes`, where the strokes do not show it. */
 export function actuatorFriction(
@@ -105,15 +108,17 @@ export function actuatorFriction(
   // The moment of breaking loose is known to a sample: slow strokes tell it best, and the slowest ones alone are taken.
   const slowest = Math.min(...turned.map((leg) => leg.pace));
   const slow = turned.filter((leg) => leg.pace <= slowPace * slowest);
-  const each = Math.hypot((slowPace * slowest) / Math.sqrt(12), noise / 3);
+  const errors: ReadingErrors = { each: noise / 2, shared: slowest / Math.sqrt(12) };
   // Where it comes to rest after a slip is known to the part of a sample that the slip took.
   const slips = restLevel !== null || hidden > 0;
-  const moving = balanced(
-    moved,
+  const mean = balanced(
+    slow,
     movingOf,
-    Math.hypot(noise / Math.sqrt(20), slips ? slowest / 2 : 0, 0.15 * hidden),
+    { each: noise / Math.sqrt(20), shared: Math.hypot(slips ? slowest / 2 : 0, 0.15 * hidden) },
     unit,
   );
+  // Slips that noise hides altogether make the mean while it seems to slide lie up to half their size too high.
+  const moving = mean && !slips ? { ...mean, low: Math.max(0, mean.low - unseenSlip * noise) } : mean;
   const bands = levels.legs.flatMap((now, i) => {
     const before = levels.legs[i - 1];
     if (!slow.includes(now) || !before || before.pace > slowPace * slowest) return [];
@@ -124,13 +129,13 @@ export function actuatorFriction(
       ? [before.lastMovement + now.firstBreak]
       : [];
   });
-  const standing = balanced(slow, (leg) => leg.firstBreak, each, unit);
+  const standing = balanced(slow, (leg) => leg.firstBreak, errors, unit);
   if (moving === null || standing === null || bands.length === 0) {
     notes.push({ code: 'no-friction', text: 'Friction is not resolved: too few reversals moved the stem.' });
     return null;
   }
   const slopes = moved.flatMap(({ leg }) => slopeOf(pressure, travel, leg.moves!, leg.leg.to));
-  const slope = meanOf(slopes, line.slopeError, unit);
+  const slope = meanOf(slopes, { each: line.slopeError }, unit);
   const half = Math.min((slope.high - slope.low) / 2, 0.2 * line.slope);
   const perPercent: Estimate = { value: line.slope, low: line.slope - half, high: line.slope + half, unit };
   const toPascal = conversion(unit, 'Pa').factor;
@@ -180,7 +185,7 @@ export function actuatorFriction(
     springRange: scaled(perPercent, 100, unit),
     springRate,
     benchSet: { closed: at(0), open: at(100) },
-    frictionBand: amount(meanOf(bands, each, unit, 0)),
+    frictionBand: amount(meanOf(bands, errors, unit)),
     moving: amount(moving),
     standing: amount(standing),
     curve,
@@ -201,7 +206,7 @@ export function actuatorFriction(
 function balanced(
   legs: readonly LegLevels[],
   of: (leg: LegLevels) => number | null,
-  each: number,
+  errors: ReadingErrors,
   unit: string,
 ): Estimate | null {
   const ways = [1, -1].map((direction) =>
@@ -211,7 +216,7 @@ function balanced(
   const means = ways.map(meanOfValues);
   const centre = (means[0]! + means[1]!) / 2;
   const readings = ways.flatMap((values, i) => values.map((value) => value - means[i]! + centre));
-  return meanOf(readings, each, unit, 0);
+  return meanOf(readings, errors, unit);
 }
 
 function meanOfValues(values: readonly number[]): number {

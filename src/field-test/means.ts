@@ -5,28 +5,36 @@ import { normalQuantile, studentTQuantile } from '../signal/distributions';
 /** Two-sided level 0.9. */
 const upper = 0.95;
 
+export interface ReadingErrors {
+  /** Standard error of one reading by itself, which averages out. */
+  readonly each: number;
+  /** Standard error that all readings share, as where strokes meet the sampling in step; it does not average out. */
+  readonly shared?: number;
+}
+
 /**
- * Mean of repeated readings. Its interval is Student's t over their scatter, and never narrower than what the error
- * `each` of a single reading leaves; two readings span at least their own distance, one its error.
+ * Mean of repeated readings of something that cannot be below 0. Its interval is Student's t over their scatter, never
+ * narrower than what the errors leave; two readings span at least their own distance.
  *
  * @param readings at least one
- * @param each standard error of one reading by itself
  */
-export function meanOf(readings: readonly number[], each: number, unit: string, least = 0): Estimate {
+export function meanOf(
+  readings: readonly number[],
+  { each, shared = 0 }: ReadingErrors,
+  unit: string,
+): Estimate {
   const n = readings.length;
   const value = readings.reduce((sum, one) => sum + one, 0) / n;
-  const own = (normalQuantile(upper) * each) / Math.sqrt(n);
+  const z = normalQuantile(upper);
+  const own = z * Math.hypot(each / Math.sqrt(n), shared);
   let half = own;
   if (n === 2) half = Math.max(own, Math.abs(readings[0]! - readings[1]!) / 2);
   if (n > 2) {
     const squares = readings.reduce((sum, one) => sum + (one - value) ** 2, 0);
     const deviation = Math.sqrt(squares / (n - 1));
-    half = Math.max(own, (studentTQuantile(upper, n - 1) * deviation) / Math.sqrt(n));
+    const scatter = (studentTQuantile(upper, n - 1) * deviation) / Math.sqrt(n);
+    half = Math.max(own, Math.hypot(scatter, z * shared));
   }
-  return {
-    value: Math.max(least, value),
-    low: Math.max(least, value - half),
-    high: Math.max(least, value + half),
-    unit,
-  };
+  const atLeast0 = (one: number): number => Math.max(0, one);
+  return { value: atLeast0(value), low: atLeast0(value - half), high: atLeast0(value + half), unit };
 }

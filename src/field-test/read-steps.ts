@@ -231,9 +231,8 @@ function bracketed(
   const highs = brackets.reduce((sum, one) => sum + one.high, 0) / n;
   const middles = meanOf(
     brackets.map((one) => (one.low + one.high) / 2),
-    (highs - lows) / Math.sqrt(12),
+    { each: (highs - lows) / Math.sqrt(12) },
     band,
-    0,
   );
   return { ...middles, low: Math.min(middles.low, lows), high: Math.max(middles.high, highs) };
 }
@@ -285,9 +284,8 @@ function overallOf(found: readonly (Estimate | null)[]): Estimate | null {
   const each = Math.max(...read.map(({ low, high }) => (high - low) / 2 / 1.645));
   return meanOf(
     read.map(({ value }) => value),
-    each,
+    { each },
     read[0]!.unit,
-    0,
   );
 }
 

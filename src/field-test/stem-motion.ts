@@ -165,7 +165,7 @@ function legMotion(
 
   // The step a sample that sliding gives, and what more than it is a slip.
   const pace = ahead(first, to) / Math.max(1, to - first);
-  const slipSize = Math.max(slipOverNoise * Math.SQRT2 * noise, 2 * pace, 1e-6);
+  const slipSize = Math.max(slipOverNoise * Math.SQRT2 * noise, pace, 1e-6);
   const events: number[] = [];
   for (let k = first + 1; k <= to; k++) {
     if (y(k) - y(k - 1) - Math.max(0, ahead(k - 1, k)) > slipSize) events.push(k);

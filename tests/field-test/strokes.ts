@@ -62,31 +62,28 @@ export function bench(
   return { samplePeriod, op, travel, pressure };
 }
 
-/** Ramps between `points`, % of span, at `rate` %/s, resting `dwell` s at each. */
+/** Ramps from the first point to the others, % of span, each at its rate in %/s, resting `dwell` s at each. */
 export function ramps(
-  points: readonly number[],
-  rate: number,
+  points: readonly { readonly op: number; readonly rate: number }[],
   dwell: number,
 ): { at: (time: number) => number; seconds: number } {
-  const knots: { time: number; value: number }[] = [{ time: 0, value: points[0]! }];
-  let time = dwell;
-  knots.push({ time, value: points[0]! });
-  for (let i = 1; i < points.length; i++) {
-    time += Math.abs(points[i]! - points[i - 1]!) / rate;
-    knots.push({ time, value: points[i]! });
-    time += dwell;
-    knots.push({ time, value: points[i]! });
+  const start = points[0]!.op;
+  const knots = [
+    { time: 0, op: start },
+    { time: dwell, op: start },
+  ];
+  for (const { op, rate } of points.slice(1)) {
+    const last = knots[knots.length - 1]!;
+    const time = last.time + Math.abs(op - last.op) / rate;
+    knots.push({ time, op }, { time: time + dwell, op });
   }
-  const at = (now: number): number => {
-    if (now <= 0) return points[0]!;
-    for (let i = 1; i < knots.length; i++) {
-      const [a, b] = [knots[i - 1]!, knots[i]!];
-      if (now <= b.time)
-        return b.time === a.time
-          ? b.value
-          : a.value + ((b.value - a.value) * (now - a.time)) / (b.time - a.time);
-    }
-    return points[points.length - 1]!;
+  let place = 1;
+  const at = (time: number): number => {
+    while (place < knots.length - 1 && time > knots[place]!.time) place++;
+    while (place > 1 && time <= knots[place - 1]!.time) place--;
+    const [a, b] = [knots[place - 1]!, knots[place]!];
+    const share = b.time > a.time ? (time - a.time) / (b.time - a.time) : 1;
+    return a.op + (b.op - a.op) * Math.min(1, Math.max(0, share));
   };
-  return { at, seconds: time };
+  return { at, seconds: knots[knots.length - 1]!.time };
 }
