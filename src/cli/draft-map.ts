@@ -29,9 +29,14 @@ export async function draftMapTo(source: string, target: string, output: Output)
   const said = [
     `Map of ${map.loops.length} loops drafted from the names in ${source}${target === '-' ? '' : `: ${path}`}`,
     `Check it before it is used, ${open > 0 ? `above all ${open === 1 ? 'the one loop' : `the ${open} loops`} of which PV or OP was left open: ` : ''}the column "comment" says why something was left open.`,
-    `Then: stickband audit ${source} --map ${target === '-' ? 'MAP.csv' : target}`,
+    `Then: stickband audit ${quoted(source)} --map ${target === '-' ? 'MAP.csv' : quoted(target)}`,
   ];
   if (target === '-') output.stdout.write(mapText(map));
   else writeWhole({ [path]: mapText(map) });
   (target === '-' ? output.stderr : output.stdout).write(`${said.join('\n')}\n`);
+}
+
+/** A path as it is typed: in quotes where it has blanks. */
+function quoted(path: string): string {
+  return /\s/.test(path) ? `"${path}"` : path;
 }
