@@ -102,9 +102,13 @@ export { cycleFigure } from './figures/cycle-figure';
 export { evidenceFigure } from './figures/evidence-figure';
 export type { Figure } from './figures/figure';
 export { fitFigure } from './figures/fit-figure';
+export { forecastFigure } from './figures/forecast-figure';
+export { forecastMapFigure } from './figures/forecast-map-figure';
+export { forecastTrendFigure } from './figures/forecast-trend-figure';
 export { misfitFigure } from './figures/misfit-figure';
 export { periodMapFigure } from './figures/period-map-figure';
 export { phaseFigure } from './figures/phase-figure';
+export { repairComparisonFigure } from './figures/repair-comparison-figure';
 export { stictionOverTimeFigure } from './figures/stiction-over-time-figure';
 export { strokeFrictionFigure } from './figures/stroke-friction-figure';
 export { strokePressureFigure } from './figures/stroke-pressure-figure';
@@ -123,6 +127,7 @@ export {
   type RepairAnswer,
   type RepairComparison,
 } from './forecast/compare-assessments';
+export { comparisonCard } from './forecast/comparison-card';
 export type {
   BalanceForecast,
   CycleForecast,
@@ -131,6 +136,7 @@ export type {
   MapPlace,
   SettingForecast,
 } from './forecast/forecast';
+export { forecastCard } from './forecast/forecast-card';
 export { type ControllerSetting, type ForecastOptions, forecastCycle } from './forecast/forecast-cycle';
 export { type FrictionInForce, type FrictionOptions, frictionInForce } from './forecast/friction-in-force';
 export {
@@ -143,6 +149,7 @@ export {
 } from './notebook/audit-tables';
 export { canMakeDataFrames, dataFrame } from './notebook/data-frame';
 export { demoFile } from './notebook/demo-file';
+export { comparisonTable, forceTable, forecastTable } from './notebook/forecast-tables';
 export {
   type ShowTableOptions,
   showAnswer,
@@ -155,6 +162,7 @@ export {
   showTable,
 } from './notebook/show';
 export { showAuditAnswer, showGroups, showRanking } from './notebook/show-audit';
+export { showComparison, showForecast } from './notebook/show-forecast';
 export { showValveTest, showValveTestCautions, showValveTestPlan } from './notebook/show-valve-test';
 export {
   cycleTable,

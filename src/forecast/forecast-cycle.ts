@@ -61,6 +61,8 @@ const OPTIONS = [
 
 /** Share of OP's moves that the controller reading must explain, as for the fit. Own choice. */
 const trustedController = 0.6;
+/** Share of the stable places of the map that may lose the cycle before retuning counts as ending it. Own choice. */
+const mostQuiet = 0.2;
 /** Share of samples at which SP may move: a master moves it at nearly all. Own choice. */
 const mostSetPointMoves = 0.05;
 /** Rivals that are simulated on: those nearest to the record. Own choice. */
@@ -132,7 +134,12 @@ export function forecastCycle(findings: Findings, options: ForecastOptions = {})
       text: `Only ${near.length} of ${rivals.length} rival loops come within ${Math.round(100 * resolved.largestMiss)} % of the record, so the bands may be too narrow.`,
     });
   }
-  return { ...base, forecast: forecastFrom(near, rivals.length, measured, resolved), refused: [], notes };
+  return {
+    ...base,
+    forecast: forecastFrom(near, rivals.length, measured, record.pvUnit || 'PV units', resolved),
+    refused: [],
+    notes,
+  };
 }
 
 type Resolved = Required<ForecastOptions>;
@@ -294,12 +301,13 @@ function forecastFrom(
   used: readonly RivalLoop[],
   drawn: number,
   record: CycleMeasure,
+  pvUnit: string,
   options: Resolved,
 ): Forecast {
   const best = used[0]!;
   const today = best.model.controller;
   const hasIntegral = today.form !== 'P';
-  const at = (change: Change): CycleForecast => summed(used, record, change);
+  const at = (change: Change): CycleForecast => summed(used, record, pvUnit, change);
   const setting = (change: Change): SettingForecast => ({
     gain: today.gain * (change.gain ?? 1),
     integralTime: hasIntegral && change.form !== 'P' ? today.integralTime * (change.integralTime ?? 1) : null,
@@ -349,10 +357,25 @@ function forecastFrom(
       best.model.valve.S,
       best.model.valve.J,
     ),
-    retuningEndsIt: quiet.length > 0 || withoutIntegral?.cycles === false,
+    retuningEndsIt: quiet.length > mostQuiet * stable.length,
+    traces: tracesOf(best, record.period, options),
     rivals: { drawn, used: used.length },
   };
-  return { ...forecast, inWords: retuningInWords(forecast) };
+  return { ...forecast, inWords: retuningInWords(forecast, pvUnit) };
+}
+
+/** Cycles of the record that are drawn. */
+const drawnCycles = 5;
+
+function tracesOf({ model, seed }: RivalLoop, period: number, { repaired }: Resolved): Forecast['traces'] {
+  const length = { period, cycles: drawnCycles, seed };
+  const valve = repaired.S > 0 ? { model: model.valve.model, ...repaired } : null;
+  const [now, later] = [runModel(model, {}, length), runModel(model, { valve }, length)];
+  return {
+    step: model.scanPeriod,
+    now: { pv: now.pv, op: now.op },
+    repaired: { pv: later.pv, op: later.op },
+  };
 }
 
 function deadBand(
@@ -374,7 +397,12 @@ function deadBand(
   return { width, found: false, ...at({ integralDeadBand: width }) };
 }
 
-function summed(used: readonly RivalLoop[], record: CycleMeasure, change: Change): CycleForecast {
+function summed(
+  used: readonly RivalLoop[],
+  record: CycleMeasure,
+  pvUnit: string,
+  change: Change,
+): CycleForecast {
   const outcomes = used.map((rival) => ({ rival, ...tryOut(rival, change, record.period) }));
   const cycling = outcomes.filter(({ cycles, measure }) => cycles && measure !== null);
   const cyclesIn = cycling.length / used.length;
@@ -392,7 +420,7 @@ function summed(used: readonly RivalLoop[], record: CycleMeasure, change: Change
       cyclesIn,
       cycles,
       period: null,
-      pvSwing: left('pvLeft', 'PV units'),
+      pvSwing: left('pvLeft', pvUnit),
       opSwing: left('opLeft', '% of OP span'),
       gainMargin: margin,
     };
@@ -408,7 +436,7 @@ function summed(used: readonly RivalLoop[], record: CycleMeasure, change: Change
     cyclesIn,
     cycles,
     period: of('period', modelError.period, 's'),
-    pvSwing: of('pvSwing', modelError.swing, 'PV units'),
+    pvSwing: of('pvSwing', modelError.swing, pvUnit),
     opSwing: of('opSwing', modelError.swing, '% of OP span'),
     gainMargin: margin,
   };

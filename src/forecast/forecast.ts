@@ -44,6 +44,14 @@ export interface BalanceForecast {
   readonly opSwing: number;
 }
 
+/** The beginning of two simulations, to be drawn beside the record; one value a scan. */
+export interface ForecastTraces {
+  /** s between values. */
+  readonly step: number;
+  readonly now: { readonly pv: Float64Array; readonly op: Float64Array };
+  readonly repaired: { readonly pv: Float64Array; readonly op: Float64Array };
+}
+
 export interface Forecast {
   /** Read from the record in the same way as from the simulations. */
   readonly record: { readonly period: number; readonly pvSwing: number; readonly opSwing: number };
@@ -61,9 +69,11 @@ export interface Forecast {
   readonly repaired: CycleForecast & { readonly S: number; readonly J: number };
   /** Describing function at today's settings; null where it finds no cycle. */
   readonly balance: BalanceForecast | null;
-  /** Whether some stable place of the map, or the loop without integral action, ends the cycle; and in words. */
+  /** Whether the cycle is gone at more than a fifth of the stable places of the map. */
   readonly retuningEndsIt: boolean;
   readonly inWords: readonly string[];
+  /** The rival that comes nearest to the record, as it runs now and repaired. */
+  readonly traces: ForecastTraces;
   /** Rival loops drawn, and those that come near enough to the record to be used. */
   readonly rivals: { readonly drawn: number; readonly used: number };
 }
