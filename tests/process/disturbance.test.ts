@@ -37,7 +37,18 @@ describe('disturbances', () => {
     expect(values[7]).not.toBe(values[6]);
   });
 
+  it('a signal from elsewhere runs straight between its values and is held at its end', () => {
+    const values = disturbanceValues({ kind: 'signal', values: Float64Array.of(0, 4, 2), every: 2 }, 6, 1);
+    expect([...values]).toEqual([2, 4, 3, 2, 2, 2]);
+  });
+
   it('refuses what cannot be', () => {
+    for (const [values, every] of [
+      [new Float64Array(0), 1],
+      [Float64Array.of(1), 0],
+    ] as const) {
+      expect(() => disturbanceValues({ kind: 'signal', values, every }, 1, 1)).toThrow(/needs values/);
+    }
     expect(() => disturbanceValues({ kind: 'sine', amplitude: 1, period: 0 }, 1, 1)).toThrow(
       /period above 0/,
     );
