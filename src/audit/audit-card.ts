@@ -26,12 +26,10 @@ export function auditCard({ loops, groups, ranking, cautions }: Audit): AuditCar
   const assessed = loops.flatMap((one) => (hasFailed(one) ? [] : [one]));
   const cycling = assessed.filter(({ oscillation }) => oscillation.present).length;
   const failed = loops.length - assessed.length;
-  const verdicts = new Map<string, number>();
-  for (const { cause } of assessed) verdicts.set(cause.verdict, (verdicts.get(cause.verdict) ?? 0) + 1);
-  if (failed > 0) verdicts.set('failed', failed);
-  const counted = [...verdicts].sort(([a, n], [b, m]) => m - n || (a < b ? -1 : 1));
   const worth = ranking.filter(({ score }) => score > 0);
-  const valves = assessed.filter(({ cause }) => accused.includes(cause.verdict)).length;
+  const accusedOf = accused.map(
+    (verdict) => assessed.filter(({ cause }) => cause.verdict === verdict).length,
+  );
   const told = groups.filter(({ likelySource }) => likelySource !== null).length;
   const lineOf = (one: RankedLoop): string => {
     const group = groups.find((shared) => shared.loops.includes(one.loop)) ?? null;
@@ -39,13 +37,13 @@ export function auditCard({ loops, groups, ranking, cautions }: Audit): AuditCar
   };
   return {
     headline: headline(cycling, assessed.length, failed, worth),
-    counts: `${countOf(loops.length, 'loop')}: ${counted.map(([verdict, n]) => `${n} ${verdict}`).join(', ')}.`,
+    counts: countsInWords(loops),
     figures: [
       { label: 'Loops that cycle', value: `${cycling} of ${assessed.length}`, note: 'of those assessed' },
       {
         label: 'Final control assembly accused',
-        value: String(valves),
-        note: accused.map((verdict) => `${verdicts.get(verdict) ?? 0} ${verdict}`).join(', '),
+        value: String(accusedOf.reduce((sum, n) => sum + n, 0)),
+        note: accused.map((verdict, i) => `${accusedOf[i]} ${verdict}`).join(', '),
       },
       {
         label: 'Cycles shared by several loops',
@@ -57,10 +55,21 @@ export function auditCard({ loops, groups, ranking, cautions }: Audit): AuditCar
     first: worth.slice(0, namedFirst).map((one) => ({ loop: one.loop, line: lineOf(one) })),
     together: [
       ...groups.slice(0, namedGroups).map(groupSentence),
-      ...(groups.length > namedGroups ? [`And ${groups.length - namedGroups} smaller ones.`] : []),
+      ...(groups.length > namedGroups ? [`And ${groups.length - namedGroups} more.`] : []),
     ],
     cautions,
   };
+}
+
+/** How many loops have which cause, the most frequent first. */
+export function countsInWords(loops: Audit['loops']): string {
+  const counts = new Map<string, number>();
+  for (const result of loops) {
+    const key = hasFailed(result) ? 'failed' : result.cause.verdict;
+    counts.set(key, (counts.get(key) ?? 0) + 1);
+  }
+  const counted = [...counts].sort(([a, n], [b, m]) => m - n || (a < b ? -1 : 1));
+  return `${countOf(loops.length, 'loop')}: ${counted.map(([verdict, n]) => `${n} ${verdict}`).join(', ')}.`;
 }
 
 function headline(cycling: number, of: number, failed: number, [first]: readonly RankedLoop[]): string {

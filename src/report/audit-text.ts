@@ -1,5 +1,6 @@
 /** The audit of a unit as plain text for a terminal: counts, where to look first, what cycles together. */
-import { type Audit, hasFailed } from '../audit/audit';
+import type { Audit } from '../audit/audit';
+import { countsInWords } from '../audit/audit-card';
 import { bullets, wrapped } from './answer-text';
 
 /** Loops shown of the ranking; the JSON has all. */
@@ -7,16 +8,9 @@ const shownLoops = 8;
 const width = 92;
 
 export function auditText(audit: Audit): string {
-  const counts = new Map<string, number>();
-  for (const result of audit.loops) {
-    const key = hasFailed(result) ? 'failed' : result.cause.verdict;
-    counts.set(key, (counts.get(key) ?? 0) + 1);
-  }
-  const counted = [...counts].sort(([a, n], [b, m]) => m - n || (a < b ? -1 : 1));
-  const total = `${audit.loops.length} ${audit.loops.length === 1 ? 'loop' : 'loops'}`;
   const first = audit.ranking.filter(({ score }) => score > 0).slice(0, shownLoops);
   const sections: string[][] = [
-    wrapped(`${total}: ${counted.map(([verdict, n]) => `${n} ${verdict}`).join(', ')}.`, width),
+    wrapped(countsInWords(audit.loops), width),
     first.length === 0
       ? []
       : ['Look first at', ...first.flatMap(({ loop, reasons }, i) => ranked(i + 1, loop, reasons))],

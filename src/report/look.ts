@@ -47,12 +47,12 @@ export const componentStyle: string = `
 .sb-table thead th { border-bottom: 1px solid ${palette.faint}; font-weight: 600; }
 .sb-table table td { overflow-wrap: break-word; }
 .sb-table table .sb-number { text-align: right; font-variant-numeric: tabular-nums; }
-.sb-unit { --edge: ${palette.ink}; } .sb-unit ol { margin: 0 0 .5em; padding-left: 1.4em; } .sb-unit a, .sb-whole a { color: ${palette.pv}; }
-.sb-ranked { container-type: inline-size; background: ${palette.paper}; } .sb-ranked table { width: 100%; border-collapse: collapse; }
+.sb-unit { --edge: ${palette.ink}; } .sb-unit ol { margin: 0 0 .5em; padding-left: 1.4em; } .sb-unit a, .sb-whole a { color: inherit; }
+.sb-ranked { container-type: inline-size; background: ${palette.paper}; padding: 0 .6em; } .sb-ranked table { width: 100%; border-collapse: collapse; }
 .sb-table.sb-ranked table th, .sb-table.sb-ranked table td { padding: .35em .7em .35em 0; } .sb-ranked tbody td { white-space: nowrap; }
 .sb-ranked .sb-note { font-size: .88em; color: ${palette.faint}; }
 .sb-ranked thead th { vertical-align: bottom; } .sb-ranked th button { all: unset; cursor: pointer; font-weight: 600; border-bottom: 1px dotted ${palette.faint}; }
-.sb-ranked th button:focus-visible { outline: 2px solid ${palette.pv}; } .sb-ranked th[aria-sort] button { border-bottom-style: solid; color: ${palette.pv}; }
+.sb-ranked th button:focus-visible { outline: 2px solid ${palette.pv}; } .sb-ranked th[aria-sort] button { border-bottom-style: solid; }
 .sb-ranked th[aria-sort="descending"] button::after { content: " \\2193"; } .sb-ranked th[aria-sort="ascending"] button::after { content: " \\2191"; }
 .sb-table.sb-ranked tbody tr:first-child td { border-bottom: 0; padding-bottom: 0; }
 .sb-table.sb-ranked .sb-more > td { max-width: none; padding: 0 0 .6em; border-bottom: 1px solid ${palette.grid}; white-space: normal; }
@@ -70,7 +70,7 @@ export const componentStyle: string = `
   .sb-wide table, .sb-wide tbody, .sb-wide tr, .sb-wide td { display: block; } .sb-wide thead { display: none; }
   .sb-wide tr { border-bottom: 1px solid ${palette.faint}; padding: .4em 0; }
   .sb-table.sb-wide table td { border: 0; padding: 0; text-align: left; } .sb-wide td:first-child { font-weight: 600; }
-  .sb-ranked tbody tr:first-child td:nth-child(2) { position: sticky; left: 0; background: ${palette.paper}; }
+  .sb-ranked tbody tr:first-child td:nth-child(2) { position: sticky; left: 0; padding-left: .6em; background: ${palette.paper}; }
   .sb-wide td + td::before { content: attr(data-column) ": "; color: ${palette.faint}; } .sb-wide td:empty { display: none; }
 }
 @media print {
