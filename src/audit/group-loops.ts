@@ -42,7 +42,7 @@ export function groupLoops(loops: readonly FinishedLoop[], options: GroupOptions
   const alike = (i: number, j: number): number => likeness(cycling[i]!.signature, cycling[j]!.signature);
   return averageLinkage(cycling.length, alike, leastLikeness)
     .filter((members) => members.length > 1)
-    .map((members) => groupOf(members.map((i) => cycling[i]!)))
+    .map((members) => groupOf(members, cycling))
     .sort(
       (a, b) => b.loops.length - a.loops.length || a.period - b.period || order(a.loops[0]!, b.loops[0]!),
     );
@@ -62,7 +62,10 @@ export function order(a: string, b: string): number {
   return a < b ? -1 : a > b ? 1 : 0;
 }
 
-function groupOf(loops: readonly CyclingLoop[]): LoopGroup {
+/** @param members their places in `cycling`, which holds all loops that cycle */
+function groupOf(members: readonly number[], cycling: readonly CyclingLoop[]): LoopGroup {
+  const loops = members.map((i) => cycling[i]!);
+  const others = cycling.filter((_, i) => !members.includes(i));
   const periods = loops.map(({ signature }) => signature.clock!.period).sort((a, b) => a - b);
   const middle = (periods.length - 1) / 2;
   const period = (periods[Math.floor(middle)]! + periods[Math.ceil(middle)]!) / 2;
@@ -71,8 +74,44 @@ function groupOf(loops: readonly CyclingLoop[]): LoopGroup {
     period,
     loops: loops.map(({ result }) => result.loop),
     likelySource: source,
-    reasons: [sharedReason(loops, period), ...reasons],
+    reasons: [sharedReason(loops, period), ...reasons, ...leftOutReasons(others, loops, period)],
   };
+}
+
+/** Loops whose period is that of the group within this share are told when they are not in it (own choice). */
+const samePeriod = 0.05;
+/** Of more than this many the rest is counted. */
+const mostNamed = 10;
+
+/** Who has the same period and yet is not in the group, and why. */
+function leftOutReasons(
+  others: readonly CyclingLoop[],
+  loops: readonly CyclingLoop[],
+  period: number,
+): string[] {
+  const near = others.filter(
+    ({ signature }) => Math.abs(signature.clock!.period - period) <= samePeriod * period,
+  );
+  const together = (one: CyclingLoop): boolean =>
+    loops.some(
+      ({ signature }) => keepingStep(one.signature.clock!, signature.clock!, fewestCommonCycles) !== null,
+    );
+  const names = (which: readonly CyclingLoop[]): string => {
+    const tags = which.slice(0, mostNamed).map(({ result }) => result.loop);
+    return tags.join(', ') + (which.length > mostNamed ? ` and ${which.length - mostNamed} more` : '');
+  };
+  const apart = near.filter(together);
+  const elsewhere = near.filter((one) => !together(one));
+  const reasons: string[] = [];
+  if (apart.length > 0) {
+    reasons.push(`Of about this period but not in the group, as spectrum or step differ: ${names(apart)}.`);
+  }
+  if (elsewhere.length > 0) {
+    reasons.push(
+      `Of about this period but logged at other times, so that nothing shows whether they share the cycle: ${names(elsewhere)}.`,
+    );
+  }
+  return reasons;
 }
 
 /** With fewer common cycles the reasons warn of chance (own choice). */

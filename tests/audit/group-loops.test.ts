@@ -42,6 +42,21 @@ describe('which loops share a cycle', () => {
     expect(groupLoops(made(one, { ...other, start: '2026-03-10T06:10:00Z' }))).toHaveLength(1);
   });
 
+  it('tells which loops have the period and yet are not in the group', () => {
+    const loops = made(
+      source,
+      victims[0]!,
+      { loop: '31-FC-211', period: 2400 / 39 },
+      { loop: '31-FC-212', start: '2026-03-11T06:00:00Z' },
+    );
+    const [group] = groupLoops(loops);
+    expect(group!.loops).toEqual(['31-FC-201', '31-PC-202']);
+    expect(group!.reasons.slice(-2)).toEqual([
+      'Of about this period but not in the group, as spectrum or step differ: 31-FC-211.',
+      'Of about this period but logged at other times, so that nothing shows whether they share the cycle: 31-FC-212.',
+    ]);
+  });
+
   it('warns where the common time is short', () => {
     const short = { samples: 600 };
     const [group] = groupLoops(made({ ...source, ...short }, { ...victims[0]!, ...short }));
