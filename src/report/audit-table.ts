@@ -89,7 +89,7 @@ const columns: readonly Column[] = [
       const note = role === 'likely shaken' ? `by ${group.likelySource}` : `${group.loops.length} loops`;
       return {
         html: `${role}<br><span class="sb-note">${escapeHtml(note)}</span>`,
-        key: `${duration(group.period)} ${role}`,
+        key: `${group.period.toFixed(1)} ${role}`,
       };
     },
   },
@@ -169,7 +169,8 @@ function part(title: string, sentences: readonly string[]): string {
 function figuresHtml({ assessment, signature }: RankedFindings): string {
   const { stiction, oscillation, severity, record, controller, service, response } = assessment;
   const J = stiction === null ? null : stiction.J === null ? 'not resolved' : withInterval(stiction.J);
-  const regularity = oscillation.regularity === null ? '' : `, regularity ${short(oscillation.regularity)}`;
+  const { regularity: r } = oscillation;
+  const regularity = r === null ? '' : `, regularity ${r > 100 ? 'above 100' : short(r)}`;
   const rows: [string, string | null][] = [
     ['Dead band S', stiction === null ? null : `${withInterval(stiction.S)}, travel ${stiction.travel}`],
     ['Slip jump J', J],
