@@ -42,10 +42,26 @@ const nearlySine = 0.002;
 const squarish = 0.1;
 /** S, % of span, that good valves have as well. Common practice, no source. */
 const goodValve = 0.4;
+/** Share of logged travel that the element must explain for its dead band to be told beside another cause. Own choice. */
+const travelExplained = 0.8;
 /** 2 pi Ti / period near 1: from here on control is proportional-dominated at the cycle. Own choice. */
 const proportionalRatio = 0.7;
 
 export function nameCause(input: CauseInput): Cause {
+  return withTravelSeen(causeOf(input), input.stiction.drawn);
+}
+
+/** Logged travel shows a dead band whatever makes the cycle: then the valve is named beside it. */
+function withTravelSeen(cause: Cause, drawn: StictionFit | null): Cause {
+  if (drawn?.travelSource !== 'measured' || drawn.explains < travelExplained || drawn.S.low < goodValve) {
+    return cause;
+  }
+  if (cause.verdict === 'stiction' || cause.verdict === 'lost-motion') return cause;
+  const seen = `Whatever makes the cycle, the logged travel shows a dead band of ${drawn.S.value.toFixed(2)} % of span.`;
+  return { ...cause, reasons: [...cause.reasons, seen], also: ['stiction'] };
+}
+
+function causeOf(input: CauseInput): Cause {
   const { fitness, stiction } = input;
   if (!fitness.allows.cycle) return cannotTell(failures(input, 'cycle'), []);
   if (!fitness.allows.cause) return cannotTell(failures(input, 'cause'), []);

@@ -236,6 +236,20 @@ describe('nameCause', () => {
     expect(nameCause({ ...input, stiction: { ...input.stiction, drawn } }).verdict).toBe('stiction');
   });
 
+  it('names the dead band that logged travel shows beside whatever else makes the cycle', () => {
+    const input = inputOf({ ...fromOutside, S: 2, test: { blocksForValve: 11, tWithoutLine: -2 } });
+    const measured = { ...input.stiction.drawn!, travelSource: 'measured' as const };
+    const { verdict, also, reasons } = nameCause({
+      ...input,
+      stiction: { ...input.stiction, drawn: measured },
+    });
+    expect(verdict).toBe(nameCause(input).verdict);
+    expect(nameCause(input).also).toEqual([]);
+    expect(also).toEqual(['stiction']);
+    expect(reasons.join(' ')).toContain('dead band of 2.00 %');
+    expect(named({}).also).toEqual([]);
+  });
+
   it('cannot tell where the valve leads in some blocks only', () => {
     const { verdict, reasons } = named({ regularity: 15, test: { tOverLine: 2.4, blocksForValve: 11 } });
     expect(verdict).toBe('cannot-tell');
