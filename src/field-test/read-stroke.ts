@@ -281,8 +281,8 @@ function spread(values: readonly number[]): { mean: number; error: number } {
 
 /**
  * Both variants, fitted to travel around the reversals, the better one first. Each leg starts anew from where the stem
- * rests and counts up to half an S after it breaks loose and some slips more: over a whole stroke the moments of slips
- * drift apart, and the fit would find any S and J but the right ones.
+ * rests and counts some slips (half an S where it slides): over a whole stroke the moments of slips drift apart, and the
+ * fit would find any S and J but the right ones.
  */
 function fitVariants(
   drive: Float64Array,
@@ -294,7 +294,7 @@ function fitVariants(
 ): FittedVariant[] {
   const windows = motion.legs.slice(1).flatMap(({ leg, moves, restFrom, rest }, i) => {
     if (moves === null || motion.legs[i]!.leg.direction === leg.direction) return [];
-    const reach = Math.max(0.5 * S, slipsCounted * J);
+    const reach = J > 0 ? slipsCounted * J : 0.5 * S;
     let to = moves;
     while (to < leg.to && leg.direction * (drive[to]! - drive[moves]!) < reach) to++;
     return [

@@ -241,7 +241,7 @@ function heldOn(times: Float64Array, { ms, values }: Signal): Float64Array {
 
 /** A length or a quantity as stated, such as `40 mm`, in `unit`. @throws WrongUse when it is none */
 export function quantityIn(stated: string, unit: string, option: string): number {
-  const found = /^\s*(\d+\.?\d*|\.\d+)(e[+-]?\d+)?\s*(\S.*?)\s*$/i.exec(stated);
+  const found = /^\s*(\d+\.?\d*|\.\d+)(e[+-]?\d+)?\s*([^\s\d.].*?)\s*$/i.exec(stated);
   const value = found === null ? Number.NaN : Number(`${found[1]}${found[2] ?? ''}`);
   if (found === null || !(value > 0)) {
     throw new WrongUse(
