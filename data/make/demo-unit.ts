@@ -37,8 +37,11 @@ export interface UnitLoop extends ExportedLoop {
   /** S and J with which stem and linkage were set up, %. */
   readonly built: { readonly S: number; readonly J: number };
   readonly shakenBy: Shaking | null;
-  /** Without what other loops add; `samples` and run-in are set when it is made. */
-  readonly options: LoopOptions;
+  /**
+   * Without what other loops add; `samples` and run-in are set when it is made. A valve remembers where it stands, so
+   * that each making needs one of its own.
+   */
+  readonly options: (stretch: number) => LoopOptions;
 }
 
 /** s that each loop runs before its log begins. */
@@ -84,13 +87,13 @@ function unitLoop(plan: Plan): UnitLoop {
   const seed = Number(tag.replaceAll(/\D/g, '').slice(-3));
   const integrating = process.response === 'integrating';
   const direct = (process.gain ?? 1) < 0;
-  const drift: Disturbance = {
+  const drift = (stretch: number): Disturbance => ({
     kind: 'ima',
     spread: plan.drift,
     theta: 0.5,
     every: samplePeriod / logEvery,
-    seed: seed + 1,
-  };
+    seed: seed + 1 + 1000 * stretch,
+  });
   const valve: TextbookStemOptions = { S, J, backlash, actuatorLag: 0.5, startOp: bias };
   const step = (plan.pvRange[1] - plan.pvRange[0]) / 8192;
   return {
@@ -109,7 +112,7 @@ function unitLoop(plan: Plan): UnitLoop {
     pvDecimals: 2,
     built: { S: S + backlash, J },
     shakenBy: plan.shakenBy ?? null,
-    options: {
+    options: (stretch) => ({
       scanPeriod: samplePeriod / logEvery,
       logEvery,
       setPoint,
@@ -123,14 +126,14 @@ function unitLoop(plan: Plan): UnitLoop {
       process: { ...process, restInput: bias, restOutput: from },
       outputDisturbances: [
         ...(plan.sines ?? []).map((sine) => ({ kind: 'sine' as const, ...sine })),
-        ...(integrating ? [] : [drift]),
+        ...(integrating ? [] : [drift(stretch)]),
       ],
-      inputDisturbances: integrating ? [drift] : [],
+      inputDisturbances: integrating ? [drift(stretch)] : [],
       noise: plan.noise,
-      seed,
+      seed: seed + 1000 * stretch,
       pvStep: step,
       opStep: 0.01,
-    },
+    }),
   };
 }
 
@@ -408,20 +411,25 @@ export interface MadeUnitLoop {
   readonly run: LoopRun;
 }
 
-/** All loops of the unit over the same hours. The loops that shake others come first in {@link DEMO_UNIT}. */
-export function makeDemoUnit(): MadeUnitLoop[] {
+/**
+ * All loops of the unit over the same hours. The loops that shake others come first in {@link DEMO_UNIT}.
+ *
+ * @param stretch 0 for the hours kept in data/, another whole number for other hours of the same unit
+ */
+export function makeDemoUnit(stretch = 0): MadeUnitLoop[] {
   const whole = new Map<string, LoopRun>();
   return DEMO_UNIT.map((demo) => {
-    const { scanPeriod = 1, logEvery = 1 } = demo.options;
+    const options = demo.options(stretch);
+    const { scanPeriod = 1, logEvery = 1 } = options;
     const before = Math.round(runIn / scanPeriod / logEvery);
-    const shaken = demo.shakenBy === null ? {} : shakenOptions(demo, demo.shakenBy, whole);
-    const run = simulateLoop({ ...demo.options, ...shaken, samples: before + demo.samples });
+    const shaken = demo.shakenBy === null ? {} : shakenOptions(options, demo.shakenBy, whole);
+    const run = simulateLoop({ ...options, ...shaken, samples: before + demo.samples });
     whole.set(demo.tag, run);
     return { demo, run: cut(run, before, demo.samplePeriod) };
   });
 }
 
-function shakenOptions(demo: UnitLoop, by: Shaking, whole: ReadonlyMap<string, LoopRun>): LoopOptions {
+function shakenOptions(options: LoopOptions, by: Shaking, whole: ReadonlyMap<string, LoopRun>): LoopOptions {
   const every = DEMO_UNIT.find(({ tag }) => tag === by.tag)!.samplePeriod;
   const { pv } = whole.get(by.tag)!;
   const middle = mean(pv);
@@ -434,7 +442,7 @@ function shakenOptions(demo: UnitLoop, by: Shaking, whole: ReadonlyMap<string, L
   const values = lagged.map((_, k) => lagged[Math.max(0, k - late)]!);
   const disturbance: Disturbance = { kind: 'signal', values, every };
   const name = by.at === 'output' ? 'outputDisturbances' : 'inputDisturbances';
-  return { [name]: [...(demo.options[name] ?? []), disturbance] };
+  return { [name]: [...(options[name] ?? []), disturbance] };
 }
 
 function cut({ sp, pv, op, travel }: LoopRun, before: number, samplePeriod: number): LoopRun {
