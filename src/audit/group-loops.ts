@@ -68,7 +68,8 @@ function groupOf(members: readonly number[], cycling: readonly CyclingLoop[]): L
   const others = cycling.filter((_, i) => !members.includes(i));
   const periods = loops.map(({ signature }) => signature.clock!.period).sort((a, b) => a - b);
   const middle = (periods.length - 1) / 2;
-  const period = (periods[Math.floor(middle)]! + periods[Math.ceil(middle)]!) / 2;
+  const median = (periods[Math.floor(middle)]! + periods[Math.ceil(middle)]!) / 2;
+  const period = Number(median.toPrecision(6));
   const { source, reasons } = likelySource(loops);
   return {
     period,

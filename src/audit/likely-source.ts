@@ -194,6 +194,9 @@ function phases(source: CyclingLoop, victims: readonly CyclingLoop[]): string {
     const size = Math.abs(step.lag).toFixed(2);
     return [`${result.loop} ${step.lag >= 0 ? 'behind' : 'ahead'} by ${size} of a cycle`];
   });
+  if (told.length === 0) {
+    return `How the others lie in phase to ${source.result.loop} cannot be told: too few cycles were logged at the same time.`;
+  }
   return (
     `Phase against ${source.result.loop}: ${told.join(', ')}. Phase alone does not tell who drives whom: a lag of more ` +
     'than half a cycle looks like a lead, and a process that answers the other way adds half a cycle.'

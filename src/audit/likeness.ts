@@ -3,8 +3,8 @@ import { bandsPerOctave, type ReducedSpectrum } from './reduced-spectrum';
 import type { CycleClock, LoopSignature } from './signature';
 
 /**
- * What moves slower than this many cycles of the slower loop is drift and does not count (own choice: below the
- * fundamental, above the common half-frequency of a wandering cycle).
+ * What is slower than this many cycles of the slower loop is drift and does not count (own choice: the fundamental and
+ * half its frequency count).
  */
 const slowestCycles = 2.5;
 /**
