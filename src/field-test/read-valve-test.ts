@@ -76,18 +76,18 @@ export function readValveTest(
     : readTestRecord(source as string | DataFrameLike, withStroke(forFile, length));
   const kind = statedKind ?? kindOf(record.op, record.automatic ?? null);
   const what = record.source;
+  const automatic = record.automatic ? mean(record.automatic) : 0;
+  if (statedKind === undefined && kind !== 'hold' && automatic > 0.5) {
+    throw new UnreadableInput(
+      `${what} has the controller in automatic most of the time, so it is the record of a loop and no valve test: assess it with stickband assess. If it is a test after all, state its kind with --kind (option "kind").`,
+    );
+  }
   if (kind === 'hold' && record.pv === null) {
     throw new UnreadableInput(`${what} is a hold without PV. Whether the cycle died is seen in PV: log it.`);
   }
   if (kind === 'stroke' && record.travel === null) {
     throw new UnreadableInput(
       `${what} is a stroke without measured travel. Strokes are read from travel; without it make a step test.`,
-    );
-  }
-  const automatic = record.automatic ? mean(record.automatic) : 0;
-  if (statedKind === undefined && kind !== 'hold' && automatic > 0.5) {
-    throw new UnreadableInput(
-      `${what} has the controller in automatic most of the time, so it is the record of a loop and no valve test: assess it with stickband assess. If it is a test after all, state its kind with --kind (option "kind").`,
     );
   }
   const hold = kind === 'hold' ? readHold(record, period ?? null, swing ?? null) : null;

@@ -13,7 +13,7 @@ export function strokePressureFigure({ record, friction }: ValveTestFindings): F
   const { travel, pressure } = record;
   if (!friction || !travel || !pressure) return null;
   const { line, sense, benchSet, frictionBand, standing, moving, springRate, springRange } = friction;
-  const indices = thin(pressure, 3000);
+  const indices = thin(pressure);
   const x = extent(travel);
   const on = (percent: number): number => line.offset + line.slope * percent;
   const y = extent(pressure);

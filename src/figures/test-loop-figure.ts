@@ -23,7 +23,7 @@ export function testLoopFigure(
   const drive = stroke?.drive ?? record.op;
   const x = extent(drive);
   const y = extent(watched);
-  const indices = thin(watched, 3000);
+  const indices = thin(watched);
   const what = record.travel ? 'travel, %' : withUnit('PV', record.pvUnit);
   const data: object[] = [
     {
