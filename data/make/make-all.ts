@@ -4,6 +4,7 @@ import { join } from 'node:path';
 import { DEMO_LOOPS, makeDemoLoop } from './demo-loops';
 import { type MadeUnitLoop, makeDemoUnit, unitFolder, unitList, unitListFile } from './demo-unit';
 import { toCsv } from './export';
+import { makeTightenedValve, TIGHTENED_VALVE } from './tightened-valve';
 import { fitTruth } from './truth';
 import { makeValveTests, testedValve } from './valve-tests';
 
@@ -31,6 +32,18 @@ writeFileSync(join(folder, unitListFile), unitList());
 
 const valveTests = makeValveTests();
 for (const { name, csv } of valveTests) writeFileSync(join(folder, `${name}.csv`), csv);
+
+const tightened = makeTightenedValve();
+writeFileSync(join(folder, `${TIGHTENED_VALVE.name}.csv`), toCsv(tightened, TIGHTENED_VALVE.seed));
+
+/** S and J of the tightened valve over a part of its record, samples. */
+function truthBetween(from: number, to: number, built: { readonly S: number; readonly J: number }): string {
+  const { op, travel } = tightened.run;
+  const truth = fitTruth(op.slice(from, to), travel.slice(from, to), built);
+  if (truth === null) throw new Error('The valve that is tightened does not move.');
+  return `${truth.S.toFixed(2)} | ${truth.J.toFixed(2)}`;
+}
+const tightenedSample = TIGHTENED_VALVE.tightenedAt / TIGHTENED_VALVE.samplePeriod;
 
 /** A row of the unit's table: S and J as in the table above, dashes where the valve is not to blame. */
 function unitRow({ demo, run }: MadeUnitLoop): string {
@@ -63,6 +76,15 @@ exported for 31-FC-104-with-travel alone, with the noise of a position transmitt
 
 Columns: \`time\` (ISO 8601, UTC), then \`TAG.SP\` and \`TAG.PV\` in the unit of the PV range, \`TAG.OP\` in % of span,
 \`TAG.TRAVEL\` in % where it is logged, \`TAG.MODE\`.
+
+## A valve that gets worse
+
+\`${TIGHTENED_VALVE.name}.csv\`, ${(TIGHTENED_VALVE.samples * TIGHTENED_VALVE.samplePeriod) / 3600} h, every ${TIGHTENED_VALVE.samplePeriod} s, PV range ${TIGHTENED_VALVE.pvRange.low} to ${TIGHTENED_VALVE.pvRange.high} ${TIGHTENED_VALVE.pvUnit}. ${TIGHTENED_VALVE.story} For S and J over time.
+
+| part | S, % | J, % |
+|---|---|---|
+| before | ${truthBetween(0, tightenedSample, TIGHTENED_VALVE.before)} |
+| after | ${truthBetween(tightenedSample, TIGHTENED_VALVE.samples, TIGHTENED_VALVE.after)} |
 
 ## Demo unit
 
