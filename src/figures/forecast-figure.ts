@@ -4,7 +4,7 @@ import type { CycleForecast, ForecastResult, SettingForecast } from '../forecast
 import { notToLoad } from '../forecast/forecast-card';
 import type { Figure } from './figure';
 import { axis, axisTitle, makeFigure, panelName, plainText, withUnit } from './layout';
-import { palette } from './palette';
+import { fontSize, palette } from './palette';
 import { plain, short } from './plain-numbers';
 
 /** null when the forecast was refused. */
@@ -21,13 +21,12 @@ export function forecastFigure(result: ForecastResult): Figure | null {
       : []),
     { name: 'valve repaired', of: repaired },
   ];
-  const names = rows.map(({ name }) => plainText(name));
   const minutes = record.period >= 120;
   const perUnit = minutes ? 60 : 1;
   const longest = Math.max(...rows.map(({ of }) => of.period?.high ?? 0)) / perUnit;
   const largest = Math.max(...rows.map(({ of }) => of.pvSwing.high), record.pvSwing);
   const points = (
-    kept: readonly { name: string; of: CycleForecast }[],
+    kept: readonly (typeof rows)[number][],
     x: (of: CycleForecast) => { value: number; low: number; high: number },
     place: { xaxis: string; yaxis: string },
     look: { name: string; color: string; symbol: string; legend: boolean },
@@ -39,7 +38,8 @@ export function forecastFigure(result: ForecastResult): Figure | null {
     showlegend: look.legend,
     ...place,
     x: plain(kept.map(({ of }) => x(of).value)),
-    y: kept.map(({ name }) => plainText(name)),
+    y: kept.map((row) => rows.indexOf(row)),
+    customdata: kept.map(({ name }) => plainText(name)),
     error_x: {
       type: 'data',
       symmetric: false,
@@ -50,7 +50,7 @@ export function forecastFigure(result: ForecastResult): Figure | null {
       width: 4,
     },
     marker: { symbol: look.symbol, size: 9, color: look.color, line: { color: look.color, width: 2 } },
-    hovertemplate: `%{x:.3g} ${plainText(unit)}<extra>%{y}</extra>`,
+    hovertemplate: `%{x:.3g} ${plainText(unit)}<extra>%{customdata}</extra>`,
   });
   const cycling = rows.filter(({ of }) => of.cycles);
   const quiet = rows.filter(({ of }) => !of.cycles);
@@ -87,7 +87,11 @@ export function forecastFigure(result: ForecastResult): Figure | null {
       points(cycling, swing, bottom, { ...goesOn, legend: false }, pvUnit),
       points(quiet, swing, bottom, { ...ends, legend: true }, pvUnit),
     ],
-    annotations: [panelName(`period, ${timeUnit}`, 'y'), panelName(withUnit('PV swing', pvUnit), 'y2')],
+    annotations: [
+      panelName(`period, ${timeUnit}`, 'y'),
+      panelName(withUnit('PV swing', pvUnit), 'y2'),
+      ...rows.flatMap(({ name }, i) => [rowName(name, i, 'y'), rowName(name, i, 'y2')]),
+    ],
     layout: {
       shapes: [today(record.period / perUnit, 'x', 'y'), today(record.pvSwing, 'x2', 'y2')],
       xaxis: axis({ anchor: 'y', range: plain([0, 1.05 * longest]) }),
@@ -96,10 +100,10 @@ export function forecastFigure(result: ForecastResult): Figure | null {
         title: axisTitle(withUnit('peak to peak', pvUnit)),
         range: plain([0, 1.05 * largest]),
       }),
-      yaxis: axis({ domain: [0.56, 1], ...categories(names) }),
-      yaxis2: axis({ anchor: 'x2', domain: [0, 0.44], ...categories(names) }),
+      yaxis: axis({ domain: [0.56, 1], ...places(rows.length) }),
+      yaxis2: axis({ anchor: 'x2', domain: [0, 0.44], ...places(rows.length) }),
     },
-    height: 210 + 44 * rows.length,
+    height: 130 + 72 * rows.length,
   });
 }
 
@@ -107,13 +111,24 @@ function settingName({ gain, integralTime }: SettingForecast): string {
   return `gain ${short(gain)}, ${integralTime === null ? 'no integral' : duration(integralTime)}`;
 }
 
-function categories(names: readonly string[]): object {
+/** Rows from top to bottom; their names stand in the plot, so that a small screen has room for the bars. */
+function places(count: number): object {
+  return { range: [count - 0.5, -0.8], showticklabels: false, ticks: '', showgrid: false, tickvals: [] };
+}
+
+function rowName(name: string, row: number, y: string): object {
   return {
-    type: 'category',
-    categoryorder: 'array',
-    categoryarray: [...names].reverse(),
-    range: [-0.6, names.length - 0.4],
-    nticks: names.length,
+    xref: 'paper',
+    yref: y,
+    x: 0,
+    y: row,
+    xanchor: 'left',
+    yanchor: 'bottom',
+    xshift: 3,
+    yshift: 5,
+    showarrow: false,
+    text: plainText(name),
+    font: { size: fontSize.small, color: palette.ink },
   };
 }
 

@@ -4,8 +4,8 @@ import type { ForecastResult, MapPlace } from '../forecast/forecast';
 import { notToLoad } from '../forecast/forecast-card';
 import type { Figure } from './figure';
 import { axis, axisTitle, makeFigure, panelName, plainText } from './layout';
-import { fontSize, misfitScale, palette } from './palette';
-import { plain, short } from './plain-numbers';
+import { colourAt, fontSize, misfitScale, palette } from './palette';
+import { extent, short } from './plain-numbers';
 
 /** null when the forecast was refused, or the controller has no integral action. */
 export function forecastMapFigure(result: ForecastResult): Figure | null {
@@ -30,69 +30,49 @@ export function forecastMapFigure(result: ForecastResult): Figure | null {
   );
   const here =
     column >= 0 && row >= 0
-      ? [
-          {
-            type: 'rect',
-            x0: column - 0.5,
-            x1: column + 0.5,
-            y0: row - 0.5,
-            y1: row + 0.5,
-            line: { color: palette.ink, width: 2.5 },
-          },
-        ]
+      ? [{ ...rectangle(column, row, 0), line: { color: palette.ink, width: 2.5 } }]
       : [];
-  const place = (i: number, k: number): MapPlace => map[i]![k]!;
+  const cells = map.flatMap((line, i) => line.map((place, k) => ({ i, k, place })));
+  const swings = extent(places.flatMap(({ pvSwing }) => pvSwing ?? []));
+  // Rectangles and not a heat map, which needs a canvas where pictures are made without a browser.
+  const grounds = cells.flatMap(({ i, k, place: { pvSwing } }) =>
+    pvSwing === null
+      ? []
+      : [
+          {
+            ...rectangle(k, i, gap),
+            line: { width: 0 },
+            fillcolor: colourAt(misfitScale, (pvSwing - swings.low) / (swings.high - swings.low || 1)),
+            layer: 'below',
+          },
+        ],
+  );
   return makeFigure({
     id: 'forecast-map',
-    title: `${loop}: the cycle over controller settings`,
+    title: `${loop}: cycle by settings`,
     caption: `In each place the period, ${minutes ? 'min' : 's'}, above the PV swing${pvUnit === '' ? '' : `, ${pvUnit}`}; the darker, the smaller the swing. The frame is today. It goes on at ${goingOn.length} of ${stable.length} stable places${margins.length > 0 ? `; their gain margins are from ${short(Math.min(...margins), 2)} to ${short(Math.max(...margins), 2)}` : ''}. "no cycle" may also mean that the valve moves so seldom that the cycle is not told from drift.`,
     alt: `Map of the forecast cycle of ${loop} over gain and integral time: it goes on at ${goingOn.length} of ${stable.length} stable settings.`,
     caveats: [notToLoad],
     legend: false,
     data: [
       {
-        type: 'heatmap',
-        x: gains.map((_, k) => k),
-        y: times.map((_, i) => i),
-        z: map.map((line) => line.map(({ pvSwing }) => (pvSwing === null ? null : plain([pvSwing])[0]))),
-        text: map.map((line) => line.map(told)),
-        customdata: map.map((line, i) =>
-          line.map((_, k) => {
-            const { gain, integralTime, gainMargin } = place(i, k);
-            return `gain ${short(gain)}, integral time ${duration(integralTime)}<br>gain margin ${gainMargin === null ? 'any' : short(gainMargin, 2)}`;
-          }),
-        ),
-        texttemplate: '%{text}',
+        type: 'scatter',
+        mode: 'text',
+        x: cells.map(({ k }) => k),
+        y: cells.map(({ i }) => i),
+        text: cells.map(({ place }) => told(place)),
         textfont: { size: fontSize.small - 1, color: palette.ink },
+        customdata: cells.map(({ place: { gain, integralTime, gainMargin } }) =>
+          plainText(
+            `gain ${short(gain)}, integral time ${duration(integralTime)}, gain margin ${gainMargin === null ? 'any' : short(gainMargin, 2)}`,
+          ),
+        ),
         hovertemplate: '%{customdata}<extra></extra>',
-        colorscale: misfitScale,
-        showscale: false,
-        xgap: 2,
-        ygap: 2,
-        hoverongaps: false,
       },
     ],
-    annotations: [
-      panelName('integral time', 'y'),
-      // A place without a swing has no colour, and its words would not be drawn with the others.
-      ...map.flatMap((line, i) =>
-        line.flatMap((one, k) =>
-          one.pvSwing === null
-            ? [
-                {
-                  x: k,
-                  y: i,
-                  text: told(one),
-                  showarrow: false,
-                  font: { size: fontSize.small - 1, color: palette.faint },
-                },
-              ]
-            : [],
-        ),
-      ),
-    ],
+    annotations: [panelName('integral time', 'y')],
     layout: {
-      shapes: here,
+      shapes: [...grounds, ...here],
       xaxis: axis({
         title: axisTitle('controller gain, % of OP per PV unit'),
         tickvals: gains.map((_, k) => k),
@@ -109,4 +89,12 @@ export function forecastMapFigure(result: ForecastResult): Figure | null {
     },
     height: 120 + 46 * map.length,
   });
+}
+
+/** Share of a place that stays white at each of its edges. */
+const gap = 0.03;
+
+function rectangle(k: number, i: number, inset: number): object {
+  const half = 0.5 - inset;
+  return { type: 'rect', x0: k - half, x1: k + half, y0: i - half, y1: i + half };
 }

@@ -23,7 +23,7 @@ export function retuningInWords(forecast: Omit<Forecast, 'inWords'>, pvUnit: str
       );
       if (quiet.length > 0) {
         said.push(
-          `At the other ${quiet.length} the valve moves so seldom that the cycle is not told from the drift of the load.`,
+          `At the other ${quiet.length === 1 ? 'one' : quiet.length} the valve moves so seldom that the cycle is not told from the drift of the load.`,
         );
       }
     }

@@ -2,7 +2,6 @@
 import { withInterval } from '../assessment/make-answer-card';
 import type { RepairComparison } from '../forecast/compare-assessments';
 import type { CycleForecast, ForecastResult } from '../forecast/forecast';
-import { notToLoad } from '../forecast/forecast-card';
 import type { FrictionInForce } from '../forecast/friction-in-force';
 import type { Table } from '../report/table';
 import { tableFrom } from './tables';
@@ -41,7 +40,11 @@ export function forecastTable({ forecast, pvUnit }: ForecastResult): Table {
     'PV swing',
     'OP swing',
   ] as const;
-  return tableFrom(`Forecasts with 90 % bands. ${notToLoad}`, names, rows);
+  return tableFrom(
+    'Forecasts with 90 % bands; not settings to load, management of change applies',
+    names,
+    rows,
+  );
 }
 
 /** S and J as force and pressure, thrust left, and what the stated packing friction would mean. */
