@@ -315,15 +315,19 @@ function stepTest(basis: TypedValveBasis, limits: ValveTestLimits): Made {
       `The largest step of ${limits.largestStep} % is below the smallest of the series, ${series[0]} %.`,
     );
   }
-  let why = `Steps small enough to resolve S would be more than ${mostSteps} in one direction.`;
+  // Of several reasons the one of the side with more room counts, for the largest of the small steps.
+  let why = '';
   for (const small of [...fitting].reverse()) {
     // Enough to break loose from anywhere in the stick band, and two steps that move it for certain.
     const count = Math.ceil((S + jump) / small) + 2;
-    if (count > mostSteps) break;
+    if (count > mostSteps) {
+      why ||= `Steps small enough to resolve S would be more than ${mostSteps} in one direction.`;
+      break;
+    }
     const reach = count * small;
     for (const { sign, room } of sides(basis, limits)) {
       if (reach > room) {
-        why = `The test has to move OP by ${threeDigits(reach)} % to one side, and the band leaves ${threeDigits(room)} %: OP is too near a limit.`;
+        why ||= `The test has to move OP by ${threeDigits(reach)} % to one side, and the band leaves ${threeDigits(room)} %: OP is too near a limit.`;
         continue;
       }
       const offsets = smallSteps(count, small);
@@ -331,7 +335,7 @@ function stepTest(basis: TypedValveBasis, limits: ValveTestLimits): Made {
       const expectedFor = (far: number, moves: number): Range =>
         pvReach(basis, sign, far, jump, moves * hold);
       if (!inside(expectedFor(reach, offsets.length), limits.pvBand)) {
-        why = 'Steps that show the dead band would move PV out of its band.';
+        why ||= 'Steps that show the dead band would move PV out of its band.';
         continue;
       }
       // Larger steps for the response times, as far as OP and PV leave room: twice up, twice down.
@@ -395,14 +399,14 @@ function rampTest(basis: TypedValveBasis, limits: ValveTestLimits): Made {
   let why = '';
   for (const { sign, room } of sides(basis, limits)) {
     if (reach > room) {
-      why = `A ramp has to move OP by ${threeDigits(reach)} % to one side, and the band leaves ${threeDigits(room)} %: OP is too near a limit.`;
+      why ||= `A ramp has to move OP by ${threeDigits(reach)} % to one side, and the band leaves ${threeDigits(room)} %: OP is too near a limit.`;
       continue;
     }
     const moves = [reach, 0, reach, 0].map((offset): PlannedMove => ({ op: op + sign * offset, rate, hold }));
     const duration = moves.length * (reach / rate + hold);
     const expectedPv = pvReach(basis, sign, reach, jump, duration);
     if (!inside(expectedPv, limits.pvBand)) {
-      why = 'A ramp that shows the dead band would move PV out of its band.';
+      why ||= 'A ramp that shows the dead band would move PV out of its band.';
       continue;
     }
     const test: PlannedTest = {
