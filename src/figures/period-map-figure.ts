@@ -4,13 +4,14 @@ import { duration } from '../assessment/make-answer-card';
 import { type AuditFindings, type RankedFindings, roleOf } from '../audit/audit-findings';
 import type { Figure } from './figure';
 import { axis, axisTitle, makeFigure, panelName, plainText, wrapped } from './layout';
-import { palette } from './palette';
+import { fontSize, palette } from './palette';
 import { plain, short } from './plain-numbers';
 import { verdictMarks } from './verdict-marks';
 
 /** Rows that can be read on one figure (own choice). */
-const mostRows = 60;
-const rowHeight = 22;
+const mostRows = 100;
+/** From so many rows on they stand closer, and the periods are written above them as well. */
+const manyRows = 30;
 /** Characters of a tag that fit beside a figure 350 px wide. */
 const tagWidth = 18;
 
@@ -29,6 +30,9 @@ export function periodMapFigure({ audit, ranked }: AuditFindings): Figure | null
   const verdicts = (Object.keys(verdictMarks) as Verdict[]).filter((verdict) =>
     rows.some(({ assessment }) => assessment.cause.verdict === verdict),
   );
+  const many = rows.length >= manyRows;
+  const rowHeight = many ? 15 : 22;
+  const ticks = periodTicks(from, to);
   const sources = rows.flatMap((loop, row) => (roleOf(loop) === 'likely source' ? [{ loop, row }] : []));
 
   const data: object[] = verdicts.map((verdict) => {
@@ -45,10 +49,10 @@ export function periodMapFigure({ audit, ranked }: AuditFindings): Figure | null
       text: here.map(({ loop }) => hoverText(loop)),
       marker: {
         symbol,
-        size: 11,
+        size: many ? 8 : 11,
         opacity: 1,
         color: filled ? color : palette.paper,
-        line: { color, width: 2.2 },
+        line: { color, width: many ? 1.8 : 2.2 },
       },
       hovertemplate: '%{text}<extra></extra>',
     };
@@ -62,7 +66,7 @@ export function periodMapFigure({ audit, ranked }: AuditFindings): Figure | null
       y: sources.map(({ row }) => row),
       marker: {
         symbol: 'circle-open',
-        size: 21,
+        size: many ? 15 : 21,
         color: palette.ink,
         line: { color: palette.ink, width: 1.6 },
       },
@@ -87,12 +91,12 @@ export function periodMapFigure({ audit, ranked }: AuditFindings): Figure | null
       'A likely source is read from operating data and has to be confirmed on site.',
     ],
     data,
-    annotations: [panelName('loops that cycle', 'y')],
+    annotations: many ? ticksAbove(ticks) : [panelName('loops that cycle', 'y')],
     layout: {
       xaxis: axis({
         type: 'log',
         range: plain([Math.log10(from), Math.log10(to)]),
-        ...periodTicks(from, to),
+        ...ticks,
         title: axisTitle('period'),
         tickangle: 0,
       }),
@@ -102,6 +106,7 @@ export function periodMapFigure({ audit, ranked }: AuditFindings): Figure | null
         ticktext: rows.map((loop) => rowName(loop)),
         fixedrange: true,
         ticks: '',
+        tickfont: { size: many ? fontSize.small - 2 : fontSize.small },
       }),
       shapes: groups.map(({ loops }) => ground(loops, rows)),
     },
@@ -163,13 +168,18 @@ function ground(loops: readonly string[], rows: readonly RankedFindings[]): obje
     y1: mine[mine.length - 1]! + 0.44,
     layer: 'below',
     fillcolor: palette.grid,
-    opacity: 0.75,
+    opacity: 0.45,
     line: { width: 0 },
   };
 }
 
+interface Ticks {
+  readonly tickvals: readonly number[];
+  readonly ticktext: readonly string[];
+}
+
 /** Steps of 1, 2 and 5 in the unit in which a period is read, as long as they are few enough to stand side by side. */
-function periodTicks(from: number, to: number): object {
+function periodTicks(from: number, to: number): Ticks {
   const steps = [
     1, 2, 5, 10, 20, 30, 60, 120, 300, 600, 1200, 1800, 3600, 7200, 18_000, 36_000, 86_400, 259_200,
   ];
@@ -177,7 +187,23 @@ function periodTicks(from: number, to: number): object {
   const values = within.length >= 2 ? within : [Math.min(from * 1.5, to), to / 1.5];
   const by = Math.ceil(values.length / 6);
   const kept = values.filter((_, i) => i % by === 0);
-  return { tickvals: plain(kept), ticktext: kept.map(inShort) };
+  return { tickvals: kept, ticktext: kept.map(inShort) };
+}
+
+/** The same ticks at the upper end of the plot, for one that is too tall to be seen at once. */
+function ticksAbove({ tickvals, ticktext }: Ticks): object[] {
+  return tickvals.map((period, i) => ({
+    // Places on a logarithmic axis are powers of ten.
+    x: Math.log10(period),
+    xref: 'x',
+    y: 1,
+    yref: 'paper',
+    yanchor: 'bottom',
+    yshift: 2,
+    showarrow: false,
+    text: ticktext[i],
+    font: { size: fontSize.small, color: palette.ink },
+  }));
 }
 
 function inShort(seconds: number): string {

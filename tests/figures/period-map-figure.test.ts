@@ -36,13 +36,16 @@ describe('periodMapFigure', () => {
   });
 
   it('keeps to the first of the ranking where more cycle than can be read, whole groups, and stamps how many are left', () => {
-    const large = largeUnit(120);
+    const large = largeUnit(180);
     const figure = periodMapFigure(large)!;
     expectSound(figure);
     const { yaxis, annotations, shapes } = figure.layout as unknown as Layout;
-    expect(yaxis.ticktext).toHaveLength(60);
-    expect(shapes).toHaveLength(20);
+    expect(yaxis.ticktext).toHaveLength(100);
+    expect(shapes).toHaveLength(30);
     expect(annotations.map(({ text }) => text).join()).toContain('20 more loops cycle');
+    // Too tall to be seen at once: the periods stand above as well, at powers of ten on the logarithmic axis.
+    const minute = annotations.find(({ text }) => text === '1 min') as { x: number } | undefined;
+    expect(minute?.x).toBeCloseTo(Math.log10(60), 6);
   });
 
   it('shortens a long tag, and shows it as it stands', () => {
