@@ -48,15 +48,16 @@ export const componentStyle: string = `
 .sb-table table td { overflow-wrap: break-word; }
 .sb-table table .sb-number { text-align: right; font-variant-numeric: tabular-nums; }
 .sb-unit { --edge: ${palette.ink}; } .sb-unit ol { margin: 0 0 .5em; padding-left: 1.4em; } .sb-unit a, .sb-whole a { color: inherit; }
-.sb-ranked { container-type: inline-size; background: ${palette.paper}; padding: 0 .6em; } .sb-ranked table { width: 100%; border-collapse: collapse; }
+.sb-ranked { container-type: inline-size; background: ${palette.paper}; } .sb-ranked table { width: 100%; border-collapse: collapse; }
 .sb-table.sb-ranked table th, .sb-table.sb-ranked table td { padding: .35em .7em .35em 0; } .sb-ranked > table > tbody > tr > td { white-space: nowrap; }
+.sb-table.sb-ranked > table > thead th:first-child, .sb-table.sb-ranked > table > tbody > tr:first-child > td:first-child { padding-left: .6em; }
 .sb-ranked .sb-note { font-size: .88em; color: ${palette.faint}; }
 .sb-ranked thead th { vertical-align: bottom; } .sb-ranked th button { all: unset; cursor: pointer; font-weight: 600; border-bottom: 1px dotted ${palette.faint}; }
 .sb-ranked th button:focus-visible { outline: 2px solid ${palette.pv}; } .sb-ranked th[aria-sort] button { border-bottom-style: solid; }
 .sb-ranked th[aria-sort="descending"] button::after { content: " \\2193"; } .sb-ranked th[aria-sort="ascending"] button::after { content: " \\2191"; }
 .sb-table.sb-ranked > table > tbody > tr:first-child > td { border-bottom: 0; padding-bottom: 0; }
-.sb-table.sb-ranked > table > tbody > .sb-more > td { max-width: none; padding: 0 0 .6em; border-bottom: 1px solid ${palette.grid}; white-space: normal; }
-.sb-more > td > details { position: sticky; left: 0; max-width: 90vw; max-width: 100cqi; } .sb-more summary { cursor: pointer; }
+.sb-table.sb-ranked > table > tbody > .sb-more > td { max-width: none; padding: 0 .6em .6em; border-bottom: 1px solid ${palette.grid}; white-space: normal; }
+.sb-more > td > details { position: sticky; left: .6em; max-width: 90vw; max-width: calc(100cqi - 1.2em); } .sb-more summary { cursor: pointer; }
 .sb-whole { scroll-margin-top: 8em; margin: .6em 0; padding: .7em 1em; background: #f7f5f0; overflow-wrap: anywhere; white-space: normal; }
 .sb-whole h3, .sb-whole h4 { font-size: 1em; margin: 0 0 .3em; } .sb-whole h3 { font-size: 1.12em; margin-bottom: .6em; }
 .sb-whole p, .sb-whole ul, .sb-whole ol { margin: 0 0 .5em; } .sb-whole ul, .sb-whole ol { padding-left: 1.15em; } .sb-whole li { margin-bottom: .25em; }
