@@ -15,8 +15,7 @@ export function forecastTrendFigure(result: ForecastResult, record: LoopRecord):
   const { traces } = forecast;
   const seconds = traces.now.pv.length * traces.step;
   const samples = Math.min(record.pv.length, Math.round(seconds / record.samplePeriod));
-  const from = Math.floor((record.pv.length - samples) / 2);
-  const part = (values: Float64Array): Float64Array => values.subarray(from, from + samples);
+  const part = (values: Float64Array): Float64Array => values.subarray(0, samples);
   const minutes = seconds >= 300;
   const perUnit = minutes ? 60 : 1;
   const line = (
@@ -53,7 +52,7 @@ export function forecastTrendFigure(result: ForecastResult, record: LoopRecord):
   return makeFigure({
     id: 'forecast-trend',
     title: `${loop}: recorded and simulated`,
-    caption: `The middle of the record over ${duration(seconds)}, and the simulated loop over as long. Phase is by chance and noise is drawn anew, so compare period, height and shape, not moments.`,
+    caption: `The first ${duration(seconds)} of the record, and the simulated loop over as long. Phase is by chance and noise is drawn anew, so compare period, height and shape, not moments.`,
     alt: `PV and OP of ${loop} as recorded, as simulated today and as simulated with the valve repaired, ${duration(seconds)} each.`,
     caveats: ['Forecast from operating data, not a test.'],
     data: [

@@ -3,7 +3,7 @@
  * being the two-parameter valve's gain for a sine of amplitude X.
  *
  * Rough by nature, as a stick-slip cycle is far from a sine: on a published concentration loop OP swing 13-18 % low and
- * period 14-39 % high against simulation, on a published level loop within about 10 % (own simulations).
+ * period 14-40 % high against simulation, on a published level loop within about 12 % (own simulations).
  */
 import { type ComplexGain, describingFunction } from '../valve/describing-function';
 import type { BalanceForecast } from './forecast';
@@ -54,41 +54,43 @@ export function controllerResponse({ controller }: BalanceLoop, w: number): Comp
 const amplitudes = Array.from({ length: 160 }, (_, i) => 1.0005 * 100 ** (i / 159));
 
 /**
- * Period and swings where L(jw) N(X) = -1, of the largest X at which the cycle is stable (the loop answers a larger
- * one with less than 1); null where there is none.
+ * Period and swings of the stable solution of L(jw) N(X) = -1, that of the largest X; null where there is none.
+ *
+ * Where the phase falls through half a turn, a cycle is stable when a larger one is answered with less than 1; where
+ * it rises through it, as under integral action on an integrating process, when it is answered with more.
  *
  * @param S dead band plus stick band, % of OP span, above 0
  * @param J slip jump, %
  */
 export function balanceCycle(loop: BalanceLoop, S: number, J: number): BalanceForecast | null {
   if (!(S > 0)) return null;
-  let before: { X: number; w: number; size: number } | null = null;
+  const last: Partial<Record<Crossing['way'], { X: number; w: number; size: number }>> = {};
   let found: { X: number; w: number } | null = null;
   for (const multiple of amplitudes) {
     const X = (multiple * S) / 2;
     const N = describingFunction(X, S, Math.min(J, S));
-    const w = crossing(loop, N);
-    if (w === null) {
-      before = null;
-      continue;
+    const met = crossings(loop, N);
+    for (const way of ['rises', 'falls'] as const) {
+      const w = met.find((crossing) => crossing.way === way)?.w;
+      const before = last[way];
+      last[way] = w === undefined ? undefined : { X, w, size: abs(open(loop, N, w)) };
+      const now = last[way];
+      if (before === undefined || now === undefined) continue;
+      const passes = way === 'falls' ? before.size >= 1 && now.size < 1 : before.size < 1 && now.size >= 1;
+      if (!passes) continue;
+      const share = Math.log(before.size) / Math.log(before.size / now.size);
+      found = { X: before.X * (X / before.X) ** share, w: before.w * (now.w / before.w) ** share };
     }
-    const size = abs(open(loop, N, w));
-    if (before !== null && before.size >= 1 && size < 1) {
-      const share = Math.log(before.size) / Math.log(before.size / size);
-      found = {
-        X: before.X * (X / before.X) ** share,
-        w: before.w * (w / before.w) ** share,
-      };
-    } else if (before === null && multiple === amplitudes[0] && size < 1 && J > 0) {
-      // The locus of -1/N begins inside: the smallest swing that moves the valve already decays, no cycle.
-      return null;
-    }
-    before = { X, w, size };
   }
   if (found === null) return null;
   const { X, w } = found;
   const flow = abs(times(describingFunction(X, S, Math.min(J, S)), processResponse(loop, w)));
   return { period: (2 * Math.PI) / w, opSwing: 2 * X, pvSwing: 2 * X * flow };
+}
+
+interface Crossing {
+  readonly w: number;
+  readonly way: 'falls' | 'rises';
 }
 
 const abs = ({ re, im }: ComplexGain): number => Math.hypot(re, im);
@@ -97,8 +99,8 @@ function open(loop: BalanceLoop, N: ComplexGain, w: number): ComplexGain {
   return times(times(processResponse(loop, w), controllerResponse(loop, w)), N);
 }
 
-/** Frequency at which the loop with the valve at this amplitude is half a turn behind, unwrapped from low frequencies. */
-function crossing(loop: BalanceLoop, N: ComplexGain): number | null {
+/** Frequencies at which the loop with the valve at this amplitude is half a turn behind, rising from low ones. */
+function crossings(loop: BalanceLoop, N: ComplexGain): Crossing[] {
   const slowest = 1e-4 / (loop.deadTime + loop.scanPeriod + loop.lags.reduce((a, b) => a + b, 0));
   const fastest = Math.PI / loop.scanPeriod;
   const steps = 400;
@@ -107,17 +109,17 @@ function crossing(loop: BalanceLoop, N: ComplexGain): number | null {
     const { re, im } = open(loop, N, w);
     return Math.atan2(im, re);
   };
-  let turned = angle(at(0));
-  if (turned > 0) turned -= 2 * Math.PI;
-  let last = turned;
+  const found: Crossing[] = [];
+  let last = angle(at(0));
+  if (last > 0) last -= 2 * Math.PI;
   for (let i = 1; i <= steps; i++) {
     let now = angle(at(i));
     now -= 2 * Math.PI * Math.round((now - last) / (2 * Math.PI));
-    if (last > -Math.PI && now <= -Math.PI) {
+    if (last > -Math.PI !== now > -Math.PI) {
       const share = (last + Math.PI) / (last - now);
-      return at(i - 1) * (at(i) / at(i - 1)) ** share;
+      found.push({ w: at(i - 1) * (at(i) / at(i - 1)) ** share, way: now < last ? 'falls' : 'rises' });
     }
     last = now;
   }
-  return null;
+  return found;
 }
