@@ -31,7 +31,7 @@ export {
   type RunOptions,
 } from './audit/audit-loops';
 export { type GroupOptions, groupLoops } from './audit/group-loops';
-export { mergeAudits } from './audit/merge-audits';
+export { type MergedRun, mergeAudits, mergedRun } from './audit/merge-audits';
 export {
   type RankingRule,
   type RankOptions,
@@ -39,6 +39,7 @@ export {
   rankLoops,
   type SeverityPart,
 } from './audit/rank-loops';
+export { readAuditPart } from './audit/read-part';
 export type { Shard } from './audit/shard';
 export type { CycleClock, LoopPicture, LoopSignature } from './audit/signature';
 export { draftMap } from './audit/sources/draft-map';

@@ -1,7 +1,15 @@
 /** Puts the shards of an audit together again. Groups and ranking are made anew from all loops. */
 import { WrongUse } from '../errors';
 import { type AssembleOptions, assembleAudit } from './assemble-audit';
-import type { Audit, AuditPart } from './audit';
+import type { Audit, AuditPart, AuditProvenance, FinishedLoop } from './audit';
+
+/** All loops of an audit whose shards ran on their own, before anything is made of them. */
+export interface MergedRun {
+  readonly loops: readonly FinishedLoop[];
+  readonly provenance: AuditProvenance;
+  /** Empty: each shard told its own. */
+  readonly leftOut: readonly string[];
+}
 
 /**
  * The same audit, byte for byte as JSON, that one run over all loops gives. The order of the parts does not matter.
@@ -9,6 +17,12 @@ import type { Audit, AuditPart } from './audit';
  * @throws WrongUse when parts are missing, given twice, or those of different audits
  */
 export function mergeAudits(parts: readonly AuditPart[], options: AssembleOptions = {}): Audit {
+  const { loops, provenance } = mergedRun(parts);
+  return assembleAudit(loops, provenance, options);
+}
+
+/** As {@link mergeAudits}, which makes the audit of it; for `auditFindings`. */
+export function mergedRun(parts: readonly AuditPart[]): MergedRun {
   const [first] = parts;
   if (first === undefined) throw new WrongUse('There are no parts to merge.');
   for (const part of parts) checkSame(first, part);
@@ -29,7 +43,7 @@ export function mergeAudits(parts: readonly AuditPart[], options: AssembleOption
       `The parts hold ${loops.length} loops, but the audit has ${first.allLoops}: a part was changed. Run its shard again.`,
     );
   }
-  return assembleAudit(loops, first.provenance, options);
+  return { loops, provenance: first.provenance, leftOut: [] };
 }
 
 function checkSame(first: AuditPart, part: AuditPart): void {

@@ -5,7 +5,7 @@ import type { RunOptions } from '../audit/audit-loops';
 import type { ListedLoop } from '../audit/loop-job';
 import type { Jupyter } from '../report/jupyter';
 import { bundledNotebook } from '../report/places';
-import { type Rendered, renderNotebook } from '../report/render-notebook';
+import { type Rendered, type Rendering, renderNotebook } from '../report/render-notebook';
 import { stated } from './arguments';
 import { fileName } from './file-name';
 
@@ -39,15 +39,39 @@ export async function renderAudit(audit: AuditPages): Promise<Rendered> {
     pages[tag] = await renderLoop(loop, audit);
   }
   const { map, reading, seed } = options;
-  return renderNotebook(bundledNotebook('audit-a-unit.ipynb'), {
+  return renderAuditNotebook({
     jupyter,
     folder,
-    name: 'audit',
-    title: `Audit of ${name}`,
+    name,
     files: { source, folder, ...(map === undefined ? {} : { map }) },
     parameters: { auditing: stated({ reading, seed, retry: false }), pages },
     onProgress: (done) => onProgress('rendering the notebook', (chosen.length + done) / steps),
   });
+}
+
+/** The guided notebook of a whole audit and its page, `audit.ipynb` and `audit.html`. Throws UnwritableOutput. */
+export function renderAuditNotebook({ name, ...rendering }: Omit<Rendering, 'title'>): Promise<Rendered> {
+  return renderNotebook(bundledNotebook('audit-a-unit.ipynb'), {
+    ...rendering,
+    name: 'audit',
+    title: `Audit of ${name}`,
+  });
+}
+
+export interface MadeFiles {
+  readonly rendered: Rendered | null;
+  readonly sheet: string | null;
+  readonly numbers: readonly string[];
+}
+
+/** Lines that say where the files of an audit are, after an empty one; none when there are none. */
+export function madeFiles({ rendered, sheet, numbers }: MadeFiles): string[] {
+  const made = [
+    ...(rendered ? [`Page to share:  ${rendered.page}`, `Notebook:       ${rendered.notebook}`] : []),
+    ...(sheet ? [`Table (CSV):    ${sheet}`] : []),
+    ...numbers.map((path) => `Numbers (JSON): ${path}`),
+  ];
+  return made.length > 0 ? ['', ...made] : [];
 }
 
 /** Path of the page of one loop, relative to that of the audit. */

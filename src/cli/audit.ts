@@ -21,7 +21,7 @@ import { defaultOutFolder } from '../report/places';
 import type { Rendered } from '../report/render-notebook';
 import { prepareFolder, writeWhole } from '../report/write-whole';
 import { numberOption, readArguments, stated, wholeOption } from './arguments';
-import { renderAudit } from './audit-pages';
+import { madeFiles, renderAudit } from './audit-pages';
 import { draftMapTo } from './draft-map';
 import { fileName } from './file-name';
 import { auditHelp } from './help';
@@ -134,12 +134,7 @@ export async function audit(words: readonly string[], output: Output): Promise<v
   const summary = findings
     ? auditText(findings.audit)
     : `Shard ${run.shard} of ${run.of}: ${run.loops.length} of ${run.allLoops} loops. "stickband merge" puts the shards together.`;
-  const made = [
-    ...(rendered ? [`Page to share:  ${rendered.page}`, `Notebook:       ${rendered.notebook}`] : []),
-    ...(sheet ? [`Table (CSV):    ${sheet}`] : []),
-    ...numbers.map((path) => `Numbers (JSON): ${path}`),
-  ];
-  const lines = [summary, ...(made.length > 0 ? ['', ...made] : [])];
+  const lines = [summary, ...madeFiles({ rendered, sheet, numbers })];
   (jsonAlone ? output.stderr : output.stdout).write(`${lines.join('\n')}\n`);
   if (jsonAlone) output.stdout.write(json);
 }

@@ -80,12 +80,15 @@ How it runs.
   --seed N             seed of the random numbers (default 1); equal seeds give equal results
   --help               this text`;
 
-export const mergeHelp: string = `stickband merge PART... --json FILE|-
+export const mergeHelp: string = `stickband merge PART... --json FILE|- [--out DIR]
 
 Joins all shards of one audit (audit-part-I-of-N.json) into the audit that one run would have given, byte for
 byte. Groups and ranking are made anew from all loops.
 
   --json FILE|-        where the audit goes; with "-" stdout holds JSON alone and the rest goes to stderr
+  --out DIR            folder for the audit (JSON and CSV), its notebook and page; --json may then be left out
+  --no-notebook        neither notebook nor page
+  --install            set up Jupyter when it is missing: with pip in .venv, or Debian's packages for root
   --help               this text`;
 
 export const notebookHelp: string = `stickband notebook [--install]
@@ -114,6 +117,7 @@ What is known of the test and the valve. Everything is optional; what is not sta
   --response R         self-regulating or integrating, for tests that are read from PV
   --period S           for a hold without cycles before it: period of the cycle, s,
   --swing X            and peak-to-peak swing of PV, as the assessment found them
+  --lag S              for strokes without pressure: lag of the actuator, s, e.g. the T63 of a step test
   --pressure-unit U    unit of the pressure, e.g. kPa
   --stroke "40 mm"     rated travel, and
   --area "645 cm2"     effective area of the actuator: friction is then given as a force too

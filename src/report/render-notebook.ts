@@ -18,7 +18,7 @@ export interface Rendering {
   /** Title of the page. */
   readonly title: string;
   /** Files and folders that the notebook needs; each reaches it as a parameter, relative to the folder it works in. */
-  readonly files: Readonly<Record<string, string>>;
+  readonly files: Readonly<Record<string, string | readonly string[]>>;
   /** Further parameters of the notebook. */
   readonly parameters: Readonly<Record<string, unknown>>;
   readonly onProgress?: (share: number) => void;
@@ -36,10 +36,11 @@ export async function renderNotebook(template: string, rendering: Rendering): Pr
   const source: Notebook = JSON.parse(readFileSync(template, 'utf8'));
   const workingFolder = importsThisPackage(rendering.folder) ? rendering.folder : dirname(template);
   const from = realpathSync(workingFolder);
+  const fromThere = (path: string): string => relative(from, realpathSync(path)).split(sep).join('/') || '.';
   const files = Object.fromEntries(
-    Object.entries(rendering.files).map(([name, path]) => [
+    Object.entries(rendering.files).map(([name, paths]) => [
       name,
-      relative(from, realpathSync(path)).split(sep).join('/') || '.',
+      typeof paths === 'string' ? fromThere(paths) : paths.map(fromThere),
     ]),
   );
   const executed = await runNotebook(withParameters(source, { ...files, ...rendering.parameters }), {

@@ -91,6 +91,11 @@ describe('stickband audit', () => {
     const written = await captured('merge', ...parts, '--json', json);
     expect(readFileSync(json, 'utf8')).toBe(whole.stdout);
     expect(written.stdout).toMatch(/^5 loops: 4 cannot-tell, 1 failed\./);
+
+    const folder = join(out, 'with-sheet');
+    expect((await captured('merge', ...parts, '--out', folder, '--no-notebook')).code).toBe(0);
+    expect(readdirSync(folder).sort()).toEqual(['audit.csv', 'audit.json']);
+    expect(readFileSync(join(folder, 'audit.json'), 'utf8')).toBe(whole.stdout);
   });
 
   it('applies to all files what is stated of them', async () => {
@@ -123,6 +128,19 @@ describe('stickband audit', () => {
       stderr: Object.assign(stderr, { once() {}, removeListener() {} }),
     });
     expect(shown).toMatch(/% {2}\d of 5 loops/);
+  });
+
+  it('says where --pages cannot be had', async () => {
+    const out = scratchFolder();
+    expect((await audit(unit, '--out', out, '--pages', '2')).stderr).toMatch(
+      /not with --no-notebook, not for a shard/,
+    );
+    const withMap = await captured('audit', unit, '--map', 'map.csv', '--pages', '2', '--out', out);
+    expect(withMap).toMatchObject({
+      code: 2,
+      stderr: expect.stringMatching(/--pages needs one file a loop/),
+    });
+    expect(readdirSync(out)).toEqual([]);
   });
 
   it.each([
@@ -170,7 +188,7 @@ describe('stickband merge', () => {
 
   it.each([
     [['--json', '-'], /takes the parts of one audit; none was received/],
-    [['a.json'], /needs --json FILE/],
+    [['a.json'], /needs --json FILE, or --json - for stdout, or --out DIR/],
     [
       [join(folder, 'none.json'), '--json', '-'],
       /The part ".*none\.json" cannot be read: there is no such file/,

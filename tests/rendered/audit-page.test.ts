@@ -131,6 +131,22 @@ describe('the notebook of an audit', () => {
     expect(readdirSync(join(out, 'loops'))).toHaveLength(2);
   });
 
+  it('is made of merged shards as well, without their records', async () => {
+    const parts = join(folder, 'parts');
+    for (const shard of ['1/2', '2/2']) {
+      const words = [unit, '--out', parts, '--shard', shard, '--workers', '0'];
+      expect((await captured('audit', ...words)).code).toBe(0);
+    }
+    const named = [1, 2].map((shard) => join(parts, `audit-part-${shard}-of-2.json`));
+    const { code } = await captured('merge', ...named, '--out', join(folder, 'merged'));
+    expect(code).toBe(0);
+    const merged = (name: string): string => readFileSync(join(folder, 'merged', name), 'utf8');
+    expect(merged('audit.json')).toBe(readFileSync(join(out, 'audit.json'), 'utf8'));
+    const page = merged('audit.html');
+    for (const { loop } of audit.ranking) expect(page).toContain(`<strong>${loop}</strong>`);
+    expect(page).toContain(escapeHtml(auditCard(audit).headline));
+  });
+
   it('holds no outputs as it is kept', () => {
     const kept: Notebook = JSON.parse(readFileSync('notebooks/audit-a-unit.ipynb', 'utf8'));
     for (const cell of kept.cells)
