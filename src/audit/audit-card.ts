@@ -7,6 +7,8 @@ import { hasFailed } from './audit';
 export interface AuditCard {
   /** How many cycle, and what to look at first. */
   readonly headline: string;
+  /** The time that the records cover; '' when none was read. */
+  readonly records: string;
   /** How many loops have which cause. */
   readonly counts: string;
   readonly figures: readonly { readonly label: string; readonly value: string; readonly note: string }[];
@@ -37,6 +39,7 @@ export function auditCard({ loops, groups, ranking, cautions }: Audit): AuditCar
   };
   return {
     headline: headline(cycling, assessed.length, failed, worth),
+    records: recordsInWords(assessed),
     counts: countsInWords(loops),
     figures: [
       { label: 'Loops that cycle', value: `${cycling} of ${assessed.length}`, note: 'of those assessed' },
@@ -59,6 +62,17 @@ export function auditCard({ loops, groups, ranking, cautions }: Audit): AuditCar
     ],
     cautions,
   };
+}
+
+function recordsInWords(assessed: readonly Assessment[]): string {
+  if (assessed.length === 0) return '';
+  const starts = assessed.map(({ record }) => Date.parse(record.start));
+  const ends = assessed.map(
+    ({ record }, i) => starts[i]! + 1000 * record.samplePeriod * (record.samples - 1),
+  );
+  const [from, to] = [Math.min(...starts), Math.max(...ends)].map((ms) => new Date(ms).toISOString());
+  const inWords = (iso: string): string => `${iso.slice(0, 10)} ${iso.slice(11, 16)}`;
+  return `records from ${inWords(from!)} to ${inWords(to!)} UTC`;
 }
 
 /** How many loops have which cause, the most frequent first. */

@@ -50,9 +50,14 @@ export async function renderAudit(audit: AuditPages): Promise<Rendered> {
 }
 
 /** The guided notebook of a whole audit and its page, `audit.ipynb` and `audit.html`. Throws UnwritableOutput. */
-export function renderAuditNotebook({ name, ...rendering }: Omit<Rendering, 'title'>): Promise<Rendered> {
+export function renderAuditNotebook({
+  name,
+  parameters,
+  ...rendering
+}: Omit<Rendering, 'title'>): Promise<Rendered> {
   return renderNotebook(bundledNotebook('audit-a-unit.ipynb'), {
     ...rendering,
+    parameters: { unit: name, ...parameters },
     name: 'audit',
     title: `Audit of ${name}`,
   });

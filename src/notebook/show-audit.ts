@@ -6,9 +6,21 @@ import { auditCardHtml, groupsHtml } from '../report/audit-html';
 import { type RankedTableLook, rankedTableHtml } from '../report/audit-table';
 import { showHtml } from './kernel-display';
 
-/** Shows the answer to the whole unit: how many loops cycle, what to look at first, what cycles together. */
-export async function showAuditAnswer({ audit }: AuditFindings): Promise<void> {
-  await showHtml(auditCardHtml(auditCard(audit)));
+export interface ShowAuditOptions {
+  /** What was audited, as its people call it. Default: not named. */
+  readonly unit?: string;
+}
+
+/**
+ * Shows the answer to the whole unit: how many loops cycle, what to look at first, what cycles together. Throws
+ * WrongUse for an unknown option.
+ */
+export async function showAuditAnswer(
+  { audit }: AuditFindings,
+  options: ShowAuditOptions = {},
+): Promise<void> {
+  refuseUnknownOptions('showAuditAnswer', options, ['unit']);
+  await showHtml(auditCardHtml(auditCard(audit), options.unit ?? ''));
 }
 
 /**

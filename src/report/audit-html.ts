@@ -1,12 +1,16 @@
 /** The answer to a whole unit as HTML. It reads in order without any style sheet, as in a notebook that is not trusted. */
 
 import type { LoopGroup } from '../audit/audit';
-import type { AuditCard } from '../audit/audit-card';
-import { groupSentence } from '../audit/audit-card';
+import { type AuditCard, groupSentence } from '../audit/audit-card';
 import { escapeHtml, listHtml } from './html-text';
 
-/** The card. Each loop that it names first leads to its row of the ranked table, by its place. */
-export function auditCardHtml(card: AuditCard): string {
+/**
+ * The card. Each loop that it names first leads to its row of the ranked table, by its place.
+ *
+ * @param unit what was audited, as its people call it; '' to leave it out
+ */
+export function auditCardHtml(card: AuditCard, unit: string): string {
+  const about = [unit, card.records].filter((part) => part !== '').join(': ');
   const first = card.first.map(
     ({ loop, line }, i) =>
       `<li><a href="#${loopAnchor(i + 1)}"><strong>${escapeHtml(loop)}</strong></a> ${escapeHtml(line)}</li>`,
@@ -17,6 +21,7 @@ export function auditCardHtml(card: AuditCard): string {
   );
   return [
     '<section class="sb-card sb-unit">',
+    about === '' ? '' : `<p class="sb-kicker">${escapeHtml(about)}</p>`,
     `<h2>${escapeHtml(card.headline)}</h2>`,
     `<p class="sb-cause">${escapeHtml(card.counts)}</p>`,
     '<div class="sb-columns">',

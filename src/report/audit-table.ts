@@ -214,7 +214,7 @@ function indicatorSentences(evidence: readonly Evidence[]): string[] {
   });
 }
 
-export function verdictHtml(verdict: Assessment['cause']['verdict']): string {
+function verdictHtml(verdict: Assessment['cause']['verdict']): string {
   const { sign, color } = verdictMarks[verdict];
   return `<span style="color: ${color}" aria-hidden="true">${sign}</span> ${verdict}`;
 }

@@ -204,7 +204,7 @@ async function pageWith(unit: AuditFindings): Promise<string> {
   const [picture] = await staticPictures([figure]);
   const parts = [
     `<style>${componentStyle}</style>\n${figureLibraryHtml()}`,
-    auditCardHtml(auditCard(unit.audit)),
+    auditCardHtml(auditCard(unit.audit), ''),
     rankedTableHtml(unit.ranked),
     figureHtml(figure, picture!),
     groupsHtml(unit.audit.groups),

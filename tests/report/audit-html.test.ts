@@ -12,7 +12,7 @@ describe('the answer to a unit as HTML', () => {
 
   it('leads from each loop that it names first to the place where that loop is told in full', () => {
     const card = auditCard(audit);
-    const html = auditCardHtml(card);
+    const html = auditCardHtml(card, 'Area 31');
     const table = rankedTableHtml(ranked);
     const links = [...html.matchAll(/<a href="#([^"]+)"><strong>([^<]+)/g)].map(([, id, loop]) => [id, loop]);
     expect(links.map(([, loop]) => loop)).toEqual(card.first.map(({ loop }) => loop));
@@ -20,13 +20,14 @@ describe('the answer to a unit as HTML', () => {
       const body = table.split('<tbody').find((part) => part.includes(`id="${id}"`))!;
       expect(body).toContain(`<strong>${loop}</strong>`);
     }
+    expect(html).toContain('Area 31: records from 2026-03-10 06:00 to 2026-03-10 06:39 UTC');
     for (const caution of cautions) expect(html).toContain(escapeHtml(caution));
   });
 
   it('escapes what comes from outside', () => {
     const card = { ...auditCard(audit), together: ['<b>'], first: [{ loop: '<i>', line: 'a & b' }] };
-    expect(auditCardHtml(card)).toContain('&lt;i&gt;</strong></a> a &amp; b');
-    expect(auditCardHtml(card)).not.toContain('<b>');
+    expect(auditCardHtml(card, '<u>')).toContain('&lt;i&gt;</strong></a> a &amp; b');
+    expect(auditCardHtml(card, '<u>')).not.toMatch(/<[bu]>/);
   });
 
   it('unfolds the reasons of a few groups, and folds those of many', () => {
