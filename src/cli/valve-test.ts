@@ -24,6 +24,7 @@ const optionTypes = {
   area: 'string',
   period: 'string',
   swing: 'string',
+  lag: 'string',
   'time-format': 'string',
   zone: 'string',
   json: 'string',
@@ -61,7 +62,7 @@ export async function valveTest(words: readonly string[], output: Output): Promi
 /** Only what was stated. */
 function optionsOf(values: Given): ReadValveTestOptions {
   const { tag, kind, response, time, op, travel, pv, pressure, mode, stroke, area, zone } = values;
-  const number = (name: 'period' | 'swing'): number | undefined =>
+  const number = (name: 'period' | 'swing' | 'lag'): number | undefined =>
     values[name] === undefined ? undefined : numberOption(name, values[name]);
   const all: ReadValveTestOptions = {
     tag,
@@ -81,6 +82,7 @@ function optionsOf(values: Given): ReadValveTestOptions {
     area,
     period: number('period'),
     swing: number('swing'),
+    lag: number('lag'),
     timeFormat: values['time-format'],
     zone,
   };

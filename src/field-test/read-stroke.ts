@@ -61,12 +61,13 @@ export const slowPace = 1.5;
 /** Slips after the first movement that the fit of S and J counts (own choice). */
 const slipsCounted = 2.5;
 
-export function readStroke(record: TestRecord): StrokeFindings {
+/** @param statedLag of the actuator behind the command, s, where no pressure was logged; null when not known */
+export function readStroke(record: TestRecord, statedLag: number | null): StrokeFindings {
   const { op, samplePeriod } = record;
   const travel = record.travel!;
   const notes: Note[] = [];
   const legs = commandLegs(op);
-  const lag = record.pressure ? pressureLag(op, record.pressure, samplePeriod) : null;
+  const lag = record.pressure ? pressureLag(op, record.pressure, samplePeriod) : statedLag;
   const drive = lag === null ? op : lagged(op, lag, samplePeriod);
   let motion = stemMotion(op, drive, 1, travel, legs);
   let line = springLine(drive, travel, motion);
@@ -110,7 +111,7 @@ export function readStroke(record: TestRecord): StrokeFindings {
   } else if (lag > 0.05 * samplePeriod) {
     notes.push({
       code: 'lag-taken-out',
-      text: `The actuator pressure lags ${threeDigits(lag)} s behind the command; this was taken out, as it would look like dead band.`,
+      text: `The actuator lags ${threeDigits(lag)} s behind the command${record.pressure ? ', by its pressure' : ', as stated'}; this was taken out, as it would look like dead band.`,
     });
   }
 
@@ -129,8 +130,8 @@ export function readStroke(record: TestRecord): StrokeFindings {
       travel: now.leg.rest,
     });
   });
-  // A moment within a sample is not known, and strokes alike meet the samples alike; noise averages out.
-  const errors = { each: noise / 2, shared: slowest / Math.sqrt(12) };
+  // Command and travel of one row may be up to half a sample apart, the same way in all strokes: twice that at a turn.
+  const errors = { each: noise / 2, shared: (2 * slowest) / Math.sqrt(12) };
   const deadBand = readings.length > 0 ? meanOf(readings, errors, band) : null;
   if (!deadBand)
     notes.push({ code: 'no-dead-band', text: 'The dead band is not resolved: no reversal moved the stem.' });

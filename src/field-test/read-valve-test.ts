@@ -5,7 +5,7 @@ import type { DataFrameLike } from '../record/data-frame';
 import type { Note } from '../record/loop-record';
 import { mean } from '../signal/statistics';
 import { type ActuatorFriction, type ActuatorSize, actuatorFriction } from './actuator-friction';
-import { kindOf } from './command';
+import { commandLegs, kindOf } from './command';
 import { type HoldFindings, readHold } from './read-hold';
 import { readSteps, type StepsFindings } from './read-steps';
 import { readStroke, type StrokeFindings } from './read-stroke';
@@ -24,6 +24,8 @@ export interface ReadValveTestOptions extends ReadTestOptions {
   /** For a hold without cycles before it: period, s, and peak-to-peak swing of PV as the assessment found them. */
   readonly period?: number;
   readonly swing?: number;
+  /** Lag of the actuator behind the command, s, for strokes without pressure, e.g. the T63 of a step test. Default: not known. */
+  readonly lag?: number;
   /** Effective area of diaphragm or piston with its unit, e.g. `645 cm2`: gives friction as a force. */
   readonly area?: string;
 }
@@ -54,15 +56,22 @@ export function readValveTest(
   source: string | DataFrameLike | TestRecord,
   options: ReadValveTestOptions = {},
 ): ValveTestFindings {
-  refuseUnknownOptions('readValveTest', options, [...readTestOptions, 'kind', 'period', 'swing', 'area']);
-  const { kind: statedKind, period, swing, area, stroke: length, ...forFile } = options;
+  refuseUnknownOptions('readValveTest', options, [
+    ...readTestOptions,
+    'kind',
+    'period',
+    'swing',
+    'lag',
+    'area',
+  ]);
+  const { kind: statedKind, period, swing, lag, area, stroke: length, ...forFile } = options;
   const isRecord = typeof source !== 'string' && 'samplePeriod' in source;
   if (isRecord && Object.keys(forFile).length > 0) {
     throw new WrongUse(
       `Options that say how to read a file (${Object.keys(forFile).join(', ')}) do not go with a record that is read already.`,
     );
   }
-  for (const [name, value] of Object.entries({ period, swing })) {
+  for (const [name, value] of Object.entries({ period, swing, lag })) {
     if (value !== undefined && !(value > 0 && Number.isFinite(value))) {
       throw new WrongUse(`The option "${name}" must be a number above 0. Received ${value}.`);
     }
@@ -71,10 +80,11 @@ export function readValveTest(
   if (statedKind !== undefined && !kinds.includes(statedKind)) {
     throw new WrongUse(`The option "kind" is one of ${kinds.join(', ')}. Received "${statedKind}".`);
   }
-  const record = isRecord
+  const logged = isRecord
     ? (source as TestRecord)
     : readTestRecord(source as string | DataFrameLike, withStroke(forFile, length));
-  const kind = statedKind ?? kindOf(record.op, record.automatic ?? null);
+  const kind = statedKind ?? kindOf(logged.op, logged.automatic ?? null);
+  const record = kind === 'stroke' ? risingWithCommand(logged) : logged;
   const what = record.source;
   const automatic = record.automatic ? mean(record.automatic) : 0;
   if (statedKind === undefined && kind !== 'hold' && automatic > 0.5) {
@@ -92,7 +102,7 @@ export function readValveTest(
   }
   const hold = kind === 'hold' ? readHold(record, period ?? null, swing ?? null) : null;
   const step = kind === 'step' ? readSteps(record) : null;
-  const stroke = kind === 'stroke' ? readStroke(record) : null;
+  const stroke = kind === 'stroke' ? readStroke(record, lag ?? null) : null;
   const found = step ?? stroke;
   const frictionNotes: Note[] = [];
   const size: ActuatorSize = {
@@ -132,6 +142,29 @@ export function readValveTest(
     step,
     stroke,
     friction,
+  };
+}
+
+/** A stroke is read as travel that rises with the command; where it falls it is turned round, with a note. */
+function risingWithCommand(record: TestRecord): TestRecord {
+  const { op, travel } = record;
+  if (travel === null) return record;
+  // By where the stem stands from one turn of the command to the next: a sticky one may lag by more than a quarter cycle.
+  const together = commandLegs(op).reduce(
+    (sum, { from, to, direction }) => sum + direction * (travel[to]! - travel[from]!),
+    0,
+  );
+  if (together >= 0) return record;
+  return {
+    ...record,
+    travel: travel.map((value) => 100 - value),
+    notes: [
+      ...record.notes,
+      {
+        code: 'travel-turned-round',
+        text: 'Travel falls as the command rises; it was turned round, so that 0 % here is what the record calls 100 %.',
+      },
+    ],
   };
 }
 

@@ -70,7 +70,11 @@ export function restNoise(op: Float64Array, values: Float64Array): number {
     if (op[k - 3] === op[k + 1] && op[k - 2] === op[k] && op[k - 1] === op[k]) still.push(Math.abs(bend(k)));
   }
   if (still.length >= fewestStill) {
-    return Math.max(rounded, quantile(Float64Array.from(still), 0.5) / normalMiddle);
+    // The median tells which of them are moves; the others count with their squares, which are surer than a median.
+    const largest = (clearOfNoise * Math.sqrt(6) * quantile(Float64Array.from(still), 0.5)) / normalMiddle;
+    const quietOnes = still.filter((size) => size <= largest);
+    const squares = quietOnes.reduce((total, size) => total + size * size, 0);
+    return Math.max(rounded, Math.sqrt(squares / quietOnes.length / 6));
   }
   const local: number[] = [];
   for (let from = 0; from + quietWindow <= values.length; from += quietWindow) {
@@ -210,7 +214,8 @@ function legMotion(
   const stretches: StemStretch[] = starts.map((_, i) => {
     const a = ends[i]!;
     const b = i + 1 < starts.length ? starts[i + 1]! : to + 1;
-    const level = mean(span(a, b), (k) => travel[k]!);
+    // A slip may take some samples to run out: where the stem comes to rest shows in the later half.
+    const level = mean(span(Math.floor((a + b) / 2), b), (k) => travel[k]!);
     return {
       from: a,
       to: b,
@@ -220,6 +225,8 @@ function legMotion(
       beforeSlip: i + 1 < starts.length,
     };
   });
+  // The jump out of the rest after the turn, by where it ends.
+  if (jump > 0 && stretches[0]!.slides === false) jump = Math.max(0, direction * stretches[0]!.level - rest);
   const slips = stretches.slice(1).map((next, i) => {
     const before = stretches[i]!;
     const endOf = before.slides

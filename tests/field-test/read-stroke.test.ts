@@ -1,6 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { readValveTest } from '../../src/field-test/read-valve-test';
+import { seededRandom } from '../../src/signal/random';
 import { relayFriction } from '../../src/valve/friction-law';
+import { createPositionerStem } from '../../src/valve/positioner-stem';
 import { twoParameterValve } from '../../src/valve/two-parameter';
 import { expectClose } from '../closeness';
 import { areaText, benchRecord, type StrokeCase, testRecord, twelveStrokes } from './records';
@@ -57,6 +59,33 @@ describe('strokes of twelve valves with the stem, noise, sampled every 0.1 to 1 
   });
 });
 
+describe('strokes of 60 more valves', () => {
+  it('keep the tolerances in 19 of 20, and the intervals hold in at least 8 of 10', () => {
+    const cases = [11, 12, 13, 14, 15].flatMap(twelveStrokes);
+    const shares = { deadBand: 0, band: 0, spring: 0, holds: 0 };
+    for (const { S, valve, record } of cases) {
+      const { reading, friction } = readValveTest(record, {
+        area: areaText,
+        stroke: `${1000 * valve.stroke} mm`,
+      });
+      const deadBand = reading.deadBand!;
+      const force = (S * valve.spring * valve.stroke) / 100;
+      const near = (got: number, want: number, allowed: number): number =>
+        Math.abs(got - want) <= allowed ? 1 : 0;
+      shares.deadBand += near(deadBand.value, S, Math.max(0.05 * S, 0.05)) / cases.length;
+      shares.band += near(friction!.frictionBand.force!.value, force, 0.05 * force) / cases.length;
+      shares.spring +=
+        near(friction!.springRate!.value, valve.spring / 1000, 2e-5 * valve.spring) / cases.length;
+      shares.holds += (deadBand.low <= S && S <= deadBand.high ? 1 : 0) / cases.length;
+    }
+    expect(
+      Math.min(shares.deadBand, shares.band, shares.spring),
+      JSON.stringify(shares),
+    ).toBeGreaterThanOrEqual(0.95);
+    expect(shares.holds, JSON.stringify(shares)).toBeGreaterThanOrEqual(0.8);
+  });
+});
+
 describe('a stroke', () => {
   const { at, seconds } = ramps(
     [50, 60, 40, 60, 40].map((op) => ({ op, rate: 0.1 })),
@@ -103,6 +132,44 @@ describe('a stroke', () => {
     const note = without.reading.notes.find(({ code }) => code === 'lag-not-known')!;
     expect(note.text).toContain('adds 0.2 %');
     expectClose(without.reading.deadBand!.value, 2.4, { absolute: 0.1 }, 'lag of 2 s at 0.1 %/s both ways');
+  });
+
+  it('of a stem behind a positioner with a band gives that band, its slow moves included', () => {
+    const slow = ramps(
+      [50, 65, 35, 65, 35, 50].map((one) => ({ op: one, rate: 0.1 })),
+      10,
+    );
+    const valve = createPositionerStem({ band: 1, lag: 1, startTravel: 50 });
+    const random = seededRandom(4);
+    const command = Float64Array.from({ length: Math.floor(2 * slow.seconds) }, (_, k) => slow.at(k / 2));
+    const travel = command.map((u) => valve.advance(u, 0.5) + 0.03 * random.normal());
+    const { reading } = readValveTest(testRecord({ op: command, travel, samplePeriod: 0.5 }));
+    // S = J = band; the move's lag of 1 s adds up to 0.2 % at this pace.
+    for (const one of [reading.deadBand!, reading.resolution!]) {
+      expectClose(one.value, 1, { absolute: 0.1 });
+    }
+  });
+
+  it('takes out a lag that is stated, and turns round a travel that falls with the command', () => {
+    const [one] = twelveStrokes(3).slice(4);
+    const { deadBand } = readValveTest(one!.record).reading;
+    const lag = one!.valve.actuatorLag;
+    const stated = readValveTest({ ...one!.record, pressure: null }, { lag }).reading;
+    expectClose(stated.deadBand!.value, deadBand!.value, { absolute: 0.02 });
+    const turned = readValveTest({ ...one!.record, travel: one!.record.travel!.map((x) => 100 - x) }).reading;
+    expectClose(turned.deadBand!.value, deadBand!.value, { absolute: 1e-9 });
+    expect(turned.notes.map(({ code }) => code)).toContain('travel-turned-round');
+  });
+
+  it('of an actuator that closes with more pressure shows the same friction, and the bench set as logged', () => {
+    const [one] = twelveStrokes(3).slice(4);
+    const opens = readValveTest(one!.record).friction!;
+    const closes = readValveTest({ ...one!.record, pressure: one!.record.pressure!.map((p) => 2 - p) })
+      .friction!;
+    expect(closes.sense).toBe(-1);
+    expectClose(closes.frictionBand.pressure.value, opens.frictionBand.pressure.value, { relative: 1e-6 });
+    expectClose(closes.benchSet.closed.value, 2 - opens.benchSet.closed.value, { absolute: 1e-6 });
+    expectClose(closes.benchSet.open.value, 2 - opens.benchSet.open.value, { absolute: 1e-6 });
   });
 
   it('of a stem that never moves resolves nothing and says so', () => {
