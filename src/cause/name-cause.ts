@@ -40,8 +40,8 @@ const clockwork = 60;
 /** Shares of odd harmonics in PV below and above which its shape is told; a triangle has 0.014, a square 0.15. Own choice. */
 const nearlySine = 0.002;
 const squarish = 0.1;
-/** S, % of span, that good valves have as well. Common practice, no source. */
-const goodValve = 0.4;
+/** S, % of span, that good valves have as well. Own choice; common practice calls 1 % and less small. */
+const goodValve = 0.3;
 /** Share of logged travel that the element must explain for its dead band to be told beside another cause. Own choice. */
 const travelExplained = 0.8;
 /** 2 pi Ti / period near 1: from here on control is proportional-dominated at the cycle. Own choice. */
@@ -76,7 +76,8 @@ function causeOf(input: CauseInput): Cause {
   }
   const probability = valveProbability(valveSigns(input.opCycle, input.pvCycle, test, drawn));
   if (probability >= accuseFrom) return accused(input, test, drawn, probability);
-  if (probability >= (cycles ? clearBelow.cycling : clearBelow.hunting)) {
+  const nothingToFind = !cycles && drawn.S.value < goodValve;
+  if (!nothingToFind && probability >= (cycles ? clearBelow.cycling : clearBelow.hunting)) {
     return cannotTell(
       [
         ...valveSentences(input, test, drawn, probability),
@@ -85,16 +86,24 @@ function causeOf(input: CauseInput): Cause {
       [],
     );
   }
-  if (!cycles) return notOscillating(input, probability);
-  return cleared(input, test, drawn, probability);
+  return cycles ? cleared(input, test, drawn, probability) : notOscillating(input, probability);
 }
 
-function notOscillating({ opCycle, pvCycle }: CauseInput, probability: number | null): Cause {
+/** No cycle and no valve to accuse. A loop that hunts a little because of its valve may look the same: the valve is not cleared. */
+function notOscillating({ opCycle, pvCycle, stiction }: CauseInput, probability: number | null): Cause {
+  const S = stiction.drawn?.S.value ?? null;
+  const small = S !== null && S < goodValve;
+  const doubt = Math.min(probability ?? clearBelow.hunting, clearBelow.hunting);
   return {
     verdict: 'not-oscillating',
-    // A loop that hunts a little because of its valve may look the same: this does not clear the valve.
-    confidence: 0.85 * (1 - (probability ?? clearBelow.hunting)),
-    reasons: [`OP: ${opCycle.why}`, `PV: ${pvCycle.why}`],
+    confidence: small ? 0.7 : 0.85 * (1 - doubt),
+    reasons: [
+      `OP: ${opCycle.why}`,
+      `PV: ${pvCycle.why}`,
+      ...(small
+        ? [`What dead band the fit finds, ${S.toFixed(2)} % of span, good valves have as well.`]
+        : []),
+    ],
     ruledOut: [],
     also: [],
   };

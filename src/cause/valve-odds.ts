@@ -3,7 +3,7 @@
  *
  * The weights were fitted by `npm run weigh` to the two sets of simulated loops of tests/accuracy that are there to be
  * worked with (stems with real friction in closed loops, half of them sticky), never to the reported set. In tenfold
- * cross-validation the probability said and the share found true agreed within 0.1 in every tenth. Another mix of
+ * cross-validation the probability said and the share found true agreed within 0.12 in every tenth. Another mix of
  * loops shifts it: where few valves stick, it is said too high.
  */
 import type { StictionFit, ValveTest } from '../estimate/stiction-fit';
@@ -33,16 +33,16 @@ export interface ValveSigns {
 const usualOddShare = 0.003;
 
 const weights: ValveSigns = {
-  lead: 0.81,
-  blocks: 1.76,
-  cycles: 1.57,
-  regularity: -1.59,
-  size: 2.3,
-  explains: 4.29,
+  lead: 0.67,
+  blocks: 2.22,
+  cycles: 1.58,
+  regularity: -1.6,
+  size: 2.25,
+  explains: 3.72,
   sine: 1.37,
-  square: -1.22,
+  square: -1.27,
 };
-const intercept = -3.98;
+const intercept = -3.67;
 
 export const signNames = Object.keys(weights) as readonly (keyof ValveSigns)[];
 

@@ -236,6 +236,14 @@ describe('nameCause', () => {
     expect(nameCause({ ...input, stiction: { ...input.stiction, drawn } }).verdict).toBe('stiction');
   });
 
+  it('says not-oscillating where the loop hunts over no more dead band than good valves have', () => {
+    const hunting = { cycles: false, test: { tOverLine: 2.4, blocksForValve: 11 } } as const;
+    expect(named({ ...hunting, S: 1 }).verdict).toBe('cannot-tell');
+    const { verdict, reasons } = named({ ...hunting, S: 0.25 });
+    expect(verdict).toBe('not-oscillating');
+    expect(reasons.join(' ')).toContain('0.25 % of span');
+  });
+
   it('names the dead band that logged travel shows beside whatever else makes the cycle', () => {
     const input = inputOf({ ...fromOutside, S: 2, test: { blocksForValve: 11, tWithoutLine: -2 } });
     const measured = { ...input.stiction.drawn!, travelSource: 'measured' as const };
