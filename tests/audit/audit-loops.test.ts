@@ -125,6 +125,19 @@ describe('auditLoops', () => {
     expect(again.loops.map(({ loop }) => `${loop}.csv`)).toEqual([first, second, third]);
   });
 
+  it('shows what is finished as it is, failed loops too, when nothing is to be tried again', async () => {
+    const [unit, kept] = [scratchFolder(), { folder: scratchFolder(), resume: true }];
+    const [first] = writeSmallLoops(unit, 2);
+    writeFileSync(join(unit, first!), '');
+    const before = await audit(unit, kept);
+    const told: number[] = [];
+    const onProgress = ({ finished }: { finished: number }): number => told.push(finished);
+    expect(text(await audit(unit, { ...kept, retry: false, onProgress }))).toBe(text(before));
+    expect(told).toEqual([]);
+    expect(text(await audit(unit, { ...kept, onProgress }))).toBe(text(before));
+    expect(told).toEqual([1, 2]);
+  });
+
   it('ranks by another rule when one is stated, without doing a loop again', async () => {
     const kept = { folder: scratchFolder() };
     const rule = { openConfidence: 1 };
