@@ -14,6 +14,7 @@ import { type FrictionCurve, frictionCurve } from './friction-curve';
 import { meanOf, type ReadingErrors } from './means';
 import { type StrokeFindings, settlingSamples, slowPace } from './read-stroke';
 import { restNoise } from './stem-motion';
+import { average } from './straight-line';
 import { type LegLevels, type SpringLine, springLine, strokeLevels } from './stroke-levels';
 import type { TestRecord } from './test-record';
 
@@ -98,7 +99,7 @@ export function actuatorFriction(
   const hidden = levels.breaks.length === 0 && levels.jump !== null ? levels.jump : 0;
 
   // Legs weigh as much up as down, so that an offset of the line falls out.
-  const restLevel = levels.afterSlips.length > 0 ? meanOfValues(levels.afterSlips) : null;
+  const restLevel = levels.afterSlips.length > 0 ? average(levels.afterSlips) : null;
   const movingOf = (leg: LegLevels): number | null =>
     (leg.sliding ?? restLevel ?? leg.lastMovement) as number | null;
   const turned = levels.legs.filter(
@@ -135,7 +136,7 @@ export function actuatorFriction(
     return null;
   }
   const slopes = moved.flatMap(({ leg }) => slopeOf(pressure, travel, leg.moves!, leg.leg.to));
-  const slope = meanOf(slopes, { each: line.slopeError }, unit);
+  const slope = meanOf(slopes.length > 0 ? slopes : [line.slope], { each: line.slopeError }, unit);
   const half = Math.min((slope.high - slope.low) / 2, 0.2 * line.slope);
   const perPercent: Estimate = { value: line.slope, low: line.slope - half, high: line.slope + half, unit };
   const toPascal = conversion(unit, 'Pa').factor;
@@ -155,8 +156,7 @@ export function actuatorFriction(
       : scaled(perPercent, ((100 * toPascal * area) / length) * 1e-3, 'N/mm');
   const at = (percent: number): Estimate => {
     const value = sense * (line.offset + line.slope * percent);
-    const error =
-      half * Math.abs(percent - meanOfValues([...travel])) + (1.645 * noise) / Math.sqrt(moved.length);
+    const error = half * Math.abs(percent - average(travel)) + (1.645 * noise) / Math.sqrt(moved.length);
     return { value, low: value - error, high: value + error, unit };
   };
   const own: Note[] = [];
@@ -213,22 +213,18 @@ function balanced(
     legs.filter(({ leg }) => leg.leg.direction === direction).flatMap((leg) => of(leg) ?? []),
   );
   if (ways.some((values) => values.length === 0)) return null;
-  const means = ways.map(meanOfValues);
+  const means = ways.map(average);
   const centre = (means[0]! + means[1]!) / 2;
   const readings = ways.flatMap((values, i) => values.map((value) => value - means[i]! + centre));
   return meanOf(readings, errors, unit);
-}
-
-function meanOfValues(values: readonly number[]): number {
-  return values.reduce((sum, value) => sum + value, 0) / values.length;
 }
 
 /** Slope of the drive on travel within a leg; nothing where the stem hardly moves. */
 function slopeOf(drive: Float64Array, travel: Float64Array, from: number, to: number): number[] {
   const n = to - from + 1;
   if (n < 10) return [];
-  const x = meanOfValues([...travel.subarray(from, to + 1)]);
-  const w = meanOfValues([...drive.subarray(from, to + 1)]);
+  const x = average(travel.subarray(from, to + 1));
+  const w = average(drive.subarray(from, to + 1));
   let along = 0;
   let across = 0;
   for (let k = from; k <= to; k++) {

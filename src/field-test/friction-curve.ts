@@ -7,6 +7,7 @@ import type { Note } from '../record/loop-record';
 import { leastSquares } from '../signal/least-squares';
 import { threeDigits } from '../signal/three-digits';
 import type { FrictionPoint } from '../valve/friction-law';
+import { slopeIn } from './straight-line';
 import type { LegLevels } from './stroke-levels';
 import type { TestRecord } from './test-record';
 
@@ -142,7 +143,7 @@ function steadySpeeds({ record, travel, levels, force, stroke, noise }: Friction
       const longest = leg.stretches.reduce((a, b) => (b.to - b.from > a.to - a.from ? b : a));
       const n = longest.to - longest.from;
       const from = longest.from + Math.ceil(0.1 * n);
-      const speed = Math.abs(slope(travel, from, longest.to)) * perSample;
+      const speed = Math.abs(slopeIn(travel, from, longest.to)) * perSample;
       return { speed, direction: leg.leg.direction, level: sliding!, samples: slidingSamples };
     })
     .sort((a, b) => a.speed - b.speed);
@@ -226,16 +227,4 @@ function fitLaws(points: readonly SpeedPoint[]): FittedLaw[] {
     if (curves.length > 0) laws.push(curves.reduce((a, b) => (b.chiSquare < a.chiSquare ? b : a)));
   }
   return laws.sort((a, b) => a.parameters - b.parameters);
-}
-
-function slope(values: Float64Array, from: number, to: number): number {
-  const n = to - from;
-  const middle = (n - 1) / 2;
-  let along = 0;
-  let across = 0;
-  for (let i = 0; i < n; i++) {
-    along += (i - middle) ** 2;
-    across += (i - middle) * values[from + i]!;
-  }
-  return along > 0 ? across / along : 0;
 }

@@ -1,6 +1,7 @@
 /** A value with its 90 % interval from repeated readings. */
 import type { Estimate } from '../estimate/stiction-fit';
 import { normalQuantile, studentTQuantile } from '../signal/distributions';
+import { average } from './straight-line';
 
 /** Two-sided level 0.9. */
 const upper = 0.95;
@@ -24,7 +25,7 @@ export function meanOf(
   unit: string,
 ): Estimate {
   const n = readings.length;
-  const value = readings.reduce((sum, one) => sum + one, 0) / n;
+  const value = average(readings);
   const z = normalQuantile(upper);
   const own = z * Math.hypot(each / Math.sqrt(n), shared);
   let half = own;

@@ -239,7 +239,7 @@ function holdTest(
         : `In a hold of ${shortestHold} periods PV may run out of its band.`,
     );
   }
-  const hold = Math.min(longestHold, Math.floor(periods * period) || periods * period);
+  const hold = Math.min(longestHold, periods * period);
   const expectedPv = expectedFor(periods);
   const test: PlannedTest = {
     kind: 'hold',

@@ -10,6 +10,7 @@ import { commandSteps } from './command';
 import { meanOf } from './means';
 import { restNoise } from './stem-motion';
 import { stepResponse } from './step-response';
+import { average, slopeIn } from './straight-line';
 import type { TestRecord } from './test-record';
 import type { StepRead } from './valve-test-reading';
 
@@ -66,7 +67,7 @@ export function readSteps(record: TestRecord): StepsFindings {
   const dwells = [{ from: 0, to: commands[0]?.at ?? op.length }].concat(
     commands.map(({ at, until }) => ({ from: at, to: until })),
   );
-  const level = ramps ? slopeOf : meanIn;
+  const level = ramps ? slopeIn : meanIn;
   const ends = dwells.map(({ from, to }) => level(signal, from + Math.floor((2 * (to - from)) / 3), to));
   const middles = dwells.map(({ from, to }) =>
     level(signal, from + Math.floor((to - from) / 3), from + Math.floor((2 * (to - from)) / 3)),
@@ -257,7 +258,7 @@ function stepHysteresis(
   });
   const separations = [...up].flatMap(([key, levels]) => {
     const others = down.get(key);
-    return others ? [mean(others) - mean(levels)] : [];
+    return others ? [average(others) - average(levels)] : [];
   });
   if (separations.length === 0 || deadBand === null) {
     notes.push({
@@ -290,26 +291,5 @@ function overallOf(found: readonly (Estimate | null)[]): Estimate | null {
 }
 
 function meanIn(values: Float64Array, from: number, to: number): number {
-  let sum = 0;
-  for (let k = from; k < to; k++) sum += values[k]!;
-  return sum / Math.max(1, to - from);
-}
-
-/** Slope of the line through samples, unit a sample. */
-function slopeOf(values: Float64Array, from: number, to: number): number {
-  const n = to - from;
-  if (n < 2) return 0;
-  const middle = (n - 1) / 2;
-  const centre = meanIn(values, from, to);
-  let along = 0;
-  let across = 0;
-  for (let i = 0; i < n; i++) {
-    along += (i - middle) ** 2;
-    across += (i - middle) * (values[from + i]! - centre);
-  }
-  return across / along;
-}
-
-function mean(values: readonly number[]): number {
-  return values.reduce((sum, value) => sum + value, 0) / values.length;
+  return average(values.subarray(from, to));
 }

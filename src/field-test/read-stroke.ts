@@ -17,6 +17,7 @@ import { lagged, pressureLag } from './actuator-lag';
 import { type CommandLeg, commandLegs } from './command';
 import { meanOf } from './means';
 import { type StemMotion, stemMotion } from './stem-motion';
+import { average } from './straight-line';
 import { type SpringLine, type StrokeLevels, springLine, strokeLevels } from './stroke-levels';
 import type { TestRecord } from './test-record';
 
@@ -275,7 +276,7 @@ function separationOf(
 
 function spread(values: readonly number[]): { mean: number; error: number } {
   const n = values.length;
-  const mean = values.reduce((sum, value) => sum + value, 0) / n;
+  const mean = average(values);
   const squares = values.reduce((sum, value) => sum + (value - mean) ** 2, 0);
   return { mean, error: Math.sqrt(squares / (n - 1) / n) };
 }
@@ -342,11 +343,7 @@ function fitVariants(
     .sort((a, b) => b.explains - a.explains);
 }
 
-function mean(values: Float64Array): number {
-  return values.reduce((sum, value) => sum + value, 0) / values.length;
-}
-
 function squaresAround(values: Float64Array): number {
-  const centre = mean(values);
+  const centre = average(values);
   return values.reduce((sum, value) => sum + (value - centre) ** 2, 0);
 }

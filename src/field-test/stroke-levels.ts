@@ -4,6 +4,7 @@
  */
 import { leastSquares } from '../signal/least-squares';
 import type { LegMotion, StemMotion } from './stem-motion';
+import { average } from './straight-line';
 
 /** drive = offset + slope x travel on the spring's line; drive in its own unit, travel in %. */
 export interface SpringLine {
@@ -65,7 +66,7 @@ export function springLine(drive: Float64Array, travel: Float64Array, motion: St
       way.push(leg.direction);
     }
   }
-  const centre = mean(x);
+  const centre = average(x);
   const both = way.includes(1) && way.includes(-1);
   if (!both || x.length < 10) return null;
   const centred = Float64Array.from(x, (value) => value - centre);
@@ -124,7 +125,7 @@ export function strokeLevels(
       if (stretch.beforeSlip) breaks.push(off(direction, drive[stretch.to - 1]!, stretch.level) + pace / 2);
     }
   }
-  const restLevel = afterSlips.length >= fewestSlips ? mean(afterSlips) : null;
+  const restLevel = afterSlips.length >= fewestSlips ? average(afterSlips) : null;
 
   // Slips that follow each other too fast, or are too small, to be told apart leave a saw-tooth around the mean level.
   const hiddenIn = new Map<LegMotion, number>();
@@ -137,8 +138,8 @@ export function strokeLevels(
     const scatter = values.length >= fewestForScatter ? varianceAroundLine(values) : 0;
     if (scatter > hiddenSlips * noise * noise) hiddenIn.set(leg, Math.sqrt(12 * (scatter - noise * noise)));
   }
-  const told = breaks.length > 0 && restLevel !== null ? mean(breaks) - restLevel : null;
-  const hiddenMostly = hiddenIn.size > slid.size / 2 ? mean([...hiddenIn.values()]) : null;
+  const told = breaks.length > 0 && restLevel !== null ? average(breaks) - restLevel : null;
+  const hiddenMostly = hiddenIn.size > slid.size / 2 ? average([...hiddenIn.values()]) : null;
 
   const driveAt = (leg: LegMotion, at: number): number => {
     // A noisy drive is taken from the line through some samples around.
@@ -169,7 +170,7 @@ export function strokeLevels(
     const end = values.slice(-Math.max(20, Math.ceil(values.length / 4)));
     const last = leg.stretches[leg.stretches.length - 1]!;
     const restsAtEnd = !last.slides && restLevel !== null;
-    const slidingAtEnd = values.length > 0 ? mean(end) - (hidden ?? 0) / 2 : restLevel;
+    const slidingAtEnd = values.length > 0 ? average(end) - (hidden ?? 0) / 2 : restLevel;
     const restsFirst = !leg.stretches[0]!.slides && leg.jump > 0 && restLevel !== null;
     return {
       leg,
@@ -180,7 +181,7 @@ export function strokeLevels(
           ? off(leg.leg.direction, driveAt(leg, leg.bend), leg.rest) + hidden / 2
           : off(leg.leg.direction, driveAt(leg, leg.breaks!), leg.rest),
       lastMovement: restsAtEnd ? restLevel : slidingAtEnd,
-      sliding: values.length > 0 && hidden === null ? mean(values) : null,
+      sliding: values.length > 0 && hidden === null ? average(values) : null,
       slidingSamples: values.length,
       pace: paceOf(leg),
       hiddenJump: hidden,
@@ -211,15 +212,11 @@ function onLine(values: Float64Array, at: number, from: number, to: number): num
   return sum / n + (across / along) * (at - middle);
 }
 
-function mean(values: readonly number[]): number {
-  return values.length > 0 ? values.reduce((total, value) => total + value, 0) / values.length : 0;
-}
-
 function varianceAroundLine(values: readonly number[]): number {
   const n = values.length;
   if (n < fewest) return 0;
   const middle = (n - 1) / 2;
-  const centre = mean(values);
+  const centre = average(values);
   let across = 0;
   let along = 0;
   let squares = 0;
