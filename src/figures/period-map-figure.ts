@@ -44,7 +44,7 @@ export function periodMapFigure({ audit, ranked }: AuditFindings): Figure | null
       type: 'scatter',
       mode: 'markers',
       name: verdict,
-      x: plain(here.map(({ loop }) => periodOf(loop))),
+      x: here.map(({ loop }) => digits(periodOf(loop))),
       y: here.map(({ row }) => row),
       text: here.map(({ loop }) => hoverText(loop)),
       marker: {
@@ -62,7 +62,7 @@ export function periodMapFigure({ audit, ranked }: AuditFindings): Figure | null
       type: 'scatter',
       mode: 'markers',
       name: 'likely source of a shared cycle',
-      x: plain(sources.map(({ loop }) => periodOf(loop))),
+      x: sources.map(({ loop }) => digits(periodOf(loop))),
       y: sources.map(({ row }) => row),
       marker: {
         symbol: 'circle-open',
@@ -140,6 +140,11 @@ function periodOf({ assessment }: RankedFindings): number {
   return assessment.oscillation.period!;
 }
 
+/** Four digits of each period, as a logarithmic axis shows small ones as large as large ones. */
+function digits(period: number): number {
+  return Number(period.toPrecision(4));
+}
+
 function rowName(loop: RankedFindings): string {
   const tag = loop.assessment.loop;
   const name = plainText(tag.length > tagWidth ? `${tag.slice(0, tagWidth - 1)}…` : tag);
@@ -184,7 +189,7 @@ function periodTicks(from: number, to: number): Ticks {
     1, 2, 5, 10, 20, 30, 60, 120, 300, 600, 1200, 1800, 3600, 7200, 18_000, 36_000, 86_400, 259_200,
   ];
   const within = steps.filter((step) => step >= from && step <= to);
-  const values = within.length >= 2 ? within : [Math.min(from * 1.5, to), to / 1.5];
+  const values = within.length >= 2 ? within : [...new Set([from * 1.5, to / 1.5].map(digits))];
   const by = Math.ceil(values.length / 6);
   const kept = values.filter((_, i) => i % by === 0);
   return { tickvals: kept, ticktext: kept.map(inShort) };

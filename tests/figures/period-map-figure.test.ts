@@ -21,9 +21,9 @@ describe('periodMapFigure', () => {
     const { yaxis, shapes, xaxis } = figure.layout as unknown as Layout;
     expect(yaxis.ticktext).toEqual(['<b>31-FC-201</b>', '31-LC-203', '31-PC-202', '31-PC-231']);
     expect(traceOf(figure, 'stiction')).toMatchObject({ y: [0] });
-    expect(traceOf(figure, 'stiction').x[0]).toBeCloseTo(periodOf('31-FC-201'), 3);
+    expect(traceOf(figure, 'stiction').x[0]).toBeCloseTo(periodOf('31-FC-201'), 2);
     expect(traceOf(figure, 'tight-tuning')).toMatchObject({ y: [3] });
-    expect(traceOf(figure, 'tight-tuning').x[0]).toBeCloseTo(periodOf('31-PC-231'), 3);
+    expect(traceOf(figure, 'tight-tuning').x[0]).toBeCloseTo(periodOf('31-PC-231'), 2);
     expect(traceOf(figure, 'likely source of a shared cycle')).toMatchObject({ y: [0] });
     // The ground of the group is under its three rows and no other.
     expect(shapes).toHaveLength(1);
@@ -46,6 +46,22 @@ describe('periodMapFigure', () => {
     // Too tall to be seen at once: the periods stand above as well, at powers of ten on the logarithmic axis.
     const minute = annotations.find(({ text }) => text === '1 min') as { x: number } | undefined;
     expect(minute?.x).toBeCloseTo(Math.log10(60), 6);
+  });
+
+  it('keeps short periods as exact as long ones, and marks a single period on its axis', () => {
+    const at = (periods: readonly number[]): Layout & { x: number[] } => {
+      const ranked = periods.map((period, i) => {
+        const { assessment, ...rest } = unit.ranked[i]!;
+        const oscillation = { ...assessment.oscillation, period };
+        const cause = { ...assessment.cause, verdict: 'stiction' as const };
+        return { ...rest, group: null, assessment: { ...assessment, oscillation, cause } };
+      });
+      const figure = periodMapFigure({ ...unit, ranked })!;
+      expectSound(figure);
+      return { ...(figure.layout as unknown as Layout), x: traceOf(figure, 'stiction').x };
+    };
+    expect(at([12.34, 40_000]).x).toEqual([12.34, 40_000]);
+    expect(at([136.8]).xaxis).toMatchObject({ tickvals: [136.8], ticktext: ['2.28 min'] });
   });
 
   it('shortens a long tag, and shows it as it stands', () => {
