@@ -70,7 +70,7 @@ export function planValveTest(valve: Findings | TypedValve, limits: ValveTestLim
     checkList,
     cautions: valveTestCautions,
   } as const;
-  const refused = refusals(basis, limits);
+  const refused = [...refusals(basis, limits), ...('assessment' in valve ? splitRange(valve) : [])];
   if (refused.length > 0) return { ...plan, tests: [], refused, leftOut: [], stopWhen: [], notes: [] };
 
   const made = [holdTest(basis, limits), stepTest(basis, limits), rampTest(basis, limits)];
@@ -194,6 +194,17 @@ function refusals(basis: TypedValveBasis, limits: ValveTestLimits): PlanRefusal[
     });
   }
   return found;
+}
+
+/** Of a record that was read with a valve range OP is in % of travel, and limits in % of OP would not hold. */
+function splitRange({ record }: Findings): PlanRefusal[] {
+  if (!record.notes.some(({ code }) => code === 'valve-range')) return [];
+  return [
+    {
+      code: 'split-range',
+      text: 'The record was read with a valve range, so that its OP is in % of travel while limits are in % of OP. Type what is known of the valve instead, all of it in % of OP.',
+    },
+  ];
 }
 
 interface Made {

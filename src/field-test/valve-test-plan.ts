@@ -62,6 +62,7 @@ export interface PlannedTest {
 export type PlanRefusalCode =
   | 'safety-function'
   | 'trip-path'
+  | 'split-range'
   | 'op-near-limit'
   | 'pv-near-limit'
   | 'nothing-fits';

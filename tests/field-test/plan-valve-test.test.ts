@@ -3,6 +3,7 @@ import { planCard } from '../../src/field-test/plan-card';
 import { planValveTest } from '../../src/field-test/plan-valve-test';
 import type { TypedValve, ValveTestLimits, ValveTestPlan } from '../../src/field-test/valve-test-plan';
 import { seededRandom } from '../../src/signal/random';
+import { fixtureFindings } from '../figures/findings-fixture';
 
 const valve: TypedValve = {
   loop: '31-FC-104',
@@ -169,6 +170,24 @@ describe('a plan', () => {
     expect(plan.tests.map(({ kind }) => kind)).toEqual(['hold']);
     expect(plan.leftOut.map(({ kind }) => kind)).toEqual(['step', 'stroke']);
     expect(plan.leftOut[0]!.text).toMatch(/need S and the process/);
+  });
+
+  it('from an assessment takes the high ends of S and J, and room for a larger gain than was fitted', () => {
+    const findings = fixtureFindings();
+    const { stiction, record } = findings;
+    const wide = { ...limits, opBand: { low: 0, high: 100 }, pvBand: { low: -400, high: 600 } };
+    const plan = planValveTest(findings, wide);
+    expect(plan.basis.S).toBe(stiction.fit!.S.high);
+    expect(plan.basis.from).toBe('assessment');
+    expect(plan.notes.map(({ code }) => code)).toEqual(
+      expect.arrayContaining(['high-ends', 'starting-point']),
+    );
+    // OP of a split range is in % of travel; limits are not.
+    const split = { ...findings, record: { ...record, notes: [{ code: 'valve-range', text: '' }] } };
+    expect(planValveTest(split, wide).refused.map(({ code }) => code)).toEqual(['split-range']);
+    // Without numbers there is still the hold.
+    const refused = planValveTest(fixtureFindings({ fit: 'refused' }), wide);
+    expect(refused.tests.map(({ kind }) => kind)).toEqual(['hold']);
   });
 
   it('reads as a card with check list, stop values, cautions and its standing', () => {
