@@ -19,7 +19,7 @@ export function forecastTrendFigure(result: ForecastResult, record: LoopRecord):
   const minutes = seconds >= 300;
   const perUnit = minutes ? 60 : 1;
   const line = (
-    values: Float64Array,
+    values: ArrayLike<number>,
     step: number,
     y: string,
     look: { name: string; color: string; width: number; dash?: string },

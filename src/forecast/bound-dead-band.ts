@@ -35,6 +35,9 @@ const leastT = 2;
 const tried: readonly number[] = [0.5, 0.7, 1, 1.4, 2, 2.8, 4, 5.6, 8];
 const jumps: readonly number[] = [0, 0.4, 0.8];
 const lagStarts: readonly number[] = [1, 3, 8, 20];
+/** Disturbance filter to begin with, and how often filter and process are fitted in turn. */
+const firstTheta = 0.6;
+const passes = 3;
 
 /**
  * @param period s: bounds the dead time that is allowed for (a sixth of it), the cycle before the repair
@@ -78,13 +81,11 @@ export function boundDeadBand(
     controller: null,
     samplePeriod,
   };
-  const free = errorsOf(pv, op, settings, 0);
+  const free = errorsOf(pv, op, settings);
   const blocks = at.map((from, i) => ({ from, to: at[i + 1] ?? op.length }));
   const contradicted = tried.map((S) => {
     const best = jumps
-      .map((share) =>
-        errorsOf(pv, twoParameterValve(op, { S, J: share * S, start: op[0]! }), settings, free.theta),
-      )
+      .map((share) => errorsOf(pv, twoParameterValve(op, { S, J: share * S, start: op[0]! }), settings))
       .reduce((one, other) => (other.power < one.power ? other : one));
     return tOver(blocks, best.errors, free.errors) >= leastT;
   });
@@ -101,31 +102,30 @@ export function boundDeadBand(
   };
 }
 
-/** One-step prediction errors of PV with the best process for this travel. */
+/** One-step prediction errors of PV with the process and the disturbance filter that go best with this travel. */
 function errorsOf(
   pv: Float64Array,
   travel: Float64Array,
   settings: ProcessSettings,
-  theta: number,
-): { errors: Float64Array; power: number; theta: number } {
-  let kept = theta;
-  for (let pass = 0; ; pass++) {
-    const target = createTarget(pv, kept, settings);
+): { errors: Float64Array; power: number } {
+  const { integrating, sign } = settings;
+  let best: { errors: Float64Array; power: number } | null = null;
+  let theta = firstTheta;
+  for (let pass = 0; pass < passes; pass++) {
+    const target = createTarget(pv, theta, settings);
     const start = lagStarts
       .map((lag) => fitGain(travel, target, { lag, secondLag: 0, delay: 1 }, settings))
       .reduce((one, other) => (other.misfit < one.misfit ? other : one));
     const fit = fitProcess(travel, target, start, settings);
-    const better =
-      theta === 0 ? bestTheta(residualOf(pv, travel, fit, settings), settings.integrating) : theta;
-    if (better === kept || pass > 1) {
-      const part = filterTravel(travel, fit, kept, settings.integrating);
-      const errors = whiten(pv, kept, settings.integrating).map(
-        (value, k) => value - settings.sign * fit.gain * part[k]!,
-      );
-      return { errors, power: errors.reduce((sum, error) => sum + error * error, 0), theta: kept };
-    }
-    kept = better;
+    const part = filterTravel(travel, fit, theta, integrating);
+    const errors = whiten(pv, theta, integrating).map((value, k) => value - sign * fit.gain * part[k]!);
+    const power = errors.reduce((sum, error) => sum + error * error, 0);
+    if (best === null || power < best.power) best = { errors, power };
+    const next = bestTheta(residualOf(pv, travel, fit, settings), integrating);
+    if (next === theta) break;
+    theta = next;
   }
+  return best!;
 }
 
 /** t over the blocks of the log likelihood that `free` gains over `stuck`. */

@@ -11,6 +11,7 @@ import type { ValveTestReading } from '../field-test/valve-test-reading';
 import { findCycle } from '../oscillation/find-cycle';
 import type { LoopRecord } from '../record/loop-record';
 import { mean } from '../signal/statistics';
+import { version } from '../version';
 import { boundDeadBand, type DeadBandBound } from './bound-dead-band';
 import { swingWithin } from './cycle-measure';
 
@@ -54,6 +55,13 @@ export interface RepairComparison {
   /** What the set-point moves of the later record say; null where they were not needed. */
   readonly setPointMoves: DeadBandBound | null;
   readonly cautions: readonly string[];
+  /** Fingerprints of both records, version and options. */
+  readonly provenance: {
+    readonly version: string;
+    readonly options: object;
+    readonly before: string;
+    readonly after: string;
+  };
 }
 
 /** Own choices: how far two records may differ and still be compared. */
@@ -104,6 +112,12 @@ export function compareAssessments(
     loop: before.record.loop,
     rows: [...conditions, ...results],
     cautions,
+    provenance: {
+      version,
+      options: { acceptedDeadBand, tuningUnchanged, valveTest: valveTest?.kind ?? null },
+      before: before.record.sha256,
+      after: after.record.sha256,
+    },
   };
   const answered = (
     answer: RepairAnswer,
@@ -295,14 +309,16 @@ function loadRows(before: Findings, after: Findings): ComparedRow[] {
 function lengthRows(before: Findings, after: Findings): ComparedRow[] {
   const length = ({ record }: Findings): number => record.op.length * record.samplePeriod;
   const period = before.assessment.oscillation.period;
-  const cycles = ({ record }: Findings): string =>
-    `${duration(length({ record } as Findings))}${period === null ? '' : `, ${(length({ record } as Findings) / period).toFixed(1)} former periods`}`;
+  const told = (findings: Findings): string => {
+    const periods = period === null ? '' : `, ${(length(findings) / period).toFixed(1)} former periods`;
+    return `${duration(length(findings))}${periods}`;
+  };
   const sampled = ({ record }: Findings): number => record.samplePeriod;
   return [
     {
       what: 'Record length',
-      before: cycles(before),
-      after: cycles(after),
+      before: told(before),
+      after: told(after),
       alike: period === null || length(after) / period >= alike.cycles,
       note: `The later record must cover at least ${alike.cycles} former periods (own choice).`,
     },

@@ -77,8 +77,8 @@ const deadBandWidths = [0.25, 0.5, 0.75, 1, 1.25, 1.5, 2];
  *
  * Every rival is the loop with one S and J from the intervals of the assessment, and the gain, lag and dead time that
  * fit the record with them; noise and drift are drawn (seeded) with about the strength that the record shows. Those
- * that come nearest to the record's own period and swings are simulated at each setting. A forecast is the record's
- * value times the rivals' ratio of changed to now; its band is the spread of those ratios and the model's own error.
+ * that come nearest to the record's own period and swings are simulated at each setting. A forecast is their median, drawn
+ * towards the record by what they miss of it today; its band is their spread and the model's own error.
  *
  * Not valid far from the record's load, with a moving set point, or where something outside the loop makes the cycle.
  *
@@ -104,18 +104,19 @@ export function forecastCycle(findings: Findings, options: ForecastOptions = {})
   const controller = readController(record.sp, record.pv, record.op, record.samplePeriod);
   const reasons = whyNot(findings, controller);
   if (reasons.length > 0) return refuse(...reasons);
+  const { fit } = findings.stiction;
   const measured = measureCycle(record.pv, record.op, record.samplePeriod);
-  if (measured === null || controller === null) {
+  if (measured === null || controller === null || fit === null || fit.process === null) {
     return refuse('OP turns too seldom in this record to compare a simulation with it.');
   }
   const source: ModelSource = {
     record,
     controller,
-    response: findings.stiction.fit!.process!.response,
+    fit: { ...fit, process: fit.process },
     period: measured.period,
     pvSwing: measured.pvSwing,
   };
-  const rivals = drawRivals(source, findings, measured, { count: resolved.rivals, seed: resolved.seed });
+  const rivals = drawRivals(source, measured, { count: resolved.rivals, seed: resolved.seed });
   const near = rivals
     .filter(({ miss, model }) => miss <= Math.log(1 + resolved.largestMiss) && (marginOf(model, {}) ?? 2) > 1)
     .slice(0, mostUsed);
@@ -246,20 +247,21 @@ function tryOut(rival: RivalLoop, asked: Change, period: number): Outcome {
   const speed = asked.form === 'P' ? 1 : (asked.gain ?? 1) / (asked.integralTime ?? 1);
   const valve = { ...model.valve, J: jumpAt(rival, speed) };
   const change: Change = { valve, ...asked };
-  for (const cycles of [simulatedCycles, longer * simulatedCycles]) {
+  const run = (cycles: number): Outcome => {
     const length = { period, cycles, seed };
-    const run = runModel(model, change, length);
-    const lasts = turnsByItself(model, change, run, length);
-    const measure = lasts ? measureCycle(run.pv, run.op, model.scanPeriod) : null;
-    if (measure === null && cycles === simulatedCycles) continue;
+    const log = runModel(model, change, length);
+    const lasts = turnsByItself(model, change, log, length);
+    const measure = lasts ? measureCycle(log.pv, log.op, model.scanPeriod) : null;
     return {
       cycles: measure !== null,
       measure,
-      pvLeft: swingWithin(run.pv, period, model.scanPeriod),
-      opLeft: swingWithin(run.op, period, model.scanPeriod),
+      pvLeft: swingWithin(log.pv, period, model.scanPeriod),
+      opLeft: swingWithin(log.op, period, model.scanPeriod),
     };
-  }
-  throw new Error('unreachable');
+  };
+  const first = run(simulatedCycles);
+  const stuck = change.valve != null && change.valve.S > 0;
+  return first.cycles || !stuck ? first : run(longer * simulatedCycles);
 }
 
 /** Whether the valve goes to and fro more often than the load's drift asks of one with its dead band. */
@@ -277,6 +279,7 @@ function turnsByItself(
   return turns > overDrift * countReversals(free.travel, valve.S).count;
 }
 
+/** Derivative action is left out, so that the margin of a PID controller mostly reads low. */
 function marginOf({ process, controller, scanPeriod }: LoopModel, change: Change): number | null {
   const { gain = 1, integralTime = 1, form = controller.form } = change;
   const integrating = process.response === 'integrating';
@@ -310,7 +313,8 @@ function forecastFrom(
   const at = (change: Change): CycleForecast => summed(used, record, pvUnit, change);
   const setting = (change: Change): SettingForecast => ({
     gain: today.gain * (change.gain ?? 1),
-    integralTime: hasIntegral && change.form !== 'P' ? today.integralTime * (change.integralTime ?? 1) : null,
+    integralTime:
+      (change.form ?? today.form) === 'P' ? null : today.integralTime * (change.integralTime ?? 1),
     ...at(change),
   });
   const simulated = {
@@ -323,7 +327,7 @@ function forecastFrom(
       ? options.settings.map(({ gain, integralTime }) => ({
           gain: gain / today.gain,
           integralTime: integralTime === null ? 1 : integralTime / today.integralTime,
-          ...(integralTime === null ? { form: 'P' as const } : {}),
+          form: formWith(today.form, integralTime),
         }))
       : [{ gain: 0.5 }, ...(hasIntegral ? [{ integralTime: 2 }, { gain: 0.5, integralTime: 2 }] : [])]
   ).map(setting);
@@ -364,6 +368,12 @@ function forecastFrom(
   return { ...forecast, inWords: retuningInWords(forecast, pvUnit) };
 }
 
+/** The form of today, but P without an integral time, and PI where a P controller is asked for one. */
+function formWith(today: NonNullable<Change['form']>, integralTime: number | null): Change['form'] {
+  if (integralTime === null) return 'P';
+  return today === 'P' ? 'PI' : today;
+}
+
 /** Cycles of the record that are drawn. */
 const drawnCycles = 5;
 
@@ -373,8 +383,8 @@ function tracesOf({ model, seed }: RivalLoop, period: number, { repaired }: Reso
   const [now, later] = [runModel(model, {}, length), runModel(model, { valve }, length)];
   return {
     step: model.scanPeriod,
-    now: { pv: now.pv, op: now.op },
-    repaired: { pv: later.pv, op: later.op },
+    now: { pv: Array.from(now.pv), op: Array.from(now.op) },
+    repaired: { pv: Array.from(later.pv), op: Array.from(later.op) },
   };
 }
 
@@ -404,7 +414,7 @@ function summed(
   change: Change,
 ): CycleForecast {
   const outcomes = used.map((rival) => ({ rival, ...tryOut(rival, change, record.period) }));
-  const cycling = outcomes.filter(({ cycles, measure }) => cycles && measure !== null);
+  const cycling = outcomes.filter(({ cycles }) => cycles);
   const cyclesIn = cycling.length / used.length;
   const cycles = cyclesIn > 0.5;
   const margin = marginOf(used[0]!.model, change);
@@ -412,7 +422,6 @@ function summed(
     const left = (name: 'pvLeft' | 'opLeft', unit: string): Estimate =>
       banded(
         outcomes.map((outcome) => outcome[name]),
-        1,
         modelError.swing,
         unit,
       );
@@ -428,7 +437,6 @@ function summed(
   const of = (name: keyof CycleMeasure, error: number, unit: string): Estimate =>
     banded(
       cycling.map(({ rival, measure }) => anchored(record, rival, measure!, name)),
-      1,
       error,
       unit,
     );
@@ -455,13 +463,13 @@ function anchored(
   return measure[name] * Math.sqrt(record[name] / now[name]);
 }
 
-/** Median and 5 and 95 % ends of the values, the ends moved out by the relative error, all times `scale`. */
-function banded(values: readonly number[], scale: number, error: number, unit: string): Estimate {
+/** Median and 5 and 95 % ends of the values, the ends moved out by the relative error. */
+function banded(values: readonly number[], error: number, unit: string): Estimate {
   const row = Float64Array.from(values);
   return {
-    value: scale * median(row),
-    low: scale * quantile(row, 0.05) * (1 - error),
-    high: scale * quantile(row, 0.95) * (1 + error),
+    value: median(row),
+    low: quantile(row, 0.05) * (1 - error),
+    high: quantile(row, 0.95) * (1 + error),
     unit,
   };
 }

@@ -13,7 +13,7 @@ export interface CycleForecast {
   /** Median peak to peak; where it does not cycle, what noise and drift leave within one of today's periods. */
   readonly pvSwing: Estimate;
   readonly opSwing: Estimate;
-  /** How many times the loop gain could grow before the loop without the valve's fault is unstable; null: any. */
+  /** How many times the loop gain could grow before the loop with a good valve is unstable; null: any. */
   readonly gainMargin: number | null;
 }
 
@@ -48,8 +48,8 @@ export interface BalanceForecast {
 export interface ForecastTraces {
   /** s between values. */
   readonly step: number;
-  readonly now: { readonly pv: Float64Array; readonly op: Float64Array };
-  readonly repaired: { readonly pv: Float64Array; readonly op: Float64Array };
+  readonly now: { readonly pv: readonly number[]; readonly op: readonly number[] };
+  readonly repaired: { readonly pv: readonly number[]; readonly op: readonly number[] };
 }
 
 export interface Forecast {

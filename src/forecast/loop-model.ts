@@ -2,7 +2,6 @@
  * The loop as a record shows it, ready to be simulated: controller as read from SP, PV and OP; two-parameter valve;
  * linear process fitted to the travel of that valve; noise and drift of about the record's strength.
  */
-import type { Findings } from '../assessment/findings';
 import {
   bestTheta,
   createTarget,
@@ -10,6 +9,7 @@ import {
   type ProcessSettings,
   residualOf,
 } from '../estimate/process-fit';
+import type { FoundProcess, StictionFit } from '../estimate/stiction-fit';
 import { type LoopRun, simulateLoop } from '../process/closed-loop';
 import type { ControllerOptions } from '../process/controller';
 import type { Disturbance } from '../process/disturbance';
@@ -54,19 +54,23 @@ export interface LoopModel {
 export interface ModelSource {
   readonly record: LoopRecord;
   readonly controller: ControllerReading;
-  readonly response: 'self-regulating' | 'integrating';
+  /** The fit of the assessment, with the process that goes with it. */
+  readonly fit: StictionFit & { readonly process: FoundProcess };
   /** Period of the cycle in the record, s. */
   readonly period: number;
   readonly pvSwing: number;
 }
 
-/** The loop with a valve of S and J: the process is fitted again to the travel that this valve makes of the record's OP. */
-export function modelWith(source: ModelSource, valve: ValveNumbers, findings: Findings): LoopModel | null {
-  const { record, controller, response, period } = source;
+/**
+ * The loop with a valve of S and J: the process is fitted again to the travel that this valve makes of the record's OP.
+ * null when no process goes with that travel.
+ */
+export function modelWith(source: ModelSource, valve: ValveNumbers): LoopModel | null {
+  const { record, controller, fit, period } = source;
+  const { process: found } = fit;
+  const { response } = found;
   const { samplePeriod, pv, op } = record;
   const integrating = response === 'integrating';
-  const found = findings.stiction.drawn?.process;
-  if (!found) return null;
   const settings: ProcessSettings = {
     integrating,
     sign: found.gain > 0 ? 1 : -1,
@@ -77,7 +81,7 @@ export function modelWith(source: ModelSource, valve: ValveNumbers, findings: Fi
     controller,
     samplePeriod,
   };
-  const travel = twoParameterValve(op, { ...valve, start: findings.stiction.drawn!.travel[0] });
+  const travel = twoParameterValve(op, { ...valve, start: fit.travel[0] });
   const start = {
     lag: (found.lag ?? 0) / samplePeriod,
     secondLag: 0,

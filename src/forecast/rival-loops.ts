@@ -5,10 +5,8 @@
  * S and J trade against the process gain: a smaller jump through a larger gain gives the same PV. As every rival gets
  * the gain that fits its own S and J, a forecast from all of them carries that trade.
  */
-import type { Findings } from '../assessment/findings';
 import { seededRandom } from '../signal/random';
-import type { CycleMeasure } from './cycle-measure';
-import { measureCycle } from './cycle-measure';
+import { type CycleMeasure, measureCycle } from './cycle-measure';
 import { type LoopModel, type ModelSource, modelWith, runModel } from './loop-model';
 
 export interface RivalLoop {
@@ -28,15 +26,13 @@ const leastJumpShare = 0.05;
 /** Range of the power in {@link jumpAt}. Own choice, set on simulated stems. */
 const slownessRange = { low: 0, high: 0.2 };
 
-/** `count` rivals, the best fit first, those that come nearest to the record first among the others. */
+/** At most `count` rivals, the fit itself among them, those that come nearest to the record first. */
 export function drawRivals(
   source: ModelSource,
-  findings: Findings,
   record: CycleMeasure,
   { count, seed }: { readonly count: number; readonly seed: number },
 ): RivalLoop[] {
-  const fit = findings.stiction.fit;
-  if (fit === null) return [];
+  const { fit } = source;
   const random = seededRandom(seed);
   const between = (low: number, high: number): number => low + (high - low) * random.uniform();
   const rivals: RivalLoop[] = [];
@@ -46,7 +42,7 @@ export function drawRivals(
     const high = fit.J?.high ?? S;
     const J = i === 0 ? fit.jumpDrawn : between(low, high);
     if (!(S > 0)) continue;
-    const model = modelWith(source, { model: fit.model, S, J: Math.min(J, S) }, findings);
+    const model = modelWith(source, { model: fit.model, S, J: Math.min(J, S) });
     if (model === null) continue;
     const of = seed + 10 * i;
     const run = runModel(model, {}, { period: record.period, cycles: simulatedCycles, seed: of });
@@ -57,7 +53,7 @@ export function drawRivals(
   return rivals.sort((a, b) => a.miss - b.miss);
 }
 
-export function missOf(one: CycleMeasure, record: CycleMeasure): number {
+function missOf(one: CycleMeasure, record: CycleMeasure): number {
   return Math.max(
     Math.abs(Math.log(one.period / record.period)),
     Math.abs(Math.log(one.pvSwing / record.pvSwing)),

@@ -31,6 +31,20 @@ describe('set-point moves', () => {
     }
   });
 
+  it.each([0.5, 1.5])(
+    'never put lost motion of %f percent in an integrating loop below its truth',
+    (backlash) => {
+      const level = DEMO_LOOPS.find(({ name }) => name === '31-LC-140')!;
+      const to = [56, 57, 56, 54, 55, 53.5, 55, 56, 54.5, 55.5];
+      const valve = textbookStem({ S: 0.1, J: 0.02, actuatorLag: 1, backlash, startOp: 48 });
+      const setPoint = (time: number): number => (time < 0 ? 55 : to[Math.min(9, Math.floor(time / 1080))]!);
+      const { sp, pv, op } = simulateLoop({ ...level.loop(3), setPoint, valve });
+      const record = { sp, pv, op, samplePeriod: 5 } as unknown as LoopRecord;
+      const { below } = boundDeadBand(record, { period: 470, integrating: true, sign: -1 });
+      expect(below ?? Number.POSITIVE_INFINITY).toBeGreaterThanOrEqual(backlash + 0.1);
+    },
+  );
+
   it('say so when they are too few', () => {
     const found = boundOf(0.1, 0.02, 1, 900);
     expect(found.below).toBeNull();

@@ -64,6 +64,10 @@ describe('the cycle is gone', () => {
     expect(found.answer).toBe('repaired');
     expect(found.deadBandBelow!.value).toBeLessThanOrEqual(1);
     expect(found.deadBandBelow!.from).toMatch(/set-point moves/);
+    expect([found.provenance.before, found.provenance.after]).toEqual([
+      before.record.sha256,
+      repaired.record.sha256,
+    ]);
     expect(found.rows.filter(({ alike }) => alike !== null).map(({ alike }) => alike)).toEqual(
       Array(5).fill(true),
     );

@@ -69,6 +69,18 @@ describe('the sticky demo loop', () => {
     expect(forecastCycle(findings, { ...few, repaired: half }).forecast!.repaired.cycles).toBe(true);
   });
 
+  it('can be asked for settings of its own, without integral action too', () => {
+    const settings = [
+      { gain: 0.3, integralTime: 12 },
+      { gain: 0.4, integralTime: null },
+    ];
+    const { others } = forecastCycle(findings, { ...few, settings }).forecast!;
+    expect(others.map(({ gain }) => Number(gain.toFixed(6)))).toEqual([0.3, 0.4]);
+    expect(others[0]!.integralTime).toBeCloseTo(12, 6);
+    expect(others[1]!.integralTime).toBeNull();
+    expect(others[1]!.cycles).toBe(false);
+  });
+
   it('gives equal bytes for equal seeds, and its bands around its values', () => {
     expect(JSON.stringify(forecastCycle(findings, few))).toBe(JSON.stringify(result));
     for (const one of [forecast.now, ...forecast.others, forecast.repaired]) {
@@ -125,7 +137,7 @@ describe('wrong options', () => {
 
 describe('stem loops whose true loop is run again at four settings and repaired', () => {
   it('are forecast right in most cases', () => {
-    const outcomes = [4, 6, 3].flatMap((index) => outcomesOf(makeForecastLoop(71_000_000, index)).outcomes);
+    const outcomes = [4, 9, 3].flatMap((index) => outcomesOf(makeForecastLoop(71_000_000, index)).outcomes);
     expect(outcomes).toHaveLength(15);
     const { period, swing, cycles, swingHeld } = scoreForecasts(outcomes);
     for (const share of [period, swing, cycles, swingHeld]) expect(share.hits).toBeGreaterThanOrEqual(12);
