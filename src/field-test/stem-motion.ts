@@ -175,40 +175,26 @@ function legMotion(
     if (y(k) - y(k - 1) - Math.max(0, ahead(k - 1, k)) > slipSize) events.push(k);
   }
 
-  // How it breaks loose, from the samples up to the next slip: rest goes over in a jump, or in a bend where a slide begins.
+  const isEvent = new Set(events);
+
   const next = events.find((k) => k > first + 1) ?? to + 1;
   const length = Math.max(4, Math.ceil((6 * clear) / Math.max(pace, 1e-9)));
-  const after = span(first, Math.min(next, to + 1, first + length));
-  let rest = sum / Math.max(1, count);
-  let breaks = first - 0.5;
-  let jump = 0;
-  let bend: number | null = null;
-  const asRest = spreadOf(after.map(y));
-  const asSlide = spreadOf(after.map((k) => y(k) - ahead(first, k)));
-  if (asRest.deviation < asSlide.deviation) {
-    jump = asRest.mean - rest;
-  } else {
-    const size = asSlide.mean - rest;
-    const meets = first - size / Math.max(pace, 1e-12);
-    bend = meets;
-    const early = span(Math.max(restFrom, Math.floor(meets)), first);
-    const misfit = (level: (k: number) => number): number =>
-      early.reduce((total, k) => total + (y(k) - level(k)) ** 2, 0);
-    const asJump = misfit(() => rest);
-    const asBend = misfit((k) => rest + Math.max(0, (k - meets) * pace));
-    if (asJump < asBend && size > 1.5 * pace) {
-      jump = Math.max(0, size - pace / 2);
-    } else {
-      rest = mean(span(restFrom, Math.max(restFrom + 1, Math.min(first, Math.floor(meets)))), y);
-      breaks = first - (asSlide.mean - rest) / Math.max(pace, 1e-12);
-      bend = breaks;
-    }
-  }
+  const broken = breakLoose({
+    y,
+    ahead,
+    pace,
+    restFrom,
+    level: sum / Math.max(1, count),
+    first,
+    after: span(first, Math.min(next, to + 1, first + length)),
+  });
+  const { rest, breaks, bend } = broken;
+  let { jump } = broken;
 
   const starts = [first, ...events.filter((k, i) => k !== (i > 0 ? events[i - 1]! : first) + 1)];
   const ends = starts.map((k) => {
     let end = k;
-    while (events.includes(end + 1)) end++;
+    while (isEvent.has(end + 1)) end++;
     return end;
   });
   const stretches: StemStretch[] = starts.map((_, i) => {
@@ -250,6 +236,47 @@ function legMotion(
     if (wouldBe < 3 * noise * Math.sqrt(4 / n) && events.length > 1) return false;
     return gained > 0.5 * wouldBe;
   }
+}
+
+interface BreakingLoose {
+  /** Travel along the leg, its rise as sliding gives it between two samples, and that in one sample. */
+  readonly y: (k: number) => number;
+  readonly ahead: (a: number, b: number) => number;
+  readonly pace: number;
+  readonly restFrom: number;
+  /** Mean level of the rest, as far as nothing was seen to move. */
+  readonly level: number;
+  /** First sample that shows movement, and the samples from there to the next slip. */
+  readonly first: number;
+  readonly after: readonly number[];
+}
+
+/** How a stem breaks loose: the rest goes over in a jump to another rest or to a slide, or in a bend where a slide begins. */
+function breakLoose({ y, ahead, pace, restFrom, level, first, after }: BreakingLoose): {
+  rest: number;
+  jump: number;
+  breaks: number;
+  bend: number | null;
+} {
+  const asRest = spreadOf(after.map(y));
+  const asSlide = spreadOf(after.map((k) => y(k) - ahead(first, k)));
+  if (asRest.deviation < asSlide.deviation) {
+    return { rest: level, jump: asRest.mean - level, breaks: first - 0.5, bend: null };
+  }
+  const size = asSlide.mean - level;
+  const meets = first - size / Math.max(pace, 1e-12);
+  const early = span(Math.max(restFrom, Math.floor(meets)), first);
+  const misfit = (of: (k: number) => number): number =>
+    early.reduce((total, k) => total + (y(k) - of(k)) ** 2, 0);
+  const asJump = misfit(() => level);
+  const asBend = misfit((k) => level + Math.max(0, (k - meets) * pace));
+  if (asJump < asBend && size > 1.5 * pace) {
+    return { rest: level, jump: Math.max(0, size - pace / 2), breaks: first - 0.5, bend: meets };
+  }
+  // The slide began before it showed: those samples are no part of the rest.
+  const rest = mean(span(restFrom, Math.max(restFrom + 1, Math.min(first, Math.floor(meets)))), y);
+  const breaks = first - (asSlide.mean - rest) / Math.max(pace, 1e-12);
+  return { rest, jump: 0, breaks, bend: breaks };
 }
 
 function span(from: number, to: number): number[] {
