@@ -10,7 +10,7 @@ import { countReversals } from '../oscillation/reversals';
 import { readController } from '../process/read-controller';
 import { checkRecord } from '../record/check-record';
 import type { LoopRecord } from '../record/loop-record';
-import { noiseLevel } from '../signal/statistics';
+import { noiseLevel, rangeOf } from '../signal/statistics';
 import { version } from '../version';
 import type { Assessment } from './assessment';
 import { cautions } from './cautions';
@@ -114,7 +114,5 @@ function shown(fit: StictionFit): Assessment['stiction'] {
 /** Median peak-to-peak swing over the cycles; without a cycle the whole range. */
 function swing(cycle: Cycle, values: Float64Array): number {
   if (cycle.amplitude !== null) return 2 * cycle.amplitude;
-  return (
-    values.reduce((a, b) => Math.max(a, b), -Infinity) - values.reduce((a, b) => Math.min(a, b), Infinity)
-  );
+  return rangeOf(values);
 }

@@ -1,4 +1,5 @@
 /** What the command did during a test: which kind of test it was, its steps, its ramps and where it turned. */
+import { rangeOf } from '../signal/statistics';
 import type { ValveTestKind } from './valve-test-reading';
 
 /** A step of the command. The new value stands from sample `at` on, until sample `until` (not included). */
@@ -121,14 +122,4 @@ function splitAtStops(op: Float64Array, from: number, to: number, direction: 1 |
     start = changes[i]!;
   });
   return [...legs, { from: start, to, direction }];
-}
-
-export function rangeOf(values: Float64Array): number {
-  let low = Number.POSITIVE_INFINITY;
-  let high = Number.NEGATIVE_INFINITY;
-  for (const value of values) {
-    low = Math.min(low, value);
-    high = Math.max(high, value);
-  }
-  return high - low;
 }

@@ -1,7 +1,7 @@
 /** Period and swings of a cycle, read in the same way from a record and from a simulation of it. */
 import { countReversals } from '../oscillation/reversals';
 import { findRhythm } from '../oscillation/rhythm';
-import { median, noiseLevel, quantile, standardDeviation } from '../signal/statistics';
+import { median, noiseLevel, quantile, rangeOf, standardDeviation } from '../signal/statistics';
 import { removeSlowTrend, slowTrend } from '../signal/trend';
 
 export interface CycleMeasure {
@@ -58,14 +58,4 @@ function steadied(values: Float64Array, period: number): Float64Array {
   if (width < 2 || values.length < 3) return values;
   const noisy = noiseLevel(values) > noticeableNoise * Math.SQRT2 * standardDeviation(values);
   return noisy ? slowTrend(values, width) : values;
-}
-
-function rangeOf(values: Float64Array): number {
-  let low = Number.POSITIVE_INFINITY;
-  let high = Number.NEGATIVE_INFINITY;
-  for (const value of values) {
-    low = Math.min(low, value);
-    high = Math.max(high, value);
-  }
-  return high - low;
 }

@@ -1,5 +1,6 @@
 /** Checks on the signals themselves: standing still, rounding, limits, compression. */
 
+import { rangeOf } from '../signal/statistics';
 import { all, type Checked, causeAndNumbers, numbers, percent, short, warns } from './checked';
 import { type Compression, compressionOf } from './compression';
 import type { FitnessCheck, Forbids } from './fitness';
@@ -35,8 +36,7 @@ export function signalChecks(checked: Checked): FitnessCheck[] {
 }
 
 function opConstant({ record: { op } }: Checked): FitnessCheck {
-  const range =
-    op.reduce((a, b) => Math.max(a, b), -Infinity) - op.reduce((a, b) => Math.min(a, b), Infinity);
+  const range = rangeOf(op);
   const passed = range > constantOp;
   return {
     code: 'op-constant',

@@ -60,6 +60,17 @@ export function quantile(values: Float64Array, share: number): number {
   return sorted[below]! + (at - below) * (sorted[above]! - sorted[below]!);
 }
 
+/** Largest less smallest value; -Infinity without values. */
+export function rangeOf(values: Float64Array): number {
+  let low = Number.POSITIVE_INFINITY;
+  let high = Number.NEGATIVE_INFINITY;
+  for (const value of values) {
+    low = Math.min(low, value);
+    high = Math.max(high, value);
+  }
+  return high - low;
+}
+
 /**
  * Standard deviation of the fast noise on a signal, in the signal's unit: the median size of the second
  * differences over what it would be for white noise of standard deviation 1 (0.6745 times the square root of

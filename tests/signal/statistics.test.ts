@@ -1,6 +1,14 @@
 import { expect, test } from 'vitest';
 import { seededRandom } from '../../src/signal/random';
-import { mean, median, noiseLevel, quantile, standardDeviation, variance } from '../../src/signal/statistics';
+import {
+  mean,
+  median,
+  noiseLevel,
+  quantile,
+  rangeOf,
+  standardDeviation,
+  variance,
+} from '../../src/signal/statistics';
 import { expectClose } from '../closeness';
 
 const of = (...values: number[]): Float64Array => Float64Array.from(values);
@@ -11,6 +19,11 @@ test('mean, variance and median of a handful of numbers', () => {
   expect(standardDeviation(of(1, 1, 1))).toBe(0);
   expect(median(of(5, 1, 3))).toBe(3);
   expect(median(of(4, 1, 3, 2))).toBe(2.5);
+});
+
+test('the range is that of the outermost values', () => {
+  expect(rangeOf(of(3, -2, 1))).toBe(5);
+  expect(rangeOf(of(4))).toBe(0);
 });
 
 test('a large mean costs the variance no digits', () => {
