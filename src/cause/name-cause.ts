@@ -160,7 +160,7 @@ function valveSentences(
     );
   }
   sentences.push(
-    `Weighed together, that gives a sticking valve a probability of ${probability.toFixed(2)} (from ${accuseFrom} on it is named).`,
+    `Weighed together, that gives a sticking valve a probability ${told(probability)} (from ${accuseFrom} on it is named).`,
   );
   return sentences;
 }
@@ -262,6 +262,12 @@ function cleared(input: CauseInput, test: ValveTest, drawn: StictionFit, probabi
     ],
     notTheValve,
   );
+}
+
+/** No record makes it certain. */
+function told(probability: number): string {
+  if (probability > 0.99) return 'above 0.99';
+  return probability < 0.01 ? 'below 0.01' : `of ${probability.toFixed(2)}`;
 }
 
 function percent(share: number): string {
