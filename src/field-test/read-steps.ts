@@ -279,15 +279,20 @@ function stepHysteresis(
   };
 }
 
+/** Steps tend to meet the sampling in step, so what one interval leaves open, many leave open too: only scatter averages out. */
 function overallOf(found: readonly (Estimate | null)[]): Estimate | null {
   const read = found.filter((one) => one !== null);
   if (read.length === 0) return null;
-  const each = Math.max(...read.map(({ low, high }) => (high - low) / 2 / 1.645));
-  return meanOf(
+  const scattered = meanOf(
     read.map(({ value }) => value),
-    { each },
+    { each: 0 },
     read[0]!.unit,
   );
+  return {
+    ...scattered,
+    low: Math.min(scattered.low, average(read.map(({ low }) => low))),
+    high: Math.max(scattered.high, average(read.map(({ high }) => high))),
+  };
 }
 
 function meanIn(values: Float64Array, from: number, to: number): number {
