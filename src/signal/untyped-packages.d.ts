@@ -10,7 +10,6 @@ declare module 'fft.js' {
 
 declare module 'jstat' {
   interface OneParameter {
-    cdf(x: number, degrees: number): number;
     inv(p: number, degrees: number): number;
   }
   const jStat: {
@@ -18,8 +17,6 @@ declare module 'jstat' {
     studentt: OneParameter;
     chisquare: OneParameter;
     centralF: { inv(p: number, degrees1: number, degrees2: number): number };
-    erfc(x: number): number;
-    ibeta(x: number, a: number, b: number): number;
   };
   export default jStat;
 }
