@@ -23,16 +23,24 @@ const causeWords: Record<Verdict, string> = {
   'cannot-tell': 'The record cannot tell what makes the cycle',
 };
 
+/** Where there is no regular cycle, words that do not speak of one. */
+const huntingWords: Partial<Record<Verdict, string>> = {
+  stiction: 'Stiction in the final control assembly makes the loop hunt',
+  'lost-motion': 'Lost motion (dead band without a jump) in the final control assembly makes the loop hunt',
+  'cannot-tell': 'There is no regular cycle, and the record cannot tell whether the valve sticks',
+};
+
 export function answerCard(findings: Findings): AnswerCard {
   const { assessment, fitness } = findings;
   const { cause } = assessment;
   const decision = decisions[cause.verdict];
+  const hunting = assessment.oscillation.present ? undefined : huntingWords[cause.verdict];
   const confidence = cause.confidence === null ? '' : ` (confidence ${Math.round(100 * cause.confidence)} %)`;
   return {
     loop: assessment.loop,
     decision,
     decisionLine: decisionLine(assessment),
-    cause: `${causeWords[cause.verdict]}${confidence}.`,
+    cause: `${hunting ?? causeWords[cause.verdict]}${confidence}.`,
     reasons: cause.reasons,
     ruledOut: cause.ruledOut,
     figures: figuresOf(findings),

@@ -191,7 +191,10 @@ const verdictWords: Record<Verdict, string> = {
   'cannot-tell': 'What makes the cycle cannot be told from the record',
 };
 
-function causeWords({ cause }: Assessment): string {
+function causeWords({ cause, oscillation }: Assessment): string {
+  if (cause.verdict === 'cannot-tell' && !oscillation.present) {
+    return 'No regular cycle; whether the valve sticks cannot be told from the record.';
+  }
   const sure = cause.confidence === null ? '' : ` (confidence ${Math.round(100 * cause.confidence)} %)`;
   return `${verdictWords[cause.verdict]}${sure}.`;
 }

@@ -52,6 +52,16 @@ describe('answerCard', () => {
     }
   });
 
+  it('speaks of no cycle where there is none', () => {
+    for (const verdict of ['stiction', 'lost-motion', 'cannot-tell'] as const) {
+      const findings = findingsFor({ verdict });
+      const { assessment } = findings;
+      const hunting = { ...assessment, oscillation: { ...assessment.oscillation, present: false } };
+      expect(answerCard(findings).cause).toMatch(/makes the cycle/);
+      expect(answerCard({ ...findings, assessment: hunting }).cause).toMatch(/hunt|no regular cycle/);
+    }
+  });
+
   it('gives cause and confidence in one sentence, without a confidence where it cannot tell', () => {
     for (const verdict of verdicts) {
       const { cause } = answerCard(findingsFor({ verdict }));
