@@ -309,17 +309,21 @@ export function poleOf(lag: number): number {
   return lag <= 0 ? 0 : Math.exp(-1 / lag);
 }
 
-/** Travel through the process and the disturbance filter, gain 1 (per sample when integrating). */
+/**
+ * Travel through the process and the disturbance filter, gain 1 (per sample when integrating). Written into `out`, as
+ * long as `travel`, where one is given.
+ */
 export function filterTravel(
   travel: Float64Array,
   process: PlainProcess,
   theta: number,
   integrating: boolean,
+  out: Float64Array = new Float64Array(travel.length),
 ): Float64Array {
   const samples = travel.length;
   const whole = Math.floor(process.delay);
   const part = process.delay - whole;
-  const out = new Float64Array(samples);
+  out.fill(0, 0, whole + 1);
   const first = poleOf(process.lag);
   const second = poleOf(process.secondLag);
   const again = integrating ? secondTheta(theta) : 0;

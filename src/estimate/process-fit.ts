@@ -26,6 +26,8 @@ export interface Target {
   readonly values: Float64Array;
   readonly power: number;
   readonly theta: number;
+  /** Room for a filtered travel, written anew by every fit, so that thousands of them leave nothing behind. */
+  readonly room: Float64Array;
 }
 
 export interface ProcessFit {
@@ -48,7 +50,7 @@ export function createTarget(pv: Float64Array, theta: number, settings: ProcessS
     values[k] *= settings.sign;
     power += values[k] * values[k];
   }
-  return { values, power, theta };
+  return { values, power, theta, room: new Float64Array(values.length) };
 }
 
 /** First-order lag of `lag` samples on `op`, starting at rest; the array itself for lag 0. */
@@ -72,7 +74,7 @@ export function fitGain(
   settings: ProcessSettings,
 ): ProcessFit {
   const { lag, secondLag, delay } = process;
-  const x = filterTravel(travel, process, target.theta, settings.integrating);
+  const x = filterTravel(travel, process, target.theta, settings.integrating, target.room);
   let dot = 0;
   let energy = 0;
   for (let k = 0; k < x.length; k++) {
