@@ -1,5 +1,5 @@
 /** Times the audit of a made unit as the built program runs it, and follows its memory from outside. */
-import { execFileSync, spawn } from 'node:child_process';
+import { execFileSync, spawn, spawnSync } from 'node:child_process';
 import {
   closeSync,
   copyFileSync,
@@ -21,10 +21,16 @@ export interface AuditTime {
   readonly workers: number;
   /** s, by the clock, from start to end of the program. */
   readonly seconds: number;
-  /** s that one loop takes when one worker does nothing else, mean of a spread of loops. */
+  /**
+   * s that one loop takes when one worker does nothing else, mean of a spread of loops: with all cores, whose others
+   * then collect its garbage and compile for it, and held to one core, which is what each worker has in the whole run.
+   * The latter is null where there is no `taskset`.
+   */
   readonly oneLoop: number;
-  /** `seconds` over one-loop time x loops / workers. */
+  readonly oneLoopOnOneCore: number | null;
+  /** `seconds` over either one-loop time x loops / workers. */
   readonly overIdeal: number;
+  readonly overIdealOnOneCore: number | null;
   /** Resident memory of the program with its workers, MB: median around a tenth of the loops, and at the last of them. */
   readonly memory: { readonly early: number; readonly late: number; readonly most: number };
 }
@@ -46,10 +52,10 @@ export async function timeAudit(loops: number, samples: number): Promise<AuditTi
     for (const name of names.filter((_, i) => i % stride === 0))
       copyFileSync(join(unit, name), join(few, name));
     const workers = availableParallelism();
-    const alone = await follow(few, join(folder, 'alone'), 1);
-    const first = alone.looks.find(({ finished }) => finished > 0)!;
-    const last = alone.looks.find(({ finished }) => finished === alone.looks.at(-1)!.finished)!;
-    const oneLoop = (last.at - first.at) / (last.finished - first.finished);
+    const oneLoop = paceOf(await follow(few, join(folder, 'alone'), 1));
+    const oneLoopOnOneCore = canHoldToCore()
+      ? paceOf(await follow(few, join(folder, 'on-one-core'), 1, ['taskset', '-c', '0']))
+      : null;
     const whole = await follow(unit, join(folder, 'out'), workers);
     const around = (from: number, to: number): number =>
       middle(
@@ -63,7 +69,10 @@ export async function timeAudit(loops: number, samples: number): Promise<AuditTi
       workers,
       seconds: whole.seconds,
       oneLoop,
+      oneLoopOnOneCore,
       overIdeal: whole.seconds / ((oneLoop * loops) / workers),
+      overIdealOnOneCore:
+        oneLoopOnOneCore === null ? null : whole.seconds / ((oneLoopOnOneCore * loops) / workers),
       memory: {
         early: around(0.075, 0.125),
         late: around(0.95, 1),
@@ -83,13 +92,27 @@ interface Look {
   readonly memory: number;
 }
 
-/** Runs the program on a unit and looks at its journal and its memory until it ends. */
+/** s a loop, from the first that is finished to the last. */
+function paceOf({ looks }: { looks: readonly Look[] }): number {
+  const first = looks.find(({ finished }) => finished > 0)!;
+  const last = looks.find(({ finished }) => finished === looks.at(-1)!.finished)!;
+  return (last.at - first.at) / (last.finished - first.finished);
+}
+
+function canHoldToCore(): boolean {
+  return spawnSync('taskset', ['-c', '0', 'true']).status === 0;
+}
+
+/** Runs the program, behind the words of `before`, on a unit and looks at its journal and its memory until it ends. */
 async function follow(
   unit: string,
   out: string,
   workers: number,
+  before: readonly string[] = [],
 ): Promise<{ seconds: number; looks: Look[] }> {
-  const words = [
+  const [program, ...words] = [
+    ...before,
+    process.execPath,
     join('dist', 'cli', 'main.js'),
     'audit',
     unit,
@@ -100,7 +123,7 @@ async function follow(
     '--no-notebook',
   ];
   const start = performance.now();
-  const child = spawn(process.execPath, words, { stdio: ['ignore', 'ignore', 'inherit'] });
+  const child = spawn(program!, words, { stdio: ['ignore', 'ignore', 'inherit'] });
   const looks: Look[] = [];
   const finishedIn = lineCounter(join(out, 'audit.jsonl'));
   const look = setInterval(() => {

@@ -195,18 +195,33 @@ function printAssessments(assessments: readonly AssessmentTime[]): string {
   );
 }
 
-function printAudit({ loops, samples, workers, seconds, oneLoop, overIdeal, memory }: AuditTime): string {
+function printAudit(audit: AuditTime): string {
+  const { loops, samples, workers, seconds, memory } = audit;
+  const { oneLoop, overIdeal, oneLoopOnOneCore, overIdealOnOneCore } = audit;
   const { early, late, most } = memory;
+  const orNone = (value: number | null): string => value?.toFixed(3) ?? '-';
   const grown = ((100 * (late - early)) / early).toFixed(1);
   return [
     textTable(
       `An audit of ${loops} made loops of ${samples} samples by the built program, ${workers} workers`,
-      ['s', 's a loop alone', 'over ideal', 'MB early', 'MB late', 'growth %', 'MB most'],
+      [
+        's',
+        's a loop alone',
+        'over ideal',
+        'alone on one core',
+        'over ideal',
+        'MB early',
+        'MB late',
+        'growth %',
+        'MB most',
+      ],
       [
         [
           seconds.toFixed(1),
           oneLoop.toFixed(3),
           overIdeal.toFixed(3),
+          orNone(oneLoopOnOneCore),
+          orNone(overIdealOnOneCore),
           ...[early, late].map((value) => value.toFixed(0)),
           grown,
           most.toFixed(0),
@@ -214,6 +229,6 @@ function printAudit({ loops, samples, workers, seconds, oneLoop, overIdeal, memo
       ],
     ),
     'Early: around a tenth of the loops. Late: from 95 % of them to the last but one. Targets: growth at most 10 %, time at',
-    'most 1.2 times that of one loop x loops / workers. "Most" has the end in it, when groups and ranking are made.\n',
+    'most 1.2 times that of one loop x loops / workers. Alone, a loop has the other cores for its garbage and compiler. "Most" has the end in it, when groups and ranking are made.\n',
   ].join('\n');
 }
