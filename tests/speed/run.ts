@@ -229,6 +229,7 @@ function printAudit(audit: AuditTime): string {
       ],
     ),
     'Early: around a tenth of the loops. Late: from 95 % of them to the last but one. Targets: growth at most 10 %, time at',
-    'most 1.2 times that of one loop x loops / workers. Alone, a loop has the other cores for its garbage and compiler. "Most" has the end in it, when groups and ranking are made.\n',
+    'most 1.2 times that of one loop x loops / workers. Alone, a loop has the other cores for its garbage and compiler.',
+    '"Most" has the end in it, when groups and ranking are made.\n',
   ].join('\n');
 }
