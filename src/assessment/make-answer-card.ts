@@ -156,8 +156,9 @@ export function workRequest({ loop, cause, stiction, severity, record, oscillati
     ? ` The record gives a dead band of ${withInterval(stiction.S)}${stiction.J ? ` and a slip jump of ${withInterval(stiction.J)}` : ''}.`
     : '';
   const period = oscillation.period === null ? '' : ` with a period of ${duration(oscillation.period)}`;
+  const moves = oscillation.present ? `cycles${period}` : 'hunts without a fixed period';
   return (
-    `${loop}: the loop cycles${period} (record from ${readableTime(record.start)}, OP swing ${short(severity.opSwing)} %), and the record points to the final control assembly.${size} ` +
+    `${loop}: the loop ${moves} (record from ${readableTime(record.start)}, OP swing ${short(severity.opSwing)} %), and the record points to the final control assembly.${size} ` +
     'The record cannot tell which part: check air supply, positioner, linkage and packing in the order your site prescribes. ' +
     'Please record dead band and resolution as found and as left. Estimates from operating data, not a test of the valve; site permits and procedures apply.'
   );

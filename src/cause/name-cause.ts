@@ -33,6 +33,11 @@ const clearBelow = { cycling: 0.2, hunting: 0.4 };
 /** Highest confidence that is ever said. */
 const surest = 0.95;
 /**
+ * Confidence in the other causes: about the share that was right on simulated loops, less where the valve stays in doubt
+ * (`notCycling` and `outside` by the probability that is left to it). Own choice.
+ */
+const confidence = { notCycling: 0.85, smallDeadBand: 0.7, outside: 0.85, proportional: 0.85, integral: 0.8 };
+/**
  * In an integrating loop: J/S, or median slip over S, below which a cycle is put down to dead band alone; and how often
  * that is so on simulated loops, where the rest had stems that stick but slide on softly. Own choice.
  */
@@ -51,16 +56,16 @@ const travelExplained = 0.8;
 const proportionalRatio = 0.7;
 
 export function nameCause(input: CauseInput): Cause {
-  return withTravelSeen(causeOf(input), input.stiction.drawn);
+  return withTravelSeen(causeOf(input), input.stiction.fit);
 }
 
 /** Logged travel shows a dead band whatever makes the cycle: then the valve is named beside it. */
-function withTravelSeen(cause: Cause, drawn: StictionFit | null): Cause {
-  if (drawn?.travelSource !== 'measured' || drawn.explains < travelExplained || drawn.S.low < goodValve) {
+function withTravelSeen(cause: Cause, fit: StictionFit | null): Cause {
+  if (fit?.travelSource !== 'measured' || fit.explains < travelExplained || fit.S.low < goodValve) {
     return cause;
   }
   if (cause.verdict === 'stiction' || cause.verdict === 'lost-motion') return cause;
-  const seen = `Whatever makes the cycle, the logged travel shows a dead band of ${drawn.S.value.toFixed(2)} % of span.`;
+  const seen = `Whatever makes the cycle, the logged travel shows a dead band of ${fit.S.value.toFixed(2)} % of span.`;
   return { ...cause, reasons: [...cause.reasons, seen], also: ['stiction'] };
 }
 
@@ -94,18 +99,15 @@ function causeOf(input: CauseInput): Cause {
 
 /** No cycle and no valve to accuse. A loop that hunts a little because of its valve may look the same: the valve is not cleared. */
 function notOscillating({ opCycle, pvCycle, stiction }: CauseInput, probability: number | null): Cause {
-  const S = stiction.drawn?.S.value ?? null;
-  const small = S !== null && S < goodValve;
+  const small = stiction.drawn !== null && stiction.drawn.S.value < goodValve;
   const doubt = Math.min(probability ?? clearBelow.hunting, clearBelow.hunting);
   return {
     verdict: 'not-oscillating',
-    confidence: small ? 0.7 : 0.85 * (1 - doubt),
+    confidence: small ? confidence.smallDeadBand : confidence.notCycling * (1 - doubt),
     reasons: [
       `OP: ${opCycle.why}`,
       `PV: ${pvCycle.why}`,
-      ...(small
-        ? [`What dead band the fit finds, ${S.toFixed(2)} % of span, good valves have as well.`]
-        : []),
+      ...(small ? [`The fit finds less than ${goodValve} % of dead band, as good valves have it.`] : []),
     ],
     ruledOut: [],
     also: [],
@@ -139,7 +141,7 @@ function valveSentences(
   }
   if (S.value < goodValve) {
     sentences.push(
-      `The dead band that would explain it is ${S.value.toFixed(2)} % of span, as good valves have it.`,
+      `A dead band of less than ${goodValve} % of span would explain it, as good valves have it.`,
     );
   }
   const regularity = opCycle.regularity ?? 0;
@@ -215,7 +217,7 @@ function cleared(input: CauseInput, test: ValveTest, drawn: StictionFit, probabi
   if (test.tWithoutLine !== null) {
     return {
       verdict: 'outside-disturbance',
-      confidence: 0.85 * (1 - probability / 2),
+      confidence: confidence.outside * (1 - probability / 2),
       reasons: [
         `OP carries a steady line at a period of ${seconds(opCycle.period)}, sharper than a loop makes by itself.`,
         comparison,
@@ -246,7 +248,7 @@ function cleared(input: CauseInput, test: ValveTest, drawn: StictionFit, probabi
     }
     return {
       verdict: 'tight-tuning',
-      confidence: proportional ? 0.85 : 0.8,
+      confidence: proportional ? confidence.proportional : confidence.integral,
       reasons,
       ruledOut: [...notTheValve, 'A steady outside cycle: OP carries no steady line.'],
       also: [],

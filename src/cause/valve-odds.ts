@@ -2,7 +2,7 @@
  * How likely the final control assembly makes what the record shows: logistic regression on eight signs.
  *
  * The weights were fitted by `npm run weigh` to the two sets of simulated loops of tests/accuracy that are there to be
- * worked with (stems with real friction in closed loops, half of them sticky), never to the reported set. In tenfold
+ * worked with (stems with real friction in closed loops, two thirds of them sticky or worn), never to the reported set. In tenfold
  * cross-validation the probability said and the share found true agreed within 0.12 in every tenth. Another mix of
  * loops shifts it: where few valves stick, it is said too high.
  */
@@ -19,17 +19,17 @@ export interface ValveSigns {
   readonly cycles: number;
   /** log10 of the regularity of OP; 0 without a cycle. A cycle like clockwork comes from outside more often. */
   readonly regularity: number;
-  /** log10 of S in % of span: hardly any valve has less than 0.1 %. */
+  /** log10 of S in % of span. */
   readonly size: number;
   /** Share of the travel that the element explains. */
   readonly explains: number;
   /** 0, or below it for a PV nearer to a sine than slips leave it; log10 of its odd harmonics over 1 %. */
   readonly sine: number;
-  /** 0, or above it for a regular PV squarer than a loop lets a slip look; log10 of its odd harmonics over 10 %. */
+  /** 0, or above it for a PV squarer than slips leave it: log10 of its odd harmonics over 10 %, times `regularity`. */
   readonly square: number;
 }
 
-/** Taken where PV has no cycle of its own: about the median of the loops that the weights were fitted on. */
+/** Share of odd harmonics taken where PV has no cycle of its own: between a sine and a triangle. Own choice. */
 const usualOddShare = 0.003;
 
 const weights: ValveSigns = {
@@ -46,6 +46,7 @@ const intercept = -3.67;
 
 export const signNames = Object.keys(weights) as readonly (keyof ValveSigns)[];
 
+/** The signs of a tested loop. All are without unit but `size`; what lies outside the range of the fit is taken at its end. */
 export function valveSigns(
   opCycle: Cycle,
   pvCycle: Cycle,

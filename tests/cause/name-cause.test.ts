@@ -241,7 +241,7 @@ describe('nameCause', () => {
     expect(named({ ...hunting, S: 1 }).verdict).toBe('cannot-tell');
     const { verdict, reasons } = named({ ...hunting, S: 0.25 });
     expect(verdict).toBe('not-oscillating');
-    expect(reasons.join(' ')).toContain('0.25 % of span');
+    expect(reasons.join(' ')).toContain('less than 0.3 %');
   });
 
   it('names the dead band that logged travel shows beside whatever else makes the cycle', () => {
@@ -249,9 +249,12 @@ describe('nameCause', () => {
     const measured = { ...input.stiction.drawn!, travelSource: 'measured' as const };
     const { verdict, also, reasons } = nameCause({
       ...input,
-      stiction: { ...input.stiction, drawn: measured },
+      stiction: { ...input.stiction, fit: measured, drawn: measured },
     });
     expect(verdict).toBe(nameCause(input).verdict);
+    // Numbers that were refused are not told here either.
+    const refused = { ...input.stiction, fit: null, drawn: measured };
+    expect(nameCause({ ...input, stiction: refused }).also).toEqual([]);
     expect(nameCause(input).also).toEqual([]);
     expect(also).toEqual(['stiction']);
     expect(reasons.join(' ')).toContain('dead band of 2.00 %');
