@@ -1,7 +1,7 @@
 /** The guided notebook through real Jupyter and its kernel, and the page made from it in a real browser, offline. */
 import { mkdirSync, readdirSync, readFileSync, statSync, writeFileSync } from 'node:fs';
 import { basename, join } from 'node:path';
-import type { Browser, Page } from 'playwright-core';
+import type { Browser } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { Assessment } from '../../src/assessment/assessment';
 import { cautions } from '../../src/assessment/cautions';
@@ -13,6 +13,8 @@ import { runNotebook } from '../../src/report/run-notebook';
 import { captured } from '../cli/captured';
 import { scratchFolder } from '../scratch-folder';
 import { startBrowser } from './browser';
+import { expectRanWhole } from './notebook-checks';
+import { type OpenedPage, openPage } from './open-page';
 
 interface Rendered {
   readonly notebook: Notebook;
@@ -51,12 +53,7 @@ afterAll(() => browser?.close());
 
 describe('the notebook of the sticky demo loop', () => {
   it('ran every cell, in order, without a word on stderr', () => {
-    const code = sticky.notebook.cells.filter((cell) => cell.cell_type === 'code');
-    expect(code.map((cell) => cell.execution_count)).toEqual(code.map((_, place) => place + 1));
-    const printed = code
-      .flatMap((cell) => cell.outputs ?? [])
-      .filter((output) => output.output_type !== 'display_data');
-    expect(printed).toEqual([]);
+    expectRanWhole(sticky.notebook);
   });
 
   it('shows the answer card first, with the numbers of the JSON and every caution', () => {
@@ -105,26 +102,8 @@ describe('the notebook of the sticky demo loop', () => {
 });
 
 describe('the page of the sticky demo loop', () => {
-  async function open(
-    width: number,
-    height: number,
-    javaScriptEnabled = true,
-  ): Promise<{ page: Page; trouble: string[] }> {
-    const context = await browser.newContext({
-      viewport: { width, height },
-      offline: true,
-      javaScriptEnabled,
-    });
-    const page = await context.newPage();
-    const trouble: string[] = [];
-    page.on('console', (message) => trouble.push(message.text()));
-    page.on('pageerror', (error) => trouble.push(error.message));
-    page.on('request', (request) => {
-      if (!/^(data:|blob:|file:.*\.html$)/.test(request.url())) trouble.push(request.url());
-    });
-    await page.goto(`file://${sticky.page}`);
-    return { page, trouble };
-  }
+  const open = (width: number, height: number, javaScriptEnabled = true): Promise<OpenedPage> =>
+    openPage(browser, sticky.page, width, height, javaScriptEnabled);
 
   it.each([
     [1280, 800],

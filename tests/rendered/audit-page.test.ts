@@ -21,6 +21,8 @@ import { largeUnit } from '../audit/made-unit';
 import { captured } from '../cli/captured';
 import { scratchFolder } from '../scratch-folder';
 import { startBrowser } from './browser';
+import { expectKeptWithoutOutputs, expectRanWhole } from './notebook-checks';
+import { openPage } from './open-page';
 
 /** Of the demo unit: a sticky valve, two loops that it shakes, a healthy one. */
 const demo = ['31-FC-201', '31-PC-202', '31-TC-204', '31-FC-301'];
@@ -52,28 +54,6 @@ const outputsOf = (cell: NotebookCell): string[] =>
   (cell.outputs ?? []).map((output) => joined(output.data?.['text/html'] as string[] | undefined));
 const allOutputs = (): string => notebook.cells.flatMap(outputsOf).join('\n');
 
-interface Opened {
-  readonly page: Page;
-  readonly trouble: readonly string[];
-}
-
-async function open(path: string, width: number, height: number, javaScriptEnabled = true): Promise<Opened> {
-  const context = await browser.newContext({
-    viewport: { width, height },
-    offline: true,
-    javaScriptEnabled,
-  });
-  const page = await context.newPage();
-  const trouble: string[] = [];
-  page.on('console', (message) => trouble.push(message.text()));
-  page.on('pageerror', (error) => trouble.push(error.message));
-  page.on('request', (request) => {
-    if (!/^(data:|blob:|file:.*\.html$)/.test(request.url())) trouble.push(request.url());
-  });
-  await page.goto(`file://${path}`);
-  return { page, trouble };
-}
-
 const sizes: readonly [number, number][] = [
   [1280, 800],
   [390, 844],
@@ -92,12 +72,7 @@ async function expectFits(page: Page, width: number): Promise<void> {
 
 describe('the notebook of an audit', () => {
   it('ran every cell without a word on stderr, and shows the answer first', () => {
-    const code = notebook.cells.filter((cell) => cell.cell_type === 'code');
-    expect(code.map((cell) => cell.execution_count)).toEqual(code.map((_, place) => place + 1));
-    const printed = code
-      .flatMap((cell) => cell.outputs ?? [])
-      .filter(({ output_type }) => output_type !== 'display_data');
-    expect(printed).toEqual([]);
+    expectRanWhole(notebook);
     const [before, answer] = allOutputs().split('<section');
     expect(before!.replace(/<(style|script)[\s\S]*?<\/\1>/g, '').trim()).toBe('');
     const card = auditCard(audit);
@@ -148,9 +123,7 @@ describe('the notebook of an audit', () => {
   });
 
   it('holds no outputs as it is kept', () => {
-    const kept: Notebook = JSON.parse(readFileSync('notebooks/audit-a-unit.ipynb', 'utf8'));
-    for (const cell of kept.cells)
-      expect([cell.outputs ?? [], cell.execution_count ?? null]).toEqual([[], null]);
+    expectKeptWithoutOutputs('notebooks/audit-a-unit.ipynb');
   });
 
   it('leaves a CSV beside it, with every caution', () => {
@@ -162,7 +135,7 @@ describe('the notebook of an audit', () => {
 
 describe('the page of an audit', () => {
   it.each(sizes)('draws, fits and complains of nothing at %i x %i pixels', async (width, height) => {
-    const { page, trouble } = await open(join(out, 'audit.html'), width, height);
+    const { page, trouble } = await openPage(browser, join(out, 'audit.html'), width, height);
     await page.waitForFunction(() => document.querySelectorAll('.sb-shown').length === 1);
     for (const part of ['.sb-unit h2', '.sb-unit .sb-cause', '.sb-unit ol li >> nth=0']) {
       const box = (await page.locator(part).boundingBox())!;
@@ -175,7 +148,7 @@ describe('the page of an audit', () => {
   });
 
   it('leads from the card to the whole answer of a loop in one click', async () => {
-    const { page } = await open(join(out, 'audit.html'), 390, 844);
+    const { page } = await openPage(browser, join(out, 'audit.html'), 390, 844);
     const whole = page.locator('.sb-whole >> nth=0');
     expect(await whole.isVisible()).toBe(false);
     await page.locator('.sb-unit ol a >> nth=0').click();
@@ -187,7 +160,7 @@ describe('the page of an audit', () => {
   });
 
   it('tells each loop, and all cautions, where scripts are off', async () => {
-    const { page, trouble } = await open(join(out, 'audit.html'), 1280, 800, false);
+    const { page, trouble } = await openPage(browser, join(out, 'audit.html'), 1280, 800, false);
     await page.locator('.sb-more summary >> nth=1').click();
     expect(await page.locator('.sb-whole >> nth=1').isVisible()).toBe(true);
     expect(await page.locator('.sb-picture').isVisible()).toBe(true);
@@ -226,7 +199,7 @@ describe('the page of an audit of 300 loops', () => {
 
   it.each(sizes)('opens soon, fits, and sorts at %i x %i pixels', async (width, height) => {
     const started = performance.now();
-    const { page, trouble } = await open(path, width, height);
+    const { page, trouble } = await openPage(browser, path, width, height);
     // Read within a second or two on an idle machine; the bound leaves room for a busy one.
     expect(performance.now() - started).toBeLessThan(10_000);
     expect(await page.locator('.sb-ranked > table > tbody').count()).toBe(250);

@@ -16,6 +16,8 @@ import { joined, type Notebook } from '../../src/report/notebook-file';
 import { type Rendered, renderNotebook } from '../../src/report/render-notebook';
 import { scratchFolder } from '../scratch-folder';
 import { startBrowser } from './browser';
+import { expectKeptWithoutOutputs, expectRanWhole } from './notebook-checks';
+import { openPage } from './open-page';
 
 const kept = 'notebooks/forecast-and-repair.ipynb';
 const folder = scratchFolder();
@@ -60,17 +62,8 @@ afterAll(() => browser?.close());
 
 describe('the notebook of retuning and repair', () => {
   it('is kept without outputs, and ran every cell without a word on stderr', () => {
-    const source: Notebook = JSON.parse(readFileSync(kept, 'utf8'));
-    for (const cell of source.cells)
-      expect([cell.outputs ?? [], cell.execution_count ?? null]).toEqual([[], null]);
-    for (const { notebook } of [both, beforeOnly]) {
-      const code = notebook.cells.filter((cell) => cell.cell_type === 'code');
-      expect(code.map((cell) => cell.execution_count)).toEqual(code.map((_, place) => place + 1));
-      const printed = code
-        .flatMap((cell) => cell.outputs ?? [])
-        .filter((output) => output.output_type !== 'display_data');
-      expect(printed).toEqual([]);
-    }
+    expectKeptWithoutOutputs(kept);
+    for (const { notebook } of [both, beforeOnly]) expectRanWhole(notebook);
   });
 
   it('shows what the functions give', () => {
@@ -122,15 +115,7 @@ describe('the page', () => {
   ])(
     'says the answer on the first screen at %i pixels and draws every figure within it',
     async (width, height) => {
-      const context = await browser.newContext({ viewport: { width, height }, offline: true });
-      const page = await context.newPage();
-      const trouble: string[] = [];
-      page.on('console', (message) => trouble.push(message.text()));
-      page.on('pageerror', (error) => trouble.push(error.message));
-      page.on('request', (request) => {
-        if (!/^(data:|blob:|file:.*\.html$)/.test(request.url())) trouble.push(request.url());
-      });
-      await page.goto(`file://${both.rendered.page}`);
+      const { page, trouble } = await openPage(browser, both.rendered.page, width, height);
       for (const part of ['.sb-card h2', '.sb-cause', '.sb-tiles .sb-value >> nth=0']) {
         const box = (await page.locator(part).first().boundingBox())!;
         expect(box.y + box.height).toBeLessThan(height);
@@ -145,7 +130,7 @@ describe('the page', () => {
       expect(within).toEqual(Array(4).fill(true));
       expect(await page.evaluate(() => document.documentElement.scrollWidth)).toBeLessThanOrEqual(width);
       expect(trouble).toEqual([]);
-      await context.close();
+      await page.context().close();
     },
   );
 });

@@ -1,7 +1,6 @@
 /** The guided notebook for valve tests through real Jupyter, and the page made from it in a real browser, offline. */
 import { readFileSync } from 'node:fs';
-import { join } from 'node:path';
-import type { Browser, Page } from 'playwright-core';
+import type { Browser } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { cautions, valveTestCautions } from '../../src/assessment/cautions';
 import { withInterval } from '../../src/assessment/make-answer-card';
@@ -12,6 +11,8 @@ import { joined, type Notebook } from '../../src/report/notebook-file';
 import { type Rendered, renderNotebook } from '../../src/report/render-notebook';
 import { scratchFolder } from '../scratch-folder';
 import { startBrowser } from './browser';
+import { expectKeptWithoutOutputs, expectRanWhole } from './notebook-checks';
+import { openPage } from './open-page';
 
 const kept = 'notebooks/plan-and-read-a-valve-test.ipynb';
 const folder = scratchFolder();
@@ -43,15 +44,8 @@ afterAll(() => browser?.close());
 
 describe('the notebook for valve tests', () => {
   it('is kept without outputs, and ran every cell without a word on stderr', () => {
-    const source: Notebook = JSON.parse(readFileSync(kept, 'utf8'));
-    for (const cell of source.cells)
-      expect([cell.outputs ?? [], cell.execution_count ?? null]).toEqual([[], null]);
-    const code = notebook.cells.filter((cell) => cell.cell_type === 'code');
-    expect(code.map((cell) => cell.execution_count)).toEqual(code.map((_, place) => place + 1));
-    const printed = code
-      .flatMap((cell) => cell.outputs ?? [])
-      .filter((output) => output.output_type !== 'display_data');
-    expect(printed).toEqual([]);
+    expectKeptWithoutOutputs(kept);
+    expectRanWhole(notebook);
   });
 
   it('shows what the functions give: dead band, spring and friction of the demo tests', () => {
@@ -107,26 +101,13 @@ describe('the notebook for valve tests', () => {
 });
 
 describe('the page of the notebook for valve tests', () => {
-  async function open(width: number, height: number): Promise<{ page: Page; trouble: string[] }> {
-    const context = await browser.newContext({ viewport: { width, height }, offline: true });
-    const page = await context.newPage();
-    const trouble: string[] = [];
-    page.on('console', (message) => trouble.push(message.text()));
-    page.on('pageerror', (error) => trouble.push(error.message));
-    page.on('request', (request) => {
-      if (!/^(data:|blob:|file:.*\.html$)/.test(request.url())) trouble.push(request.url());
-    });
-    await page.goto(`file://${join(rendered.page)}`);
-    return { page, trouble };
-  }
-
   it.each([
     [1280, 800],
     [390, 844],
   ])(
     'says the answer on the first screen at %i pixels and draws every figure within it',
     async (width, height) => {
-      const { page, trouble } = await open(width, height);
+      const { page, trouble } = await openPage(browser, rendered.page, width, height);
       for (const part of ['.sb-card h2', '.sb-cause', '.sb-tiles .sb-value >> nth=0']) {
         const box = (await page.locator(part).first().boundingBox())!;
         expect(box.y + box.height).toBeLessThan(height);
